@@ -1,0 +1,7 @@
+from django.apps import AppConfig
+
+
+class PartsConfig(AppConfig):
+    name = "shop.parts"
+    label = "parts"
+    default_auto_field = "django.db.models.BigAutoField"

@@ -1,0 +1,7 @@
+from django.apps import AppConfig
+
+
+class PeopleConfig(AppConfig):
+    name = "shop.people"
+    label = "people"
+    default_auto_field = "django.db.models.BigAutoField"
