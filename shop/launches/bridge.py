@@ -1,0 +1,217 @@
+"""Where the shop's rows meet the solver: the only file that imports both.
+
+Numbers go one way: rows -> setups.car_file (SI) -> solver -> plain dicts and finished text.
+"""
+
+from __future__ import annotations
+
+import math
+import time
+from collections.abc import Mapping
+from dataclasses import dataclass, field
+from typing import Any
+
+import solver
+from shop.garage.models import Survey
+from shop.garage.quantities import BRACKETS_OF
+from shop.garage.quantities import BY_KEY as SURVEY_KEYS
+from shop.quantities import Quantity
+from shop.refusals import Refused
+from shop.setups import car_file
+from shop.setups.models import Revision
+from shop.setups.quantities import BY_KEY as SETTING_KEYS
+from shop.units import default_unit, show
+
+SOLVER_VERSION = solver.SOLVER_VERSION
+
+
+class CannotSolve(Exception):
+    """The launch has no answer; the message says when in the run, and why."""
+
+
+# Which form field a fault of the car file stands beside.
+_FIELDS = {
+    "wheelbase": "wheelbase",
+    "mass": "weight_lr",
+    "cg": "cg_height",
+    "chassis.pitch_inertia": "pitch_inertia",
+    "front.unsprung_mass": "front_unsprung_weight",
+    "front.tyre_radius": "front_tyre_radius",
+    "front.spring": "front_spring_rate",
+    "front.damper": "front_shock_rate",
+    "front.tyre": "front_tyre_rate",
+    "front.droop_stop": "front_limiter",
+    "front.bump_stop": "front_bump_clearance",
+    "rear.unsprung_mass": "rear_unsprung_weight",
+    "rear.housing_inertia": "housing_inertia",
+    "rear.tyre_radius": "rear_tyre_radius",
+    "rear.linkage.lower.chassis": "lower_chassis",
+    "rear.linkage.lower.housing": "lower_housing",
+    "rear.linkage.lower": "lower_chassis",
+    "rear.linkage.upper.chassis": "upper_chassis",
+    "rear.linkage.upper.housing": "upper_housing",
+    "rear.linkage.upper": "upper_chassis",
+    "rear.linkage.chassis": "ladder_chassis",
+    "rear.linkage": "upper_chassis",
+    "rear.springs": "rear_spring_rate",
+    "rear.tyre": "rear_tyre_rate",
+    "rear.droop_stop": "rear_droop_clearance",
+    "rear.bump_stop": "rear_bump_clearance",
+    "wheelie_bar": "wheelie_bar_height",
+    "hit": "hit_peak",
+}
+
+
+def _field_of(path: str) -> str:
+    """The longest known start of a car-file path such as `rear.springs[0].spring.rate`."""
+    plain = path.split("[")[0]
+    while plain:
+        if plain in _FIELDS:
+            return _FIELDS[plain]
+        plain = plain.rpartition(".")[0]
+    return ""
+
+
+def _refused(error: solver.CarError) -> Refused:
+    faults: dict[str, str] = {}
+    for fault in error.faults:
+        name = _field_of(fault.field)
+        faults[name] = f"{faults[name]}; {fault.message}" if name in faults else fault.message
+    return Refused(faults)
+
+
+def car_of(revision: Revision) -> solver.Car:
+    """The solver's car of a (possibly unsaved) revision; Refused names the form fields."""
+    try:
+        return solver.car_from_dict(car_file.build(revision))
+    except solver.CarError as error:
+        raise _refused(error) from error
+
+
+def check(revision: Revision) -> dict[str, Any]:
+    """The car file, once it is known that it can be solved from; Refused otherwise."""
+    return solver.car_to_dict(car_of(revision))
+
+
+def provisional(revision: Revision) -> list[Quantity]:
+    """Typical values in use that nobody measured, in the order of the survey."""
+    typical = {m.key for m in revision.survey.measurements.all() if m.origin == "typical"}
+    overridden = {key for key in revision.settings if key in typical}
+    links = revision.survey.linkage
+    return [q for key, q in SURVEY_KEYS.items() if key in typical - overridden and links in q.linkages]
+
+
+@dataclass(frozen=True)
+class Row:
+    """One figure as a page or a sheet shows it."""
+
+    key: str
+    label: str
+    text: str
+    note: str = ""
+    si: float | None = None
+
+
+@dataclass(frozen=True)
+class Preview:
+    """What the choice of holes and settings means at rest, before anything is saved."""
+
+    figures: list[Row]
+    bars: list[Row]
+    provisional: list[Quantity]
+    statics: dict[str, Any] = field(default_factory=dict)
+
+
+def length_text(si: float | None, units: str) -> str:
+    return show(si, "length", default_unit("length", units))
+
+
+def _percent(value: float | None) -> str:
+    return "—" if value is None or not math.isfinite(value) else f"{value:.1f} %".replace("-", "−")
+
+
+def static_rows(statics: Mapping[str, Any], units: str) -> list[Row]:
+    """The figures of the car at rest, in the order in which the trade asks for them."""
+    length, force = default_unit("length", units), default_unit("force", units)
+    centre = statics["instant_centre"]
+    far = centre["x"] is None
+    height = "links parallel" if far else show(centre["z"], "length", length)
+    ahead = "links parallel" if far else show(centre["x"], "length", length)
+    return [
+        Row("ic_x", "Instant centre, ahead of axle", ahead, si=centre["x"]),
+        Row("ic_z", "Instant centre, above ground", height, si=centre["z"]),
+        Row("anti_squat", "Anti-squat, whole car", _percent(statics["anti_squat"]),
+            "force line against the line to the whole car's CG", statics["anti_squat"]),
+        Row("anti_squat_dynamic", "Anti-squat, sprung mass", _percent(statics["anti_squat_dynamic"]),
+            "unsprung weights taken out: at 100 % the rear springs stay still", statics["anti_squat_dynamic"]),
+        Row("rear_load", "Rear tyres at rest, both", show(statics["rear_load"], "force", force), si=statics["rear_load"]),
+        Row("front_load", "Front tyres at rest, both", show(statics["front_load"], "force", force), si=statics["front_load"]),
+        Row("rear_spring_force", "Rear springs at rest, both", show(statics["rear_spring_force"], "force", force),
+            si=statics["rear_spring_force"]),
+    ]
+
+
+def bar_lengths(revision: Revision) -> dict[str, float]:
+    """Centre-to-centre length of each bar in metres, plan angle counted: where it must be set."""
+    inputs = car_file.inputs_of(revision)
+    stance = car_file.attitude(inputs)
+    if revision.survey.linkage == "ladder-bar":
+        pin = stance.move(inputs.holes["ladder_chassis"])
+        return {"ladder": math.hypot(pin[0], pin[1] - inputs.survey["rear_tyre_radius"])}
+    lengths = {}
+    for link in ("lower", "upper"):
+        chassis = stance.move(inputs.holes[f"{link}_chassis"])
+        housing = inputs.holes[f"{link}_housing"]
+        planar = math.dist(chassis, housing)
+        lengths[link] = planar / math.cos(inputs.survey.get(f"{link}_plan_angle", 0.0))
+    return lengths
+
+
+BAR_NAMES = {"lower": "Lower bars, centre to centre", "upper": "Upper bars, centre to centre",
+             "ladder": "Ladder bar, chassis pin to axle centre"}
+
+
+def bar_rows(revision: Revision, units: str) -> list[Row]:
+    """Each bar's length, with its change against the parent revision in the note."""
+    before = {}
+    if revision.parent is not None:
+        before = bar_lengths(revision.parent)
+    rows = []
+    for name, length in bar_lengths(revision).items():
+        change = length - before[name] if name in before else 0.0
+        note = ""
+        if abs(change) > 5e-5:
+            note = f"{'longer' if change > 0 else 'shorter'} by {length_text(abs(change), units)} than on {revision.parent.label}"
+        rows.append(Row(name, BAR_NAMES[name], length_text(length, units), note, length))
+    return rows
+
+
+def statics_of(revision: Revision) -> dict[str, Any]:
+    return solver.statics(car_of(revision)).to_dict()
+
+
+def preview(revision: Revision, units: str) -> Preview:
+    """Figures at rest for a revision that need not be saved; Refused where it cannot be."""
+    statics = statics_of(revision)
+    return Preview(static_rows(statics, units), bar_rows(revision, units), provisional(revision), statics)
+
+
+def solve(input_file: Mapping[str, Any]) -> dict[str, Any]:
+    """Run one launch from its frozen car file. CannotSolve carries the words for the page."""
+    started = time.perf_counter()
+    try:
+        run = solver.launch(solver.car_from_dict(dict(input_file)))
+    except solver.CarError as error:
+        raise CannotSolve("; ".join(f"{fault.field}: {fault.message}" for fault in error.faults)) from error
+    except solver.LaunchFailed as error:
+        raise CannotSolve(f"at {error.time:.3f} s: {error.reason}") from error
+    answer = run.to_dict()
+    return {
+        "statics": answer["statics"],
+        "modes": answer["modes"],
+        "figures": answer["figures"],
+        "events": answer.get("events", []),
+        "histories": answer["histories"],
+        "solver_version": SOLVER_VERSION,
+        "seconds": time.perf_counter() - started,
+    }
