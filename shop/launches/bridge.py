@@ -12,14 +12,11 @@ from dataclasses import dataclass, field
 from typing import Any
 
 import solver
-from shop.garage.models import Survey
-from shop.garage.quantities import BRACKETS_OF
 from shop.garage.quantities import BY_KEY as SURVEY_KEYS
 from shop.quantities import Quantity
 from shop.refusals import Refused
 from shop.setups import car_file
 from shop.setups.models import Revision
-from shop.setups.quantities import BY_KEY as SETTING_KEYS
 from shop.units import default_unit, show
 
 SOLVER_VERSION = solver.SOLVER_VERSION

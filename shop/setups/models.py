@@ -16,9 +16,10 @@ class Revision(models.Model):
 
     `holes` maps bracket places to hole numbers from 1; `settings` maps the keys of
     setups/quantities.py to {"typed", "value", "unit"}; `hit_table` is null or a list of
-    [seconds, newtons]; `car_file` is the solver's input, frozen when issued.
-    The database itself refuses to change or delete an issued row (a trigger in the
-    first migrations), so no code path can.
+    [seconds, newtons], read from `hit_lines`, the table as it was typed; `car_file` is
+    the solver's input, frozen when issued. The database itself refuses to change an
+    issued row (a trigger in the migrations) and, through the launch that hangs on it,
+    to delete one, so no code path can.
     """
 
     shop = models.ForeignKey(Shop, on_delete=models.CASCADE)
@@ -32,6 +33,8 @@ class Revision(models.Model):
     holes = models.JSONField()
     settings = models.JSONField()
     hit_table = models.JSONField(null=True, blank=True)
+    parts = models.JSONField(default=dict, blank=True)
+    hit_lines = models.TextField(max_length=4000, blank=True)
     car_file = models.JSONField(null=True, blank=True)
     version = models.PositiveIntegerField(default=1)
     created_at = models.DateTimeField(auto_now_add=True)
