@@ -16,7 +16,7 @@ from shop.garage.quantities import BRACKETS, BRACKETS_OF
 from shop.garage.quantities import BY_KEY as SURVEY_KEYS
 from shop.refusals import Refused
 from shop.setups.models import Revision
-from shop.setups.quantities import BY_KEY, HIT_PEAK_G, HIT_RISE
+from shop.setups.quantities import BY_KEY, HIT_FORCE, HIT_PEAK_G, HIT_RISE, quantity_of
 from shop.units import GRAVITY, unit_of
 
 # Stops are stiff beside the springs they limit. Common practice, no source.
@@ -37,6 +37,7 @@ class Inputs:
     holes: Mapping[str, Point]
     linkage: str
     hit_table: list[list[float]] | None = None
+    hit_force: float | None = None
 
     def value(self, setting: str, surveyed: str | None = None) -> float | None:
         """A setting, or what the survey found where the revision does not set it."""
@@ -46,7 +47,8 @@ class Inputs:
 
 
 def setting_si(key: str, setting: Mapping[str, Any]) -> float:
-    return unit_of(BY_KEY[key].dimension, setting["unit"]).to_si(float(setting["value"]))
+    dimension = quantity_of(key, setting["unit"]).dimension
+    return unit_of(dimension, setting["unit"]).to_si(float(setting["value"]))
 
 
 def survey_si(survey: Survey) -> dict[str, float]:
@@ -89,7 +91,10 @@ def inputs_of(revision: Revision) -> Inputs:
         raise Refused(missing)
     settings = {key: setting_si(key, setting) for key, setting in revision.settings.items() if key in BY_KEY}
     holes = chosen_holes(revision.survey, revision.holes)
-    return Inputs(survey, settings, holes, revision.survey.linkage, revision.hit_table)
+    hit = revision.settings.get(HIT_FORCE.key)
+    by_force = hit is not None and quantity_of(HIT_FORCE.key, hit["unit"]) is HIT_FORCE
+    force = settings.pop(HIT_FORCE.key) if by_force else None
+    return Inputs(survey, settings, holes, revision.survey.linkage, revision.hit_table, force)
 
 
 @dataclass(frozen=True)
@@ -222,8 +227,10 @@ def hit_table(inputs: Inputs, mass: float) -> list[list[float]]:
     """Force at the tyres against time; a peak in g is of the car as it races."""
     if inputs.hit_table:
         return [[float(time), float(force)] for time, force in inputs.hit_table]
-    peak = inputs.settings.get("hit_peak", HIT_PEAK_G * GRAVITY)
-    return [[0.0, 0.0], [inputs.settings.get("hit_rise", HIT_RISE), peak * mass]]
+    peak = inputs.hit_force
+    if peak is None:
+        peak = mass * inputs.settings.get("hit_peak", HIT_PEAK_G * GRAVITY)
+    return [[0.0, 0.0], [inputs.settings.get("hit_rise", HIT_RISE), peak]]
 
 
 def build(revision: Revision, name: str | None = None) -> dict[str, Any]:

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from shop.quantities import Quantity
-from shop.units import GRAVITY, INCH, POUND, POUND_FORCE
+from shop.units import DIMENSIONS, GRAVITY, INCH, POUND, POUND_FORCE, Reading, ReadingError, parse_reading
 
 LB_IN = POUND_FORCE / INCH
 IN = INCH
@@ -49,7 +49,7 @@ QUANTITIES: tuple[Quantity, ...] = (
     Quantity("ballast_x", "Ballast, ahead of rear axle", "length", -80 * IN, 350 * IN, 0.5 * IN, section="ballast", optional=True),
     Quantity("ballast_z", "Ballast, above ground", "length", 0.0, 70 * IN, 0.5 * IN, section="ballast", optional=True),
     Quantity("hit_peak", "Peak of the hit", "acceleration", 0.05 * GRAVITY, 6 * GRAVITY, 0.05 * GRAVITY, section="hit",
-             help="Forward acceleration at full bite; the tyre force is this times the car's weight."),
+             help="Forward acceleration in g at full bite, or the force at the tyres in lbf or N: the unit typed decides."),
     Quantity("hit_rise", "Time to the peak", "time", 0.005, 1.0, 0.01, section="hit",
              help="From the first motion of the car to full bite."),
 )
@@ -59,3 +59,37 @@ BY_KEY = {quantity.key: quantity for quantity in QUANTITIES}
 # A stated default: a firm but ordinary launch. Common practice, no source.
 HIT_PEAK_G = 1.0
 HIT_RISE = 0.05
+
+# The hit's peak when it is typed as a force at the tyres, both together.
+HIT_FORCE = Quantity("hit_peak", "Peak of the hit", "force", 100.0, 150e3, 100.0, section="hit")
+
+
+def quantity_of(key: str, unit: str) -> Quantity:
+    """What `key` means in `unit`: only the peak of the hit goes by two dimensions."""
+    if key == HIT_FORCE.key and unit in DIMENSIONS["force"]:
+        return HIT_FORCE
+    return BY_KEY[key]
+
+
+def units_for(key: str) -> list[str]:
+    """Every unit in which a setting may be typed."""
+    also = list(DIMENSIONS["force"]) if key == HIT_FORCE.key else []
+    return list(DIMENSIONS[BY_KEY[key].dimension]) + also
+
+
+def read_setting(key: str, typed: str, unit: str) -> Reading:
+    """The reading within range; a unit typed with the number wins, also from g to a force."""
+    meant = quantity_of(key, unit)
+    if key == HIT_FORCE.key:
+        for one in (BY_KEY[key], HIT_FORCE):
+            if _names_a_unit_of(one.dimension, typed):
+                return one.read(typed, "")
+    return meant.read(typed, unit)
+
+
+def _names_a_unit_of(dimension: str, typed: str) -> bool:
+    try:
+        parse_reading(typed, "", dimension)
+    except ReadingError:
+        return False
+    return True
