@@ -235,13 +235,17 @@ def hit_table(inputs: Inputs, mass: float) -> list[list[float]]:
 
 def build(revision: Revision, name: str | None = None) -> dict[str, Any]:
     """The car file of a revision, issued or not, saved or not. Refused names the field at fault."""
-    inputs = inputs_of(revision)
+    return build_from(inputs_of(revision), name or f"{revision.car}, {revision.label}")
+
+
+def build_from(inputs: Inputs, name: str) -> dict[str, Any]:
+    """The car file of inputs already read: what a study of many choices calls for each."""
     stance = attitude(inputs)
     mass, (cg_x, cg_z), inertia = _whole_car(inputs, stance)
     return {
         "format": "launch-ledger/car",
         "version": 1,
-        "name": name or f"{revision.car}, {revision.label}",
+        "name": name,
         "wheelbase": inputs.survey["wheelbase"],
         "mass": mass,
         "cg": {"x": cg_x, "z": cg_z},
