@@ -93,7 +93,8 @@ def check(revision: Revision) -> dict[str, Any]:
 def provisional(revision: Revision) -> list[Quantity]:
     """Typical values in use that nobody measured, in the order of the survey."""
     typical = {m.key for m in revision.survey.measurements.all() if m.origin == "typical"}
-    overridden = {key for key in revision.settings if key in typical}
+    # A setting somebody typed replaces the typical value; one merely carried over does not.
+    overridden = {key for key, setting in revision.settings.items() if "origin" not in setting}
     links = revision.survey.linkage
     return [q for key, q in SURVEY_KEYS.items() if key in typical - overridden and links in q.linkages]
 
