@@ -1,0 +1,1 @@
+"""The Django project: settings, addresses, the worker, and what starts and watches them."""

@@ -1,0 +1,89 @@
+"""The Celery application: `from shop.config.celery import app`, then `@app.task`.
+
+A message carries a job's id and nothing else. Whatever a broker or a dying worker does to messages, the job row
+decides: a worker claims it, and the sweep below sends strays again.
+"""
+
+from __future__ import annotations
+
+import logging
+import os
+from typing import Any
+
+os.environ.setdefault("DJANGO_SETTINGS_MODULE", "shop.config.settings")
+
+from celery import Celery, signals  # noqa: E402
+from django.conf import settings  # noqa: E402
+from kombu.transport import TRANSPORT_ALIASES  # noqa: E402
+
+from shop.config import folder_broker, lifeline  # noqa: E402
+
+log = logging.getLogger(__name__)
+
+SWEEP_EVERY = 10.0  # seconds
+
+TRANSPORT_ALIASES["folder"] = "shop.config.folder_broker:Transport"
+
+
+def broker_options(url: str) -> dict[str, Any]:
+    if url.startswith("folder:"):
+        return folder_broker.options(settings.QUEUE_DIR)
+    # What a dead worker held goes back after ten minutes, looked for every ten seconds; the sweep is far sooner.
+    return {"visibility_timeout": 600, "unacked_restore_interval": 10, "unacked_restore_throttle": 1}
+
+
+app = Celery("launch-ledger")
+app.conf.update(
+    broker_url=settings.BROKER_URL,
+    broker_transport_options=broker_options(settings.BROKER_URL),
+    broker_connection_retry_on_startup=True,
+    task_ignore_result=True,
+    task_serializer="json",
+    accept_content=["json"],
+    task_acks_late=True,
+    task_reject_on_worker_lost=True,
+    worker_prefetch_multiplier=1,
+    worker_concurrency=2,
+    worker_max_tasks_per_child=500,
+    worker_lost_wait=1.0,
+    worker_proc_alive_timeout=120.0,
+    worker_enable_remote_control=False,  # cancelling goes through the job row
+    worker_send_task_events=False,
+    worker_hijack_root_logger=False,
+    task_publish_retry_policy={"max_retries": 2, "interval_start": 0, "interval_step": 0.2, "interval_max": 0.5},
+)
+app.autodiscover_tasks()
+
+
+@signals.worker_init.connect
+def prepare(**_: Any) -> None:
+    """Compile the solver before the pool forks, so that no launch waits for it and both processes share it."""
+    lifeline.hold()
+    try:
+        import solver
+
+        solver.warm()
+    except Exception:
+        log.exception("the solver could not be made ready ahead of its first launch")
+
+
+@signals.worker_ready.connect
+def begin_sweeping(sender: Any, **_: Any) -> None:
+    sweep()
+    sender.timer.call_repeatedly(SWEEP_EVERY, sweep)
+
+
+def sweep() -> None:
+    """Send stray jobs again. Whatever goes wrong is logged: the next sweep is ten seconds away."""
+    from django.db import connections
+
+    try:
+        from shop.launches.sweep import return_strays
+
+        returned = return_strays()
+        if returned:
+            log.warning("%s stray jobs were sent again", returned)
+    except Exception:
+        log.exception("the sweep for stray jobs failed")
+    finally:
+        connections.close_all()  # no connection of this process may be open when the pool forks

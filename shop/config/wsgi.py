@@ -1,0 +1,9 @@
+"""What a web server calls."""
+
+import os
+
+os.environ.setdefault("DJANGO_SETTINGS_MODULE", "shop.config.settings")
+
+from django.core.wsgi import get_wsgi_application  # noqa: E402
+
+application = get_wsgi_application()
