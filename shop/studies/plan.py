@@ -1,0 +1,158 @@
+"""Which choices a study looks at: axes, how they combine, and choice number n of them.
+
+A plan is plain data, so that a study can be run again from its stored input:
+{"mode": "every" | "one" | "sample", "axes": [{"key", "values"}], "size", "seed"}.
+A key is a bracket place (values: hole numbers) or a setting of a revision (values: SI).
+Choices are numbered from 0; number n is worked out, never looked up.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator, Mapping
+from dataclasses import dataclass, field
+from typing import Any
+
+import numpy as np
+from scipy.stats import qmc
+
+from shop.garage.quantities import BRACKETS
+from shop.refusals import Refused
+from shop.setups.quantities import BY_KEY
+
+MOST_CHOICES = 50_000
+MOST_VALUES = 200
+MODES = {
+    "every": "every combination",
+    "one": "one at a time",
+    "sample": "a spread of samples over all of them",
+}
+
+Choice = dict[str, float | int]
+
+
+@dataclass(frozen=True)
+class Axis:
+    """One thing that is varied, and the values it takes."""
+
+    key: str
+    values: tuple[float, ...]
+
+    @property
+    def label(self) -> str:
+        return BRACKETS[self.key] if self.is_hole else BY_KEY[self.key].label
+
+    @property
+    def is_hole(self) -> bool:
+        return self.key in BRACKETS
+
+
+@dataclass(frozen=True)
+class Plan:
+    """Axes and how they are combined; `base` is the revision's own value on each axis."""
+
+    mode: str
+    axes: tuple[Axis, ...]
+    base: Mapping[str, float] = field(default_factory=dict)
+    size: int = 0
+    seed: int = 1
+
+    @property
+    def combinations(self) -> int:
+        """All there would be, however the plan picks from them."""
+        return math.prod(len(axis.values) for axis in self.axes)
+
+    def __len__(self) -> int:
+        if self.mode == "every":
+            return self.combinations
+        if self.mode == "one":
+            return 1 + sum(len(self._others(axis)) for axis in self.axes)
+        return self.size
+
+    def _others(self, axis: Axis) -> list[float]:
+        own = self.base.get(axis.key)
+        return [value for value in axis.values if own is None or not math.isclose(value, own, rel_tol=1e-9)]
+
+    def between(self, start: int, stop: int) -> Iterator[Choice]:
+        """Choices number `start` up to, not including, `stop`."""
+        if self.mode == "every":
+            yield from (self._combination(number) for number in range(start, stop))
+        elif self.mode == "one":
+            yield from self._one_at_a_time()[start:stop]
+        else:
+            yield from self._samples()[start:stop]
+
+    def _combination(self, number: int) -> Choice:
+        choice: Choice = {}
+        for axis in reversed(self.axes):
+            number, digit = divmod(number, len(axis.values))
+            choice[axis.key] = axis.values[digit]
+        return {axis.key: choice[axis.key] for axis in self.axes}
+
+    def _one_at_a_time(self) -> list[Choice]:
+        own = {axis.key: self.base[axis.key] for axis in self.axes if axis.key in self.base}
+        return [own] + [{**own, axis.key: value} for axis in self.axes for value in self._others(axis)]
+
+    def _samples(self) -> list[Choice]:
+        """A scrambled Sobol' sequence over the axes' values: seeded, so it can be drawn again."""
+        sampler = qmc.Sobol(len(self.axes), scramble=True, rng=np.random.default_rng(self.seed))
+        # Sobol' points keep their balance in powers of two; draw one and use the front of it.
+        points = sampler.random_base2(max(1, math.ceil(math.log2(max(2, self.size)))))[: self.size]
+        counts = np.array([len(axis.values) for axis in self.axes])
+        digits = np.minimum((points * counts).astype(int), counts - 1)
+        return [
+            {axis.key: axis.values[digit] for axis, digit in zip(self.axes, row, strict=True)} for row in digits
+        ]
+
+    def to_dict(self) -> dict[str, Any]:
+        return {
+            "mode": self.mode,
+            "axes": [{"key": axis.key, "values": list(axis.values)} for axis in self.axes],
+            "base": dict(self.base),
+            "size": self.size,
+            "seed": self.seed,
+        }
+
+
+def read_plan(data: Mapping[str, Any]) -> Plan:
+    """A plan from plain data; Refused in words when it asks for nothing, or for too much."""
+    mode = data.get("mode", "every")
+    if mode not in MODES:
+        raise Refused({"mode": f"“{mode}” is not a way to combine; choose {', '.join(MODES.values())}"})
+    axes = tuple(_read_axis(axis) for axis in data.get("axes", []))
+    keys = [axis.key for axis in axes]
+    if len(set(keys)) < len(keys):
+        raise Refused({"axes": "the same thing is varied twice"})
+    plan = Plan(mode, axes, data.get("base", {}), int(data.get("size") or 0), int(data.get("seed") or 1))
+    if not axes or all(len(axis.values) < 2 for axis in axes):
+        raise Refused({"axes": "nothing is varied: choose at least one bracket or setting with two values or more"})
+    if mode == "sample" and not 2 <= plan.size <= MOST_CHOICES:
+        raise Refused({"size": f"a sample has 2 to {MOST_CHOICES:,} choices; “{plan.size:,}” was asked for"})
+    if len(plan) > MOST_CHOICES:
+        raise Refused({"axes": _too_many(plan)})
+    return plan
+
+
+def _read_axis(data: Mapping[str, Any]) -> Axis:
+    key = data.get("key", "")
+    if key not in BRACKETS and key not in BY_KEY:
+        raise Refused({"axes": f"“{key}” is not something a study can vary"})
+    try:
+        values = tuple(float(value) for value in data.get("values", []))
+    except (TypeError, ValueError) as error:
+        raise Refused({key: "the values to try must be numbers"}) from error
+    if not all(map(math.isfinite, values)):
+        raise Refused({key: "the values to try must be finite numbers"})
+    if len(values) > MOST_VALUES:
+        raise Refused({key: f"{len(values):,} values to try; at most {MOST_VALUES} fit on one axis"})
+    if key in BRACKETS:
+        return Axis(key, tuple(int(value) for value in values))
+    return Axis(key, values)
+
+
+def _too_many(plan: Plan) -> str:
+    widest = max(plan.axes, key=lambda axis: len(axis.values))
+    return (
+        f"{len(plan):,} combinations; at most {MOST_CHOICES:,} are solved in one study. Narrow it: fewer values of "
+        f"“{widest.label}” ({len(widest.values)} now), fewer axes, or a sample of up to {MOST_CHOICES:,} of them"
+    )
