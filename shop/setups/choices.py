@@ -23,6 +23,7 @@ class Choices:
     settings: dict[str, Setting]
     hit_table: list[list[float]] | None = None
     hit_lines: str = ""
+    hit_lines_unit: str = ""
     reason: str = ""
     notes: str = ""
 
@@ -32,14 +33,14 @@ class Choices:
         return revision
 
     def fields(self) -> dict[str, Any]:
-        names = ("holes", "settings", "hit_table", "hit_lines", "reason", "notes")
+        names = ("holes", "settings", "hit_table", "hit_lines", "hit_lines_unit", "reason", "notes")
         return {name: getattr(self, name) for name in names}
 
     @classmethod
     def of(cls, revision: Revision) -> Choices:
         return cls(
             dict(revision.holes), dict(revision.settings), revision.hit_table,
-            revision.hit_lines, revision.reason, revision.notes,
+            revision.hit_lines, revision.hit_lines_unit, revision.reason, revision.notes,
         )
 
 
@@ -102,10 +103,9 @@ def beginning(survey: Survey, parent: Revision | None) -> Choices:
         place: _hole(parent.holes.get(place) if parent else None, count)
         for place, count in surveyed.hole_counts.items()
     }
-    return Choices(
-        holes, settings,
-        parent.hit_table if parent else None, parent.hit_lines if parent else "",
-    )
+    if parent is None:
+        return Choices(holes, settings)
+    return Choices(holes, settings, parent.hit_table, parent.hit_lines, parent.hit_lines_unit)
 
 
 def _hole(before: int | None, count: int) -> int:

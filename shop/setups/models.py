@@ -35,6 +35,7 @@ class Revision(models.Model):
     hit_table = models.JSONField(null=True, blank=True)
     parts = models.JSONField(default=dict, blank=True)
     hit_lines = models.TextField(max_length=4000, blank=True)
+    hit_lines_unit = models.CharField(max_length=12, blank=True)
     car_file = models.JSONField(null=True, blank=True)
     version = models.PositiveIntegerField(default=1)
     created_at = models.DateTimeField(auto_now_add=True)
