@@ -10,7 +10,7 @@ from shop.garage.models import Measurement, Survey
 from shop.garage.quantities import BRACKETS_OF
 from shop.setups.models import Revision
 from shop.setups.quantities import FROM_SURVEY, HIT_PEAK_G, HIT_RISE, QUANTITIES
-from shop.units import Reading, unit_of
+from shop.units import DIMENSIONS, Reading, unit_of
 
 Setting = dict[str, Any]
 
@@ -68,16 +68,23 @@ class Surveyed:
         setting = {"typed": found.typed, "value": found.value, "unit": found.unit}
         return {**setting, "origin": "typical"} if found.origin == "typical" else setting
 
+    def typical(self, key: str) -> Setting | None:
+        """The value in use while nobody has measured or chosen one."""
+        found = self.setting(key) or _stated_default(key)
+        return found if found and "origin" in found else None
+
     def as_setting(self, key: str, reading: Reading) -> Setting:
         """A reading as it is stored; typing the survey's typical value again does not make it measured."""
         setting: Setting = {"typed": reading.typed, "value": reading.value, "unit": reading.unit}
-        found = self.setting(key) or _stated_default(key)
-        if found and "origin" in found and _same(found, reading):
+        typical = self.typical(key)
+        if typical and _same(typical, reading):
             setting["origin"] = "typical"
         return setting
 
 
 def _same(setting: Setting, reading: Reading) -> bool:
+    if setting["unit"] not in DIMENSIONS[reading.dimension]:
+        return False
     before = unit_of(reading.dimension, setting["unit"]).to_si(setting["value"])
     return abs(before - reading.si) <= 1e-9 * max(abs(before), 1e-9)
 

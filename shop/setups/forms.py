@@ -41,24 +41,28 @@ class RevisionForm(forms.Form):
         for quantity in QUANTITIES:
             self.fields[quantity.key] = forms.CharField(required=False, max_length=200)
             self.fields[f"{quantity.key}_unit"] = forms.CharField(required=False, max_length=20)
-        self.choices: Choices | None = None
+        self.readable = Choices({}, {})
 
     def clean(self) -> dict[str, Any]:
         cleaned = super().clean() or {}
         holes = {place: self._hole(place, count) for place, count in self.surveyed.hole_counts.items()}
         settings = {quantity.key: self._setting(quantity.key) for quantity in QUANTITIES}
         table = self._table()
-        if not self.errors:
-            self.choices = Choices(
-                {place: hole for place, hole in holes.items() if hole is not None},
-                {key: setting for key, setting in settings.items() if setting is not None},
-                table,
-                cleaned.get("hit_lines", ""),
-                cleaned.get("hit_lines_unit", ""),
-                cleaned.get("reason", ""),
-                cleaned.get("notes", ""),
-            )
+        # Kept also beside faults: the page marks what changed while one field is still half typed.
+        self.readable = Choices(
+            {place: hole for place, hole in holes.items() if hole is not None},
+            {key: setting for key, setting in settings.items() if setting is not None},
+            table,
+            cleaned.get("hit_lines", ""),
+            cleaned.get("hit_lines_unit", ""),
+            cleaned.get("reason", ""),
+            cleaned.get("notes", ""),
+        )
         return cleaned
+
+    @property
+    def choices(self) -> Choices | None:
+        return self.readable if self.is_valid() else None
 
     def _hole(self, place: str, count: int) -> int | None:
         typed = self.cleaned_data.get(place, "").strip()

@@ -48,3 +48,8 @@ def _read_line(line: str, force_unit: str) -> list[float]:
         most = show(HIT_FORCE.most, "force", force.unit)
         raise ReadingError(f"force {force.typed} is outside 0 to {most}")
     return [time.si, force.si]
+
+
+def table_text(table: list[list[float]], force_unit: str) -> str:
+    """`0 s 0 lbf, 0.05 s 3,200 lbf`: the whole table in a line."""
+    return ", ".join(f"{time:g} s {show(force, 'force', force_unit)}" for time, force in table)

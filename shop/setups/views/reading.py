@@ -1,0 +1,73 @@
+"""Reading one revision, and taking its car file along."""
+
+from __future__ import annotations
+
+import json
+import re
+
+from django.http import Http404, HttpRequest, HttpResponse
+from django.shortcuts import get_object_or_404, redirect, render
+
+from shop.launches import bridge
+from shop.launches.models import Job
+from shop.people.access import shop_view
+from shop.people.permissions import WRITE
+from shop.refusals import Refused
+from shop.setups.differences import hole_changes, setting_changes, survey_changes
+from shop.setups.figures import beside, figures_at_rest
+from shop.setups.models import Revision
+from shop.setups.setting_rows import groups_of
+
+
+@shop_view()
+def revision(request: HttpRequest, pk: int) -> HttpResponse:
+    """What is on the car, why, by whom and when; for a draft, its form instead."""
+    chosen = get_object_or_404(
+        Revision.objects.select_related("car__customer", "survey", "parent__survey", "parent__car", "author"), pk=pk
+    )
+    if not chosen.issued:
+        return redirect("setups:edit", pk)
+    parent = chosen.parent
+    context = {
+        "revision": chosen,
+        "car": chosen.car,
+        "settings": groups_of(chosen, parent),
+        "changes": _changes(parent, chosen) if parent else [],
+        "job": chosen.jobs.filter(kind="launch").order_by("-id").first(),
+        "children": chosen.children.filter(number__isnull=False).order_by("number"),
+        "may_write": request.member.may(WRITE),
+        "States": Job,
+        **_at_rest(chosen, request.shop.units),
+    }
+    return render(request, "setups/revision.html", context)
+
+
+@shop_view()
+def download_car_file(request: HttpRequest, pk: int) -> HttpResponse:
+    """The solver's input of an issued revision, exactly as frozen."""
+    chosen = get_object_or_404(Revision.objects.select_related("car"), pk=pk)
+    if not chosen.issued:
+        raise Http404("a draft has no car file yet")
+    name = re.sub(r"[^a-z0-9]+", "-", f"{chosen.car} {chosen.label}".lower()).strip("-")
+    response = HttpResponse(
+        json.dumps(chosen.car_file, indent=2, ensure_ascii=False) + "\n", content_type="application/json; charset=utf-8"
+    )
+    response["Content-Disposition"] = f'attachment; filename="{name}.json"'
+    return response
+
+
+def _changes(parent: Revision, chosen: Revision) -> list:
+    return [
+        *hole_changes(parent, chosen),
+        *setting_changes(parent, chosen),
+        *survey_changes(parent.survey, chosen.survey),
+    ]
+
+
+def _at_rest(chosen: Revision, units: str) -> dict:
+    try:
+        figures = figures_at_rest(chosen, units)
+        before = figures_at_rest(chosen.parent, units) if chosen.parent else None
+        return {"groups": beside(before, figures, units), "figures": figures, "scene": bridge.scene_of(chosen, chosen.holes)}
+    except Refused as refused:
+        return {"groups": [], "figures": None, "scene": None, "fault": str(refused)}
