@@ -8,8 +8,7 @@ from solver.checks import not_negative, positive
 TYPICAL_DYNAMIC_INDEX = 0.9
 TYPICAL_INDEX_SPREAD = 0.2
 TYPICAL_SOURCE = (
-    "typical value, not measured: k^2 = 0.9 a b with a spread of 0.2 either way"
-    " (common practice, no source)"
+    "typical value, not measured: k^2 = 0.9 a b with a spread of 0.2 either way (common practice, no source)"
 )
 
 

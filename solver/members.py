@@ -9,15 +9,19 @@ from dataclasses import dataclass
 
 from solver.checks import between, not_negative, positive
 
-# End fixity C of Euler's formula; theory [pub]. A bar on rod ends is pinned at both.
+# End fixity C of Euler's formula (column theory). A bar on rod ends is pinned at both.
 END_FIXITY = {"pin-pin": 1.0, "fixed-pin": 2.0, "fixed-fixed": 4.0, "fixed-free": 0.25}
 
 CAUTIONS = (
-    "These loads come from a planar model: side load, kerbs, wheel shake, a broken part and a"
-    " crash are not in them.",
+    (
+        "These loads come from a planar model: side load, kerbs, wheel shake, a broken part and a"
+        " crash are not in them."
+    ),
     "The rulebook in force and local codes come first, whatever is computed here.",
-    "Have bars, brackets, welds and threads chosen and made by a qualified fabricator, and use the"
-    " rating on the maker's sheet of the very part.",
+    (
+        "Have bars, brackets, welds and threads chosen and made by a qualified fabricator, and use the"
+        " rating on the maker's sheet of the very part."
+    ),
     "A factor above one is not a promise: look for bends, cracks and worn rod ends before every event.",
 )
 

@@ -110,6 +110,8 @@ def _doubts(before, after):
     if abs(after - before) < 3.0:
         return ()
     return (
-        f"Cross weight goes from {before:.1f} to {after:.1f} percent: the car will pull to one side off"
-        " the power and under the brakes. Make the change in steps.",
+        (
+            f"Cross weight goes from {before:.1f} to {after:.1f} percent: the car will pull to one side off"
+            " the power and under the brakes. Make the change in steps."
+        ),
     )

@@ -23,9 +23,7 @@ from solver.roll_stiffness import front_share, stiffness_on_tyres
 from solver.weights import weigh
 
 GRAVITY = 9.80665
-CAUTION = (
-    "Quasi-static: roll inertia, dampers and side forces are not in it, so short peaks are only near the truth."
-)
+CAUTION = "Quasi-static: roll inertia, dampers and side forces are not in it, so short peaks are only near the truth."
 
 
 @dataclass(frozen=True)
@@ -64,7 +62,9 @@ class RollHistory:
     caution: str = CAUTION
 
 
-def roll_history(t, front_load, rear_load, shaft_torque, corners, front, rear, rotation="standard", gravity=GRAVITY):
+def roll_history(
+    t, front_load, rear_load, shaft_torque, corners, front, rear, rotation="standard", gravity=GRAVITY
+):
     """Left and right tyre loads over a planar run.
 
     Parameters
@@ -90,7 +90,9 @@ def roll_history(t, front_load, rear_load, shaft_torque, corners, front, rear, r
     """
     one_of("the rotation", rotation, ("standard", "reverse"))
     weigh(corners)
-    time, ahead, behind, torque = (np.asarray(series, dtype=float) for series in (t, front_load, rear_load, shaft_torque))
+    time, ahead, behind, torque = (
+        np.asarray(series, dtype=float) for series in (t, front_load, rear_load, shaft_torque)
+    )
     if not time.ndim == 1 or not time.shape == ahead.shape == behind.shape == torque.shape:
         raise ValueError("times, axle loads and torque must be of one length.")
     turned = torque if rotation == "standard" else -torque

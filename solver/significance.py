@@ -73,7 +73,9 @@ def welch_from_summaries(first, second):
             raise ValueError(f"the {name} group has {group.count} pass: two or more are needed for a t test.")
         not_negative(f"the deviation of the {name} group", group.deviation)
     if first.deviation == 0.0 and second.deviation == 0.0:
-        raise ValueError("no pass differs from another within its group: there is no scatter to compare with.")
+        raise ValueError(
+            "no pass differs from another within its group: there is no scatter to compare with."
+        )
     result = stats.ttest_ind_from_stats(
         first.mean, first.deviation, first.count, second.mean, second.deviation, second.count, equal_var=False
     )

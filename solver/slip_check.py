@@ -1,5 +1,6 @@
 """Whether a typed-in slip can be right."""
 
+import itertools
 from dataclasses import dataclass
 
 from solver.timing import MARKS, TRAPPED, mean_acceleration
@@ -47,7 +48,7 @@ def check_slip(slip):
     if faults:
         return SlipCheck(faults=tuple(faults), doubts=())
     order = sorted(slip.times, key=MARKS.get)
-    for first, second in zip(order, order[1:], strict=False):
+    for first, second in itertools.pairwise(order):
         if slip.times[second] <= slip.times[first]:
             faults.append(
                 f"The time at {second} is {slip.times[second]:.3f} s: it must be above that at"
@@ -83,8 +84,10 @@ def _too_quick(slip, order):
         pull = mean_acceleration(MARKS[name], slip.times[name], slip.rollout)
         if pull > GREATEST_LAUNCH:
             return [
-                f"{slip.times[name]:.3f} s to {name} takes {pull / GRAVITY:.1f} g all the way:"
-                " no car does that."
+                (
+                    f"{slip.times[name]:.3f} s to {name} takes {pull / GRAVITY:.1f} g all the way:"
+                    " no car does that."
+                )
             ]
     return []
 
@@ -103,7 +106,7 @@ def _slowing(stretches):
     return [
         f"From {later.start} to {later.end} the car is slower on average than before it: did the"
         " driver lift, or is a time mistyped?"
-        for earlier, later in zip(stretches, stretches[1:], strict=False)
+        for earlier, later in itertools.pairwise(stretches)
         if later.speed < earlier.speed
     ]
 
@@ -116,7 +119,9 @@ def _traps(slip, stretches):
             continue
         index, stretch = ends[name]
         if speed < stretch.speed:
-            doubts.append(f"The speed at {name} is below the mean from {stretch.start}: check it, and its unit.")
+            doubts.append(
+                f"The speed at {name} is below the mean from {stretch.start}: check it, and its unit."
+            )
             continue
         # A car pulls less at the far end than at the near one, so it gains at most
         # what constant acceleration would: v1 <= 2 mean - v0, and v0 >= the mean before.

@@ -5,6 +5,7 @@ front tyre has rolled out of the stage beam, and the speed on the slip is the
 mean over the last 66 ft before the mark.
 """
 
+import itertools
 import math
 from dataclasses import dataclass
 
@@ -18,7 +19,13 @@ FOOT = 0.3048
 # source; shallow or deep staging and tyre size move it by some inches.
 TYPICAL_ROLLOUT = 12 * 0.0254
 TRAP_LENGTH = 66 * FOOT
-MARKS = {"60 ft": 60 * FOOT, "330 ft": 330 * FOOT, "660 ft": 660 * FOOT, "1000 ft": 1000 * FOOT, "1320 ft": 1320 * FOOT}
+MARKS = {
+    "60 ft": 60 * FOOT,
+    "330 ft": 330 * FOOT,
+    "660 ft": 660 * FOOT,
+    "1000 ft": 1000 * FOOT,
+    "1320 ft": 1320 * FOOT,
+}
 TRAPPED = ("660 ft", "1000 ft", "1320 ft")
 
 
@@ -218,5 +225,5 @@ def increments(slip, marks=None):
     order = sorted(slip.times, key=known.get)
     return {
         f"{first} to {second}": number(f"the time at {second}", slip.times[second]) - slip.times[first]
-        for first, second in zip(order, order[1:], strict=False)
+        for first, second in itertools.pairwise(order)
     }

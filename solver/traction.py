@@ -68,7 +68,12 @@ def load_transfer(mass, acceleration, cg_height, wheelbase):
     """
     height = positive("the CG height", cg_height, "m")
     length = positive("the wheelbase", wheelbase, "m")
-    return positive("the mass of the car", mass, "kg") * number("the acceleration", acceleration) * height / length
+    return (
+        positive("the mass of the car", mass, "kg")
+        * number("the acceleration", acceleration)
+        * height
+        / length
+    )
 
 
 def axle_loads(mass, acceleration, cg_x, cg_height, wheelbase, gravity=GRAVITY):
@@ -189,5 +194,7 @@ def neutral_slopes(cg_height, wheelbase, front_rate, rear_rate):
         When a value is not above zero.
     """
     slope = positive("the CG height", cg_height, "m") / positive("the wheelbase", wheelbase, "m")
-    ratio = positive("the rear wheel rate", rear_rate, "N/m") / positive("the front wheel rate", front_rate, "N/m")
+    ratio = positive("the rear wheel rate", rear_rate, "N/m") / positive(
+        "the front wheel rate", front_rate, "N/m"
+    )
     return NeutralSlopes(no_squat=slope, no_pitch=(1.0 + ratio) * slope)

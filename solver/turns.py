@@ -16,8 +16,10 @@ from solver.checks import not_negative, positive
 from solver.weights import CORNER_NAMES, Corners, weigh
 
 CAUTIONS = (
-    "Level the pads, set tyre pressures, put the driver's weight in the seat and bounce the"
-    " car before every reading.",
+    (
+        "Level the pads, set tyre pressures, put the driver's weight in the seat and bounce the"
+        " car before every reading."
+    ),
     "Disconnect one end of each anti-roll bar while the car is scaled, unless its rate is given here.",
     "The model has no friction and small movements only: turn, roll the car off and on, weigh again.",
 )
@@ -184,7 +186,9 @@ def _result(measured, target, change, travel, rise, axles, keep_height):
     after = measured.as_array() + change
     for name, value in zip(CORNER_NAMES, after, strict=True):
         if value < 0.0:
-            raise ValueError(f"the {name.replace('_', ' ')} tyre would leave its scale: the target asks too much.")
+            raise ValueError(
+                f"the {name.replace('_', ' ')} tyre would leave its scale: the target asks too much."
+            )
     return SeatTurns(
         turns=Corners.from_array(travel / pitches),
         seat_travel=Corners.from_array(travel),

@@ -29,9 +29,7 @@ class Corners:
 
     def as_array(self):
         """The four numbers as an array of shape (4,), in the order FL, FR, RL, RR."""
-        return np.array(
-            [self.front_left, self.front_right, self.rear_left, self.rear_right], dtype=float
-        )
+        return np.array([self.front_left, self.front_right, self.rear_left, self.rear_right], dtype=float)
 
 
 @dataclass(frozen=True)
@@ -100,7 +98,7 @@ def weigh(corners):
         not_negative(f"the {name.replace('_', ' ')} scale reading", getattr(corners, name), "kg")
         for name in CORNER_NAMES
     ]
-    front_left, front_right, rear_left, rear_right = values
+    front_left, front_right, rear_left, _rear_right = values
     total = positive("the total of the four scale readings", sum(values), "kg")
     front, left = front_left + front_right, front_left + rear_left
     cross = front_right + rear_left

@@ -32,9 +32,7 @@ def test_hibbelers_tube():
     assert strut.critical / 1e3 == pytest.approx(228.1995, abs=5e-5)
 
 
-@pytest.mark.parametrize(
-    ("length", "formula", "load"), [(22.0, "Johnson", 20970.6), (60.0, "Euler", 4601.0)]
-)
+@pytest.mark.parametrize(("length", "formula", "load"), [(22.0, "Johnson", 20970.6), (60.0, "Euler", 4601.0)])
 def test_link_tube(length, formula, load):
     # Tube 1.25 x 0.095 in, E 29e6, Sy 75 ksi, pin-pin [calc].
     strut = column(TUBE, length * INCH, STEEL)
@@ -190,7 +188,10 @@ def test_per_side():
 @pytest.mark.parametrize(
     ("call", "words"),
     [
-        (lambda: check_bar(Bar("upper bar", 0.0, 0.03, 0.002, STEEL), 0, 1), "upper bar: the length of the bar is 0 m"),
+        (
+            lambda: check_bar(Bar("upper bar", 0.0, 0.03, 0.002, STEEL), 0, 1),
+            "upper bar: the length of the bar is 0 m",
+        ),
         (lambda: check_bar(LOWER, -1.0, 0.0), "lower bar: the tension is -1 N"),
         (lambda: column(TUBE, 1.0, STEEL, fixity=9.0), "end fixity is 9"),
         (lambda: Allowances(dynamic=0.5), "dynamic allowance is 0.5"),

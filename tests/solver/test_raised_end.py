@@ -144,7 +144,9 @@ def test_fit_uncertainty_agrees_with_linear_regression():
 
 
 def test_fit_says_what_iso_10392_asks_for():
-    fitted = fit_raised_steps([RaisedStep(0.0, "rear", 600.0), RaisedStep(0.2, "rear", 608.0)], 1300.0, 2.7, 0.3, 0.4)
+    fitted = fit_raised_steps(
+        [RaisedStep(0.0, "rear", 600.0), RaisedStep(0.2, "rear", 608.0)], 1300.0, 2.7, 0.3, 0.4
+    )
     assert len(fitted.doubts) == 3
     assert math.isnan(fitted.height_uncertainty)
     with pytest.raises(ValueError, match="all at one angle"):

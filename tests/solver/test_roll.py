@@ -60,7 +60,9 @@ def test_share_against_a_balance_of_chassis_and_axles(front, rear):
     chassis, rear_axle, front_axle = np.linalg.solve(matrix, [1000.0, -1000.0, 0.0])
     assert front_share(front, rear) == pytest.approx(tf * front_axle / 1000.0, rel=1e-6)
     assert -tr * rear_axle == pytest.approx(tf * front_axle, rel=1e-4)
-    assert run([1000.0], [5000.0], [7500.0], front=front, rear=rear).roll[0] == pytest.approx(chassis, rel=1e-6)
+    assert run([1000.0], [5000.0], [7500.0], front=front, rear=rear).roll[0] == pytest.approx(
+        chassis, rel=1e-6
+    )
 
 
 def test_loads_and_couple_are_kept():
@@ -96,7 +98,9 @@ def test_no_front_roll_stiffness_no_difference():
 def test_roll_stiffness_of_springs():
     # k b^2/2 for a pair alike; energy of two springs in a pure couple for an unlike pair [calc].
     assert roll_stiffness((50000.0, 50000.0), 1.0, 1.0) == pytest.approx(25000.0)
-    assert roll_stiffness((50000.0, 50000.0), 0.9, 1.0, bar_stiffness=900.0) == pytest.approx(25000 * 0.81 + 900)
+    assert roll_stiffness((50000.0, 50000.0), 0.9, 1.0, bar_stiffness=900.0) == pytest.approx(
+        25000 * 0.81 + 900
+    )
     left, right, base = 40000.0, 60000.0, 1.1
     heave = (left - right) / (left + right) * base / 2  # rise that leaves no net spring force
     force = right * (base / 2 + heave)

@@ -25,7 +25,13 @@ MPH = 0.44704
 @pytest.mark.parametrize(
     ("feet", "seconds", "mph"),
     # Constant 1 g (32.174 ft/s^2), no rollout [calc].
-    [(60, 1.93125, None), (330, 4.52918, None), (660, 6.40523, 140.5103), (1000, 7.88429, None), (1320, 9.05836, 198.7115)],
+    [
+        (60, 1.93125, None),
+        (330, 4.52918, None),
+        (660, 6.40523, 140.5103),
+        (1000, 7.88429, None),
+        (1320, 9.05836, 198.7115),
+    ],
 )
 def test_constant_one_g(feet, seconds, mph):
     run = steady_run(ONE_G, feet * FOOT)

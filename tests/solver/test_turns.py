@@ -58,7 +58,9 @@ def independent_loads(front, rear, travel):
 @pytest.mark.parametrize("keep_height", [True, False])
 def test_turned_seats_give_the_expected_scales(keep_height, bar):
     rear = dataclasses.replace(REAR, bar_rate=bar)
-    result = seat_turns(MEASURED, target_from_cross(MEASURED, 50.0), LENGTH, FRONT, rear, keep_height=keep_height)
+    result = seat_turns(
+        MEASURED, target_from_cross(MEASURED, 50.0), LENGTH, FRONT, rear, keep_height=keep_height
+    )
     loads, rise = independent_loads(FRONT, rear, result.seat_travel.as_array())
     assert loads == pytest.approx(result.corner_weights.as_array(), abs=2e-3)
     assert rise == pytest.approx(result.height_change.as_array(), abs=2e-6)

@@ -93,7 +93,10 @@ def test_pitch_inertia_of_a_cut_block_is_that_of_the_whole():
 
 
 def test_known_own_inertia_replaces_the_block():
-    parts = [Component("engine", 200.0, 2.0, 0.5, 0.7, 0.6, own_inertia=11.0), Component("ballast", 1.0, 2.0, 0.5)]
+    parts = [
+        Component("engine", 200.0, 2.0, 0.5, 0.7, 0.6, own_inertia=11.0),
+        Component("ballast", 1.0, 2.0, 0.5),
+    ]
     assert pitch_inertia(parts).inertia == pytest.approx(11.0)
 
 
