@@ -16,6 +16,7 @@ POUND = 0.45359237
 GRAVITY = 9.80665
 POUND_FORCE = POUND * GRAVITY
 FOOT = 12 * INCH
+RPM = math.pi / 30
 
 
 class ReadingError(ValueError):
@@ -66,7 +67,7 @@ DIMENSIONS: dict[str, dict[str, Unit]] = {
     "barometer": _units(Unit("inHg", 3386.389, 2), Unit("hPa", 100.0, 1)),
     "density": _units(Unit("lb/ft³", POUND / FOOT**3, 4), Unit("kg/m³", 1.0, 4)),
     "frequency": _units(Unit("Hz", 1.0, 2)),
-    "rotation": _units(Unit("rpm", math.pi / 30, 0)),
+    "rotation": _units(Unit("rpm", RPM, 0)),
     "percent": _units(Unit("%", 0.01, 1)),
     "ratio": _units(Unit("", 1.0, 3)),
     "turns": _units(Unit("turns", 1.0, 2)),
