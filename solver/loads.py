@@ -1,0 +1,155 @@
+"""From the link forces of a launch to the safety factors of its bars."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from solver.bar_check import Bar, BarCheck, check_bar
+from solver.checks import between
+from solver.members import CAUTIONS, Allowances
+
+SHARING = (
+    "The force of the planar model is shared alike by the bars of one height; torque reaction, a panhard"
+    " bar and a bent housing share it unevenly."
+)
+
+
+@dataclass(frozen=True)
+class BarSet:
+    """All bars of one height: what one is made of, and how many there are."""
+
+    bar: Bar
+    count: int = 2
+
+
+@dataclass(frozen=True)
+class PeakLoad:
+    """Greatest tension and compression of one bar over a run.
+
+    Both are N per bar, at or above zero; times in s, None where the bar never
+    sees that sign. ``standing`` is the force at the first instant, tension
+    positive.
+    """
+
+    tension: float
+    tension_time: float | None
+    compression: float
+    compression_time: float | None
+    standing: float
+
+
+@dataclass(frozen=True)
+class BarLoad:
+    """One height's bars over a run: peaks per bar, and the check against them."""
+
+    name: str
+    count: int
+    peak: PeakLoad
+    check: BarCheck
+
+
+@dataclass(frozen=True)
+class LoadReport:
+    """All bars of a run, the least safety factor first."""
+
+    bars: tuple
+    cautions: tuple = (*CAUTIONS, SHARING)
+
+
+def peak_load(t, force, count=2):
+    """Greatest tension and compression of one bar from the lumped link force.
+
+    Parameters
+    ----------
+    t : array_like, shape (n,)
+        s.
+    force : array_like, shape (n,)
+        Sum over the bars of one height along the bar, N, tension positive.
+    count : int
+        Bars that share it.
+
+    Returns
+    -------
+    PeakLoad
+
+    Raises
+    ------
+    ValueError
+        When lengths differ, a force is not finite, or the count is not 1 to 4.
+    """
+    share = between("the number of bars", count, 1, 4)
+    times, each = np.asarray(t, dtype=float), np.asarray(force, dtype=float) / share
+    if times.ndim != 1 or times.shape != each.shape or times.size == 0:
+        raise ValueError("times and link forces must be of one length, one sample or more.")
+    if not np.all(np.isfinite(each)):
+        raise ValueError("a link force of this run is not a finite number: the run has no answer there.")
+    high, low = int(np.argmax(each)), int(np.argmin(each))
+    pull, push = max(float(each[high]), 0.0), max(-float(each[low]), 0.0)
+    return PeakLoad(
+        tension=pull,
+        tension_time=float(times[high]) if pull > 0.0 else None,
+        compression=push,
+        compression_time=float(times[low]) if push > 0.0 else None,
+        standing=float(each[0]),
+    )
+
+
+def bar_loads(t, forces, bars, allowances=None):
+    """Check every bar against its greatest loads in a run.
+
+    Parameters
+    ----------
+    t : array_like, shape (n,)
+        s.
+    forces : dict of str to array_like, each of shape (n,)
+        Lumped force along the bar by height (``'lower'``, ``'upper'``), N.
+    bars : dict of str to BarSet
+        By the same names.
+    allowances : solver.members.Allowances or None
+        None takes the defaults, common practice without a source.
+
+    Returns
+    -------
+    LoadReport
+
+    Raises
+    ------
+    ValueError
+        When a bar has no force in this run, or a value is out of range.
+    """
+    stated = allowances or Allowances()
+    found = []
+    for name, group in bars.items():
+        if name not in forces:
+            raise ValueError(f"the run has no link called {name!r}: there are {', '.join(forces)}.")
+        peak = peak_load(t, forces[name], group.count)
+        check = check_bar(group.bar, peak.tension, peak.compression, stated)
+        found.append(BarLoad(name=name, count=group.count, peak=peak, check=check))
+    return LoadReport(bars=tuple(sorted(found, key=lambda bar: bar.check.governs.factor)))
+
+
+def loads_of(launch, bars, allowances=None):
+    """The same from a launch.
+
+    Parameters
+    ----------
+    launch : solver.Launch
+    bars : dict of str to BarSet
+    allowances : solver.members.Allowances or None
+
+    Returns
+    -------
+    LoadReport
+
+    Raises
+    ------
+    ValueError
+        As `bar_loads`.
+    """
+    histories = launch.to_dict()["histories"]
+    forces = {
+        name: histories[f"{name}_link_force"]
+        for name in ("lower", "upper")
+        if histories.get(f"{name}_link_force") is not None
+    }
+    return bar_loads(histories["t"], forces, bars, allowances)
