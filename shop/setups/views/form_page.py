@@ -68,7 +68,7 @@ def _meaning(request: HttpRequest, draft: Revision, form: RevisionForm) -> dict[
     rows = rows_of(form, draft)
     groups = beside(_at_rest(draft.parent, units), figures, units) if figures else []
     return {"figures": figures, "groups": groups, "scene": scene, "fault": fault,
-            "rows": rows, "sections": sections_of(rows)}
+            "rows": rows, "hole_rows": [rows[place] for place in form.surveyed.hole_counts], "sections": sections_of(rows)}
 
 
 def _at_rest(parent: Revision | None, units: str) -> Figures | None:

@@ -9,11 +9,10 @@ from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, redirect, render
 
 from shop.launches import bridge
-from shop.launches.models import Job
 from shop.people.access import shop_view
 from shop.people.permissions import WRITE
 from shop.refusals import Refused
-from shop.setups.differences import hole_changes, setting_changes, survey_changes
+from shop.setups.differences import survey_changes
 from shop.setups.figures import beside, figures_at_rest
 from shop.setups.models import Revision
 from shop.setups.setting_rows import groups_of
@@ -32,11 +31,10 @@ def revision(request: HttpRequest, pk: int) -> HttpResponse:
         "revision": chosen,
         "car": chosen.car,
         "settings": groups_of(chosen, parent),
-        "changes": _changes(parent, chosen) if parent else [],
+        "surveyed": survey_changes(parent.survey, chosen.survey) if parent else [],
         "job": chosen.jobs.filter(kind="launch").order_by("-id").first(),
         "children": chosen.children.filter(number__isnull=False).order_by("number"),
         "may_write": request.member.may(WRITE),
-        "States": Job,
         **_at_rest(chosen, request.shop.units),
     }
     return render(request, "setups/revision.html", context)
@@ -54,14 +52,6 @@ def download_car_file(request: HttpRequest, pk: int) -> HttpResponse:
     )
     response["Content-Disposition"] = f'attachment; filename="{name}.json"'
     return response
-
-
-def _changes(parent: Revision, chosen: Revision) -> list:
-    return [
-        *hole_changes(parent, chosen),
-        *setting_changes(parent, chosen),
-        *survey_changes(parent.survey, chosen.survey),
-    ]
 
 
 def _at_rest(chosen: Revision, units: str) -> dict:
