@@ -100,6 +100,11 @@ class RevisionForm(forms.Form):
         return None
 
     @property
+    def can_be_drawn(self) -> bool:
+        """Whether nothing but words is missing: a reason does not alter the drawing."""
+        return not self.is_bound or set(self.errors) <= {"reason", "notes"}
+
+    @property
     def by_table(self) -> bool:
         return self["hit_kind"].value() == BY_TABLE
 

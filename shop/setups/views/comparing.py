@@ -8,6 +8,7 @@ from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, render
 
 from shop.garage.models import Car
+from shop.drawing.side_view import side_view
 from shop.launches import bridge
 from shop.launches.models import Job
 from shop.people.access import shop_view
@@ -59,10 +60,10 @@ def _at_rest(a: Revision, b: Revision, units: str) -> dict[str, Any]:
     try:
         return {
             "groups": beside(figures_at_rest(a, units), figures_at_rest(b, units), units),
-            "scene": bridge.scene_of(b, b.holes, ghost=a),
+            "drawing": side_view(bridge.scene_of(b, b.holes, ghost=a)),
         }
     except Refused as refused:
-        return {"groups": [], "scene": None, "fault": str(refused)}
+        return {"groups": [], "drawing": "", "fault": str(refused)}
 
 
 def _launches(a: Revision, b: Revision, units: str) -> dict[str, Any]:

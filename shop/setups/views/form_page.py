@@ -9,6 +9,7 @@ from django.http import HttpRequest, HttpResponse
 from django.shortcuts import render
 from django.urls import reverse
 
+from shop.drawing.side_view import side_view
 from shop.launches import bridge
 from shop.people.permissions import ISSUE, WRITE
 from shop.refusals import Refused
@@ -52,14 +53,14 @@ def preview_parts(request: HttpRequest, draft: Revision, form: RevisionForm) -> 
 def _meaning(request: HttpRequest, draft: Revision, form: RevisionForm) -> dict[str, Any]:
     """What the present choices mean, or why that cannot be said; then the rows with every fault on them."""
     units = request.shop.units
-    figures, scene, fault = None, None, ""
+    figures, drawing, fault = None, "", ""
     if form.is_bound:
-        form.full_clean()
+        form.is_valid()
         form.readable.put_on(draft)
-    if not form.is_bound or form.is_valid():
+    if form.can_be_drawn:
         try:
             figures = figures_at_rest(draft, units)
-            scene = bridge.scene_of(draft, draft.holes)
+            drawing = side_view(bridge.scene_of(draft, draft.holes), mode="choose")
         except Refused as refused:
             fault = str(refused)
             if form.is_bound:
@@ -67,7 +68,7 @@ def _meaning(request: HttpRequest, draft: Revision, form: RevisionForm) -> dict[
                 form.add_refusal(refused)
     rows = rows_of(form, draft)
     groups = beside(_at_rest(draft.parent, units), figures, units) if figures else []
-    return {"figures": figures, "groups": groups, "scene": scene, "fault": fault,
+    return {"figures": figures, "groups": groups, "drawing": drawing, "fault": fault,
             "rows": rows, "hole_rows": [rows[place] for place in form.surveyed.hole_counts], "sections": sections_of(rows)}
 
 

@@ -8,6 +8,7 @@ import re
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, redirect, render
 
+from shop.drawing.side_view import side_view
 from shop.launches import bridge
 from shop.people.access import shop_view
 from shop.people.permissions import WRITE
@@ -58,6 +59,6 @@ def _at_rest(chosen: Revision, units: str) -> dict:
     try:
         figures = figures_at_rest(chosen, units)
         before = figures_at_rest(chosen.parent, units) if chosen.parent else None
-        return {"groups": beside(before, figures, units), "figures": figures, "scene": bridge.scene_of(chosen, chosen.holes)}
+        return {"groups": beside(before, figures, units), "figures": figures, "drawing": side_view(bridge.scene_of(chosen, chosen.holes))}
     except Refused as refused:
-        return {"groups": [], "figures": None, "scene": None, "fault": str(refused)}
+        return {"groups": [], "figures": None, "drawing": "", "fault": str(refused)}
