@@ -33,7 +33,7 @@ def as_typed(entry: dict[str, Any] | None) -> str:
     if entry is None:
         return NOT_SET
     typed, unit = str(entry["typed"]), entry["unit"]
-    if not unit or not typed or not typed[-1].isdigit() and typed[-1] != ".":
+    if not unit or not typed or (not typed[-1].isdigit() and typed[-1] != "."):
         return typed
     return f"{typed}°" if unit == "°" else f"{typed} {unit}"
 

@@ -43,7 +43,8 @@ def groups_of(revision: Revision, parent: Revision | None = None) -> list[Settin
     ]
     groups = [SettingGroup("holes", "Holes", holes)]
     for key, title in SECTIONS.items():
-        rows = [row for quantity in QUANTITIES if quantity.section == key and (row := _setting(quantity.key, revision, changed))]
+        keys = [quantity.key for quantity in QUANTITIES if quantity.section == key]
+        rows = [row for name in keys if (row := _setting(name, revision, changed))]
         if key == "hit":
             rows = _hit(revision, rows, changed)
         if rows:

@@ -7,8 +7,8 @@ from typing import Any
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, render
 
-from shop.garage.models import Car
 from shop.drawing.side_view import side_view
+from shop.garage.models import Car
 from shop.launches import bridge
 from shop.launches.models import Job
 from shop.people.access import shop_view
@@ -22,9 +22,8 @@ from shop.setups.models import Revision
 def compare(request: HttpRequest, car_id: int) -> HttpResponse:
     """Without a choice: the newest issued revision against its parent."""
     car = get_object_or_404(Car.objects.select_related("customer"), pk=car_id)
-    issued = list(
-        Revision.objects.select_related("survey", "parent", "author", "car").filter(car=car, number__isnull=False).order_by("-number")
-    )
+    revisions = Revision.objects.select_related("survey", "parent", "author", "car")
+    issued = list(revisions.filter(car=car, number__isnull=False).order_by("-number"))
     if len(issued) < 2:
         return render(request, "setups/compare_few.html", {"car": car, "issued": issued})
     b = _asked(request, "b", issued) or issued[0]

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from django.contrib import messages
 from django.core.exceptions import PermissionDenied
+from django.db.models import QuerySet
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, redirect, render
 
@@ -34,7 +35,7 @@ def new(request: HttpRequest, car_id: int) -> HttpResponse:
     form = form_of(draft, request.shop, request.POST)
     if not _may_go_on(request, form, draft):
         return form_page(request, draft, form, status=REFUSED)
-    saved = services.start_draft(request.member, car, survey, draft.parent, form.choices)
+    saved = services.start_draft(request.member, car, survey, draft.parent, form.readable)
     return _after_saving(request, saved, form)
 
 
@@ -53,7 +54,7 @@ def edit(request: HttpRequest, pk: int) -> HttpResponse:
     if not _may_go_on(request, form, draft):
         return form_page(request, draft, form, status=REFUSED)
     try:
-        saved = services.save_draft(request.member, draft, form.cleaned_data["version"] or 0, form.choices)
+        saved = services.save_draft(request.member, draft, form.cleaned_data["version"] or 0, form.readable)
     except Stale as stale:
         return form_page(request, draft, form, theirs=stale.row, status=409)
     except Refused as refused:
@@ -90,7 +91,7 @@ def discard(request: HttpRequest, pk: int) -> HttpResponse:
     return redirect("garage:car", draft.car_id)
 
 
-def _revisions():
+def _revisions() -> QuerySet[Revision]:
     return Revision.objects.select_related("car__customer", "survey", "parent__survey", "author")
 
 

@@ -59,6 +59,7 @@ def _at_rest(chosen: Revision, units: str) -> dict:
     try:
         figures = figures_at_rest(chosen, units)
         before = figures_at_rest(chosen.parent, units) if chosen.parent else None
-        return {"groups": beside(before, figures, units), "figures": figures, "drawing": side_view(bridge.scene_of(chosen, chosen.holes))}
+        drawing = side_view(bridge.scene_of(chosen, chosen.holes))
+        return {"groups": beside(before, figures, units), "figures": figures, "drawing": drawing}
     except Refused as refused:
         return {"groups": [], "figures": None, "drawing": "", "fault": str(refused)}
