@@ -42,6 +42,8 @@ class Revision(models.Model):
     issued_at = models.DateTimeField(null=True, blank=True)
 
     objects = ScopedManager(shop="shop")
+    # What reading a revision's figures needs; each row comes once however often it is asked for.
+    WITH_SURVEY = ("survey__measurements", "survey__brackets", "parent__survey__measurements", "parent__survey__brackets")
 
     class Meta:
         ordering = [models.F("number").desc(nulls_first=True), "-id"]

@@ -25,6 +25,8 @@ def new_revision(
     if parent is not None and (parent.car_id != car.pk or not parent.issued):
         raise Refused({"parent": f"a revision starts from an issued revision of {car}"})
     draft = Revision(shop=member.shop, car=car, survey=survey, parent=parent, author=member.user)
+    if parent is not None:
+        draft.parts = dict(parent.parts)
     return (choices or beginning(survey, parent)).put_on(draft)
 
 

@@ -92,15 +92,17 @@ def discard(request: HttpRequest, pk: int) -> HttpResponse:
 
 
 def _revisions() -> QuerySet[Revision]:
-    return Revision.objects.select_related("car__customer", "survey", "parent__survey", "author")
+    related = Revision.objects.select_related("car__customer", "survey", "parent__survey", "author")
+    return related.prefetch_related(*Revision.WITH_SURVEY)
 
 
 def _survey(request: HttpRequest, car: Car) -> Survey | None:
     """The survey asked for, else the car's newest."""
     asked = request.GET.get("survey", "")
+    surveys = car.surveys.prefetch_related("measurements", "brackets")
     if asked:
-        return get_object_or_404(Survey, pk=_id(asked), car=car)
-    return car.surveys.order_by("-number").first()
+        return get_object_or_404(surveys, pk=_id(asked))
+    return surveys.order_by("-number").first()
 
 
 def _parent(request: HttpRequest, car: Car) -> Revision | None:

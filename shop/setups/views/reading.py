@@ -22,9 +22,8 @@ from shop.setups.setting_rows import groups_of
 @shop_view()
 def revision(request: HttpRequest, pk: int) -> HttpResponse:
     """What is on the car, why, by whom and when; for a draft, its form instead."""
-    chosen = get_object_or_404(
-        Revision.objects.select_related("car__customer", "survey", "parent__survey", "parent__car", "author"), pk=pk
-    )
+    related = Revision.objects.select_related("car__customer", "survey", "parent__survey", "parent__car", "author")
+    chosen = get_object_or_404(related.prefetch_related(*Revision.WITH_SURVEY), pk=pk)
     if not chosen.issued:
         return redirect("setups:edit", pk)
     parent = chosen.parent
