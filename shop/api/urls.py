@@ -1,0 +1,20 @@
+from django.urls import include, path
+from drf_spectacular.views import SpectacularAPIView
+from rest_framework.routers import SimpleRouter
+
+from shop.api import views
+
+app_name = "api"
+
+router = SimpleRouter()
+router.register("customers", views.CustomerViewSet, basename="customer")
+router.register("cars", views.CarViewSet, basename="car")
+router.register("surveys", views.SurveyViewSet, basename="survey")
+router.register("revisions", views.RevisionViewSet, basename="revision")
+router.register("launches", views.JobViewSet, basename="launch")
+
+urlpatterns = [
+    path("api/v1/", include(router.urls)),
+    path("api/v1/cars/<int:car_id>/revisions/", views.CarRevisionsViewSet.as_view({"post": "create"}), name="new-revision"),
+    path("api/v1/schema", SpectacularAPIView.as_view(), name="schema"),
+]
