@@ -17,7 +17,8 @@ from shop.quantities import Quantity
 from shop.refusals import Refused
 from shop.setups import car_file
 from shop.setups.models import Revision
-from shop.units import default_unit, show
+from shop.units import default_unit, show, unit_of
+from solver import atmosphere, comparing, power, slip_check, timing, weather
 
 SOLVER_VERSION = solver.SOLVER_VERSION
 
@@ -213,3 +214,73 @@ def solve(input_file: Mapping[str, Any]) -> dict[str, Any]:
         "solver_version": SOLVER_VERSION,
         "seconds": time.perf_counter() - started,
     }
+
+
+# --- the track: plain numbers to the solver's weather, slip and comparison functions, and back ------------------------
+
+
+@dataclass(frozen=True)
+class Air:
+    """The air of a pass, SI, with the published power correction and what stretches it."""
+
+    density: float
+    density_altitude: float
+    factor: float
+    standard: str
+    warnings: tuple[str, ...]
+
+
+def station_pressure(altimeter_setting: float, elevation: float) -> float:
+    """Pa at the track from a setting reduced to sea level."""
+    try:
+        return atmosphere.station_from_altimeter(altimeter_setting, elevation)
+    except ValueError as error:
+        raise Refused(str(error)) from error
+
+
+def air(temperature: float, pressure: float, humidity: float) -> Air:
+    """Moist air at station pressure (K, Pa, fraction). Refused where the numbers are no weather."""
+    try:
+        moist = weather.moist_air(temperature, pressure, humidity)
+        correction = power.j1349_correction(temperature, moist.dry_pressure)
+    except ValueError as error:
+        raise Refused(str(error)) from error
+    return Air(
+        moist.density, moist.density_altitude, correction.factor, correction.standard,
+        (*moist.warnings, *correction.warnings),
+    )
+
+
+def corrected(value: float, factor: float, *, speed: bool) -> float:
+    """A time or a speed as it would have been in standard air."""
+    return power.corrected_speed(value, factor) if speed else power.corrected_time(value, factor)
+
+
+def check_slip(times: Mapping[str, Any], speeds: Mapping[str, Any], speed_unit: str) -> slip_check.SlipCheck:
+    """Faults and doubts of a slip given by the marks' names."""
+    metres = unit_of("speed", speed_unit)
+    return slip_check.check_slip(timing.Slip(
+        {mark: float(value) for mark, value in times.items()},
+        {mark: metres.to_si(float(value)) for mark, value in speeds.items()},
+    ))
+
+
+def slip_of_run(histories: Mapping[str, Any]) -> dict[str, float]:
+    """Times by mark of a solved launch, as far as it runs; empty when it never leaves the beam."""
+    needed = [histories.get(name) for name in ("t", "distance", "speed")]
+    if not all(needed):
+        return {}
+    try:
+        return dict(timing.slip_from_run(*needed).times)
+    except ValueError:
+        return {}
+
+
+def compare_passes(
+    first: list[float], second: list[float], *, lower_is_better: bool, confidence: float
+) -> comparing.Comparison:
+    return comparing.compare_passes(first, second, lower_is_better, confidence)
+
+
+def summarise_passes(values: list[float], *, lower_is_better: bool) -> comparing.Summary:
+    return comparing.summarise_passes(values, lower_is_better)
