@@ -8,11 +8,13 @@ from __future__ import annotations
 
 import logging
 import os
+import warnings
 from typing import Any
 
 os.environ.setdefault("DJANGO_SETTINGS_MODULE", "shop.config.settings")
 
 from celery import Celery, signals  # noqa: E402
+from celery.platforms import SecurityWarning  # noqa: E402
 from django.conf import settings  # noqa: E402
 from kombu.transport import TRANSPORT_ALIASES  # noqa: E402
 
@@ -21,6 +23,9 @@ from shop.config import folder_broker, lifeline  # noqa: E402
 log = logging.getLogger(__name__)
 
 SWEEP_EVERY = 10.0  # seconds
+
+# Celery warns root of messages that carry code; ours are JSON and can carry none.
+warnings.filterwarnings("ignore", category=SecurityWarning)
 
 TRANSPORT_ALIASES["folder"] = "shop.config.folder_broker:Transport"
 

@@ -91,7 +91,7 @@ def demo_sign_in() -> tuple[str, str] | None:
 def collect(say: Say) -> None:
     """Collect and compress the files for browsers, unless they are what was collected last time."""
     mark = fingerprint()
-    stamp = Path(settings.DATA_DIR) / "static.stamp"
+    stamp = Path(settings.STATIC_ROOT).with_suffix(".stamp")
     if stamp.exists() and stamp.read_text() == mark and Path(settings.STATIC_ROOT).is_dir():
         return
     say("Collecting what browsers load: scripts, styles, charts (some seconds).")

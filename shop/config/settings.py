@@ -38,6 +38,7 @@ INSTALLED_APPS = [
     "shop.garage",
     "shop.setups",
     "shop.launches",
+    "shop.studies",
     "shop.track",
     "shop.sheets",
     "shop.parts",
@@ -153,7 +154,7 @@ DATA_UPLOAD_MAX_NUMBER_FILES = 20
 # --- files served ---------------------------------------------------------------------------------------------------
 
 STATIC_URL = "/static/"
-STATIC_ROOT = DATA_DIR / "static"
+STATIC_ROOT = Path(environment.text("LEDGER_STATIC_DIR", str(DATA_DIR / "static")))
 STATICFILES_DIRS = [ROOT / "static"]
 # No app directories: what packages bring is served only as far as shop.config.packaged lists it.
 STATICFILES_FINDERS = ["django.contrib.staticfiles.finders.FileSystemFinder", "shop.config.packaged.PackagedFinder"]
@@ -191,7 +192,7 @@ SPECTACULAR_SETTINGS = {
 
 # --- queue ----------------------------------------------------------------------------------------------------------
 
-BROKER_URL = environment.text("LEDGER_BROKER_URL", "folder://")
+BROKER_URL = environment.text("LEDGER_BROKER_URL", "folder://localhost")
 QUEUE_DIR = DATA_DIR / "queue"
 
 # --- words on the way -----------------------------------------------------------------------------------------------
@@ -203,6 +204,9 @@ LOGGING = {
     "handlers": {"stderr": {"class": "logging.StreamHandler", "formatter": "line"}},
     "root": {"handlers": ["stderr"], "level": environment.text("LEDGER_LOG_LEVEL", "WARNING").upper()},
     # Django's own handlers would write each error twice, or mail it to nobody.
-    "loggers": {"django": {"handlers": [], "propagate": True}},
+    "loggers": {
+        "django": {"handlers": [], "propagate": True},
+        "waitress.queue": {"level": "ERROR"},  # it warns whenever two requests meet
+    },
 }
 TEST_RUNNER = "shop.config.testing.PytestRunner"
