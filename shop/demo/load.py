@@ -42,8 +42,12 @@ def _member(shop: Shop, email: str, name: str, role: str) -> Membership:
 def _car(member: Membership, data: DemoCar, days_ago: int) -> None:
     with transaction.atomic():
         car = Car.objects.create(
-            shop=member.shop, customer=Customer.objects.get(name=data.customer), name=data.name,
-            racing_number=data.racing_number, race_class=data.race_class, chassis=data.chassis,
+            shop=member.shop,
+            customer=Customer.objects.get(name=data.customer),
+            name=data.name,
+            racing_number=data.racing_number,
+            race_class=data.race_class,
+            chassis=data.chassis,
         )
         survey = _survey(member, car, data, days_ago)
     parent: Revision | None = None
@@ -55,8 +59,13 @@ def _car(member: Membership, data: DemoCar, days_ago: int) -> None:
 
 def _survey(member: Membership, car: Car, data: DemoCar, days_ago: int) -> Survey:
     survey = Survey.objects.create(
-        shop=member.shop, car=car, number=1, linkage=data.linkage, taken_by=member.user,
-        taken_on=(timezone.now() - timedelta(days=days_ago)).date(), notes=data.survey_notes,
+        shop=member.shop,
+        car=car,
+        number=1,
+        linkage=data.linkage,
+        taken_by=member.user,
+        taken_on=(timezone.now() - timedelta(days=days_ago)).date(),
+        notes=data.survey_notes,
     )
     known: dict[str, float] = {}
     for quantity in QUANTITIES:
@@ -66,7 +75,13 @@ def _survey(member: Membership, car: Car, data: DemoCar, days_ago: int) -> Surve
         typed = data.measured.get(quantity.key)
         if typed is not None:
             reading = quantity.read(typed, unit)
-            si, tolerance, origin, text, unit = reading.si, quantity.tolerance, "measured", reading.typed, reading.unit
+            si, tolerance, origin, text, unit = (
+                reading.si,
+                quantity.tolerance,
+                "measured",
+                reading.typed,
+                reading.unit,
+            )
         else:
             si = quantity.typical(known) if quantity.typical else None
             if si is None or (quantity.section == "wheelie" and "wheelie_bar_x" not in known):
@@ -84,8 +99,15 @@ def _survey(member: Membership, car: Car, data: DemoCar, days_ago: int) -> Surve
 def _measurement(member, survey, key, text, si, tolerance, unit, origin) -> None:
     chosen = unit_of(BY_KEY[key].dimension, unit)
     Measurement.objects.create(
-        shop=member.shop, survey=survey, key=key, typed=text, value=chosen.from_si(si), unit=unit,
-        tolerance=float(f"{tolerance / chosen.factor:.3g}"), origin=origin, taken_by=member.user,
+        shop=member.shop,
+        survey=survey,
+        key=key,
+        typed=text,
+        value=chosen.from_si(si),
+        unit=unit,
+        tolerance=float(f"{tolerance / chosen.factor:.3g}"),
+        origin=origin,
+        taken_by=member.user,
     )
 
 
@@ -96,8 +118,14 @@ def _bracket(member, survey, data: DemoCar, place, first, last, count) -> None:
     holes = [[ends[0][axis] + number * step[axis] for axis in (0, 1)] for number in range(count)]
     row = {"first_x": first[0], "first_z": first[1], "last_x": last[0], "last_z": last[1], "count": count}
     Bracket.objects.create(
-        shop=member.shop, survey=survey, place=place, entry="row", unit=unit,
-        tolerance=0.06 if unit == "in" else 1.5, row=row, holes=holes,
+        shop=member.shop,
+        survey=survey,
+        place=place,
+        entry="row",
+        unit=unit,
+        tolerance=0.06 if unit == "in" else 1.5,
+        row=row,
+        holes=holes,
     )
 
 
@@ -110,4 +138,3 @@ def _choices(survey: Survey, parent: Revision | None, data: DemoCar, holes, sett
         changed[key] = surveyed.as_setting(key, quantity.read(typed, quantity.unit(data.units)))
     placed = {**start.holes, **(data.holes if parent is None else {}), **holes}
     return replace(start, holes=placed, settings={**start.settings, **changed}, reason=reason)
-

@@ -113,7 +113,9 @@ class Measurement(models.Model):
     class Meta:
         constraints = [
             models.UniqueConstraint(fields=["survey", "key"], name="measured_once_per_survey"),
-            models.CheckConstraint(condition=Q(tolerance__gte=0) & Q(tolerance__lt=FINITE), name="tolerance_sensible"),
+            models.CheckConstraint(
+                condition=Q(tolerance__gte=0) & Q(tolerance__lt=FINITE), name="tolerance_sensible"
+            ),
             models.CheckConstraint(condition=Q(value__gt=-FINITE) & Q(value__lt=FINITE), name="measurement_finite"),
             models.CheckConstraint(condition=Q(origin__in=["measured", "typical", "fitted"]), name="origin_known"),
         ]
@@ -158,7 +160,9 @@ class Bracket(models.Model):
         constraints = [
             models.UniqueConstraint(fields=["survey", "place"], name="bracket_once_per_survey"),
             models.CheckConstraint(condition=Q(place__in=list(BRACKETS)), name="bracket_place_known"),
-            models.CheckConstraint(condition=Q(tolerance__gte=0) & Q(tolerance__lt=FINITE), name="bracket_tolerance_sensible"),
+            models.CheckConstraint(
+                condition=Q(tolerance__gte=0) & Q(tolerance__lt=FINITE), name="bracket_tolerance_sensible"
+            ),
         ]
 
     def __str__(self) -> str:

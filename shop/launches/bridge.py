@@ -139,14 +139,38 @@ def static_rows(statics: Mapping[str, Any], units: str) -> list[Row]:
     return [
         Row("ic_x", "Instant centre, ahead of axle", ahead, si=centre["x"]),
         Row("ic_z", "Instant centre, above ground", height, si=centre["z"]),
-        Row("anti_squat", "Anti-squat, whole car", _percent(statics["anti_squat"]),
-            "force line against the line to the whole car's CG", statics["anti_squat"]),
-        Row("anti_squat_dynamic", "Anti-squat, sprung mass", _percent(statics["anti_squat_dynamic"]),
-            "unsprung weights taken out: at 100 % the rear springs stay still", statics["anti_squat_dynamic"]),
-        Row("rear_load", "Rear tyres at rest, both", show(statics["rear_load"], "force", force), si=statics["rear_load"]),
-        Row("front_load", "Front tyres at rest, both", show(statics["front_load"], "force", force), si=statics["front_load"]),
-        Row("rear_spring_force", "Rear springs at rest, both", show(statics["rear_spring_force"], "force", force),
-            si=statics["rear_spring_force"]),
+        Row(
+            "anti_squat",
+            "Anti-squat, whole car",
+            _percent(statics["anti_squat"]),
+            "force line against the line to the whole car's CG",
+            statics["anti_squat"],
+        ),
+        Row(
+            "anti_squat_dynamic",
+            "Anti-squat, sprung mass",
+            _percent(statics["anti_squat_dynamic"]),
+            "unsprung weights taken out: at 100 % the rear springs stay still",
+            statics["anti_squat_dynamic"],
+        ),
+        Row(
+            "rear_load",
+            "Rear tyres at rest, both",
+            show(statics["rear_load"], "force", force),
+            si=statics["rear_load"],
+        ),
+        Row(
+            "front_load",
+            "Front tyres at rest, both",
+            show(statics["front_load"], "force", force),
+            si=statics["front_load"],
+        ),
+        Row(
+            "rear_spring_force",
+            "Rear springs at rest, both",
+            show(statics["rear_spring_force"], "force", force),
+            si=statics["rear_spring_force"],
+        ),
     ]
 
 
@@ -166,8 +190,11 @@ def bar_lengths(revision: Revision) -> dict[str, float]:
     return lengths
 
 
-BAR_NAMES = {"lower": "Lower bars, centre to centre", "upper": "Upper bars, centre to centre",
-             "ladder": "Ladder bar, chassis pin to axle centre"}
+BAR_NAMES = {
+    "lower": "Lower bars, centre to centre",
+    "upper": "Upper bars, centre to centre",
+    "ladder": "Ladder bar, chassis pin to axle centre",
+}
 
 
 def bar_rows(revision: Revision, units: str) -> list[Row]:
@@ -180,7 +207,8 @@ def bar_rows(revision: Revision, units: str) -> list[Row]:
         change = length - before[name] if name in before else 0.0
         note = ""
         if abs(change) > 5e-5:
-            note = f"{'longer' if change > 0 else 'shorter'} by {length_text(abs(change), units)} than on {revision.parent.label}"
+            comparison = "longer" if change > 0 else "shorter"
+            note = f"{comparison} by {length_text(abs(change), units)} than on {revision.parent.label}"
         rows.append(Row(name, BAR_NAMES[name], length_text(length, units), note, length))
     return rows
 
@@ -246,7 +274,10 @@ def air(temperature: float, pressure: float, humidity: float) -> Air:
     except ValueError as error:
         raise Refused(str(error)) from error
     return Air(
-        moist.density, moist.density_altitude, correction.factor, correction.standard,
+        moist.density,
+        moist.density_altitude,
+        correction.factor,
+        correction.standard,
         (*moist.warnings, *correction.warnings),
     )
 
@@ -259,10 +290,12 @@ def corrected(value: float, factor: float, *, speed: bool) -> float:
 def check_slip(times: Mapping[str, Any], speeds: Mapping[str, Any], speed_unit: str) -> slip_check.SlipCheck:
     """Faults and doubts of a slip given by the marks' names."""
     metres = unit_of("speed", speed_unit)
-    return slip_check.check_slip(timing.Slip(
-        {mark: float(value) for mark, value in times.items()},
-        {mark: metres.to_si(float(value)) for mark, value in speeds.items()},
-    ))
+    return slip_check.check_slip(
+        timing.Slip(
+            {mark: float(value) for mark, value in times.items()},
+            {mark: metres.to_si(float(value)) for mark, value in speeds.items()},
+        )
+    )
 
 
 def slip_of_run(histories: Mapping[str, Any]) -> dict[str, float]:

@@ -43,10 +43,14 @@ class Job(models.Model):
         ordering = ["-id"]
         indexes = [models.Index(fields=["state", "lease_until"])]
         constraints = [
-            models.CheckConstraint(condition=Q(state__in=["waiting", "running", "done", "failed", "cancelled"]), name="job_state_known"),
+            models.CheckConstraint(
+                condition=Q(state__in=["waiting", "running", "done", "failed", "cancelled"]), name="job_state_known"
+            ),
             models.CheckConstraint(condition=Q(progress__gte=0) & Q(progress__lte=1), name="job_progress_share"),
             models.CheckConstraint(condition=~Q(state="failed") | ~Q(error=""), name="job_failed_says_why"),
-            models.CheckConstraint(condition=~Q(state="running") | Q(lease_until__isnull=False), name="job_running_is_leased"),
+            models.CheckConstraint(
+                condition=~Q(state="running") | Q(lease_until__isnull=False), name="job_running_is_leased"
+            ),
         ]
 
     def __str__(self) -> str:
@@ -71,3 +75,6 @@ class Result(models.Model):
     created_at = models.DateTimeField(auto_now_add=True)
 
     objects = ScopedManager(shop="shop")
+
+    def __str__(self) -> str:
+        return f"result of {self.job}"

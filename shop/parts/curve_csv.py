@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import csv
 import io
+import itertools
 import math
 import re
 from typing import Any
@@ -105,7 +106,7 @@ def checked(points: list[list[float]], kind: CurveKind, setting: Curve | None = 
     name = f"{setting['side']} click {setting['click']}" if setting else kind.label.lower()
     if not kind.least_points <= len(points) <= MOST_POINTS:
         raise Refused({"curve": f"{name}: {len(points)} points; {kind.least_points} to {MOST_POINTS} make a curve"})
-    for before, after in zip(points, points[1:], strict=False):
+    for before, after in itertools.pairwise(points):
         if math.isclose(before[0], after[0], rel_tol=1e-12, abs_tol=1e-12):
             raise Refused({"curve": f"{name}: two points at the same {kind.x_label}"})
         if kind.rising and after[1] < before[1]:

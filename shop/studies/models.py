@@ -64,6 +64,9 @@ class Chunk(models.Model):
             models.CheckConstraint(condition=Q(stop__gt=F("start")), name="chunk_not_empty"),
         ]
 
+    def __str__(self) -> str:
+        return f"choices {self.start} to {self.stop - 1} of {self.study}"
+
 
 class Yardstick(models.Model):
     """Limits and weights a shop keeps for the next study."""
