@@ -15,11 +15,13 @@ class Bar:
     Attributes
     ----------
     name : str
-    length : float
-        Between rod-end centres, m.
     outside_diameter, wall : float
         Of the tube, m.
     material : Material
+    length : float or None
+        Between rod-end centres, m; None where it follows from the link's pins.
+    count : int
+        How many such bars share the link's force.
     fixity, bow : float
         See `solver.members.column`; two rod ends are pinned, 1.
     threads : tuple of Thread
@@ -28,10 +30,11 @@ class Bar:
     """
 
     name: str
-    length: float
     outside_diameter: float
     wall: float
     material: Material
+    length: float | None = None
+    count: int = 2
     fixity: float = 1.0
     bow: float = 0.0
     threads: tuple = ()
@@ -103,6 +106,8 @@ def check_bar(bar, tension, compression, allowances=None):
     """
     allowances = allowances or Allowances()
     try:
+        if bar.length is None:
+            raise ValueError("the length of the bar is not given.")
         pull = not_negative("the tension", tension, "N") * allowances.dynamic
         push = not_negative("the compression", compression, "N") * allowances.dynamic
         section = tube_section(bar.outside_diameter, bar.wall)

@@ -1,11 +1,8 @@
-"""Numbers of a car file by their path, such as ``rear.springs[0].spring.rate``."""
+"""Numbers of a car file by their path, such as ``rear.springs.0.spring.rate``."""
 
 import copy
-import re
 
 from solver.checks import number
-
-_STEP = re.compile(r"\[(\d+)\]|([^.\[\]]+)")
 
 
 def number_at(document, path):
@@ -16,7 +13,8 @@ def number_at(document, path):
     document : dict
         The car file as read from JSON.
     path : str
-        Keys joined by dots, list places in square brackets from zero.
+        Keys and list places (from zero) joined by dots; the two numbers of a point
+        may be called ``x`` and ``z``, as in the faults of a car file.
 
     Returns
     -------
@@ -28,7 +26,7 @@ def number_at(document, path):
         When the car file has no number there.
     """
     place = document
-    for step in _steps(path):
+    for step in path.split("."):
         place = _inside(place, step, path)
     if isinstance(place, bool) or not isinstance(place, int | float):
         raise ValueError(f"{path} is not a number of this car file.")
@@ -57,11 +55,11 @@ def with_numbers(document, values):
     changed = copy.deepcopy(document)
     for path, value in values.items():
         number_at(changed, path)
-        *way, last = _steps(path)
+        *way, last = path.split(".")
         place = changed
         for step in way:
             place = _inside(place, step, path)
-        place[last] = float(value)
+        place[_key(place, last)] = float(value)
     return changed
 
 
@@ -74,23 +72,25 @@ def number_paths(document, prefix=""):
         return found
     if isinstance(document, list):
         return [
-            path for place, value in enumerate(document) for path in number_paths(value, f"{prefix}[{place}]")
+            path for place, value in enumerate(document) for path in number_paths(value, f"{prefix}.{place}")
         ]
     is_number = isinstance(document, int | float) and not isinstance(document, bool)
     return [prefix] if is_number else []
 
 
-def _steps(path):
-    steps = [int(place) if place else key for place, key in _STEP.findall(path)]
-    if not steps:
-        raise ValueError("a path into the car file is empty.")
-    return steps
-
-
 def _inside(place, step, path):
     try:
-        if isinstance(step, int) != isinstance(place, list):
-            raise KeyError(step)
-        return place[step]
-    except (KeyError, IndexError, TypeError):
-        raise ValueError(f"{path} is not in this car file.") from None
+        return place[_key(place, step)]
+    except (KeyError, IndexError, TypeError, ValueError):
+        raise ValueError(f"{path!r} is not in this car file.") from None
+
+
+def _key(place, step):
+    if not isinstance(place, list):
+        return step
+    if len(place) == 2 and step in ("x", "z"):
+        return "xz".index(step)
+    # Not int(step) alone: "-1" and "+1" would count from the end or pass for 1.
+    if not step.isdecimal():
+        raise ValueError(step)
+    return int(step)

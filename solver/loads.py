@@ -1,6 +1,7 @@
 """From the link forces of a launch to the safety factors of its bars."""
 
-from dataclasses import dataclass
+import math
+from dataclasses import dataclass, field, replace
 
 import numpy as np
 
@@ -15,11 +16,16 @@ SHARING = (
 
 
 @dataclass(frozen=True)
-class BarSet:
-    """All bars of one height: what one is made of, and how many there are."""
+class BarPlan:
+    """What a car's bars are made of, and the allowances to hold them against.
 
-    bar: Bar
-    count: int = 2
+    The car file's optional ``bars`` section; a height without a description is
+    None.
+    """
+
+    lower: Bar | None = None
+    upper: Bar | None = None
+    allowances: Allowances = field(default_factory=Allowances)
 
 
 @dataclass(frozen=True)
@@ -103,8 +109,8 @@ def bar_loads(t, forces, bars, allowances=None):
         s.
     forces : dict of str to array_like, each of shape (n,)
         Lumped force along the bar by height (``'lower'``, ``'upper'``), N.
-    bars : dict of str to BarSet
-        By the same names.
+    bars : dict of str to Bar
+        By the same names; each with its length.
     allowances : solver.members.Allowances or None
         None takes the defaults, common practice without a source.
 
@@ -119,37 +125,45 @@ def bar_loads(t, forces, bars, allowances=None):
     """
     stated = allowances or Allowances()
     found = []
-    for name, group in bars.items():
+    for name, bar in bars.items():
         if name not in forces:
             raise ValueError(f"the run has no link called {name!r}: there are {', '.join(forces)}.")
-        peak = peak_load(t, forces[name], group.count)
-        check = check_bar(group.bar, peak.tension, peak.compression, stated)
-        found.append(BarLoad(name=name, count=group.count, peak=peak, check=check))
-    return LoadReport(bars=tuple(sorted(found, key=lambda bar: bar.check.governs.factor)))
+        peak = peak_load(t, forces[name], bar.count)
+        check = check_bar(bar, peak.tension, peak.compression, stated)
+        found.append(BarLoad(name=name, count=bar.count, peak=peak, check=check))
+    return LoadReport(bars=tuple(sorted(found, key=lambda load: load.check.governs.factor)))
 
 
-def loads_of(launch, bars, allowances=None):
-    """The same from a launch.
+def link_length(link):
+    """Centre-to-centre length of a bar between its pins, its plan angle counted, m.
 
     Parameters
     ----------
-    launch : solver.Launch
-    bars : dict of str to BarSet
-    allowances : solver.members.Allowances or None
+    link : solver.car.Link
 
     Returns
     -------
-    LoadReport
-
-    Raises
-    ------
-    ValueError
-        As `bar_loads`.
+    float
     """
-    histories = launch.to_dict()["histories"]
-    forces = {
-        name: histories[f"{name}_link_force"]
-        for name in ("lower", "upper")
-        if histories.get(f"{name}_link_force") is not None
+    seen = math.dist(link.chassis, link.housing)
+    return seen / math.cos(link.plan_angle)
+
+
+def with_lengths(plan, linkage):
+    """The described bars by name, each with its length.
+
+    Parameters
+    ----------
+    plan : BarPlan
+    linkage : solver.car.FourLink
+
+    Returns
+    -------
+    dict of str to Bar
+    """
+    described = {"lower": plan.lower, "upper": plan.upper}
+    return {
+        name: bar if bar.length is not None else replace(bar, length=link_length(getattr(linkage, name)))
+        for name, bar in described.items()
+        if bar is not None
     }
-    return bar_loads(histories["t"], forces, bars, allowances)

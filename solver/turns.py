@@ -33,12 +33,13 @@ class Axle:
     ----------
     track : float
         Between the middles of the tyre patches, m.
-    spring_rates : tuple of float
-        Left and right spring, N/m.
+    spring_rates : tuple of float or None
+        Left and right spring, N/m; None where nobody described them, and no turns
+        can be worked out.
     motion_ratio : float
         Spring travel per wheel travel when both wheels move together.
-    thread_pitch : float
-        Seat travel along the spring for one turn, m.
+    thread_pitch : float or None
+        Seat travel along the spring for one turn, m; None for no threaded seat.
     tyre_rate : float or None
         One tyre, N/m; None for a rigid tyre.
     bar_rate : float
@@ -52,9 +53,9 @@ class Axle:
     """
 
     track: float
-    spring_rates: tuple
-    motion_ratio: float
-    thread_pitch: float
+    spring_rates: tuple | None = None
+    motion_ratio: float = 1.0
+    thread_pitch: float | None = None
     tyre_rate: float | None = None
     bar_rate: float = 0.0
     spring_base: float | None = None
@@ -172,7 +173,7 @@ def seat_turns(measured, target, wheelbase, front, rear, gravity=9.80665, keep_h
         rise = np.zeros(4)
     else:
         # w.Kw^-1 (D s - needed) = w.B q = 0: one condition on the seats.
-        pitch = np.array([axle.thread_pitch * axle.adjustable for axle in axles for _ in range(2)])
+        pitch = _pitches(axles)
         row = np.linalg.solve(stiffness, seats).T @ warp * pitch
         count = row * (warp @ np.linalg.solve(stiffness, needed)) / (row @ row)
         travel = count * pitch
@@ -182,7 +183,7 @@ def seat_turns(measured, target, wheelbase, front, rear, gravity=9.80665, keep_h
 
 
 def _result(measured, target, change, travel, rise, axles, keep_height):
-    pitches = np.array([axle.thread_pitch for axle in axles for _ in range(2)])
+    pitches = _pitches(axles)
     after = measured.as_array() + change
     for name, value in zip(CORNER_NAMES, after, strict=True):
         if value < 0.0:
@@ -190,7 +191,7 @@ def _result(measured, target, change, travel, rise, axles, keep_height):
                 f"the {name.replace('_', ' ')} tyre would leave its scale: the target asks too much."
             )
     return SeatTurns(
-        turns=Corners.from_array(travel / pitches),
+        turns=Corners.from_array(np.divide(travel, pitches, out=np.zeros(4), where=pitches > 0.0)),
         seat_travel=Corners.from_array(travel),
         corner_weights=Corners.from_array(after),
         height_change=Corners.from_array(rise),
@@ -201,11 +202,16 @@ def _result(measured, target, change, travel, rise, axles, keep_height):
 
 
 def _checked(name, axle):
+    if axle.spring_rates is None:
+        raise ValueError(f"the {name} springs are not described: seat turns cannot be worked out.")
     positive(f"the {name} track", axle.track, "m")
     for side, rate in zip(("left", "right"), axle.spring_rates, strict=True):
         positive(f"the {side} {name} spring rate", rate, "N/m")
     positive(f"the {name} motion ratio", axle.motion_ratio)
-    positive(f"the {name} seat's thread pitch", axle.thread_pitch, "m")
+    if axle.thread_pitch is None and axle.adjustable:
+        raise ValueError(f"the {name} seat's thread pitch is not given: seat turns cannot be worked out.")
+    if axle.thread_pitch is not None:
+        positive(f"the {name} seat's thread pitch", axle.thread_pitch, "m")
     not_negative(f"the {name} anti-roll bar rate", axle.bar_rate, "N/m")
     if axle.tyre_rate is not None:
         positive(f"the {name} tyre rate", axle.tyre_rate, "N/m")
@@ -222,6 +228,11 @@ def _check_seats(axles, keep_height):
             "the ride height is to be kept, which takes turns at all four seats:"
             " one axle is marked as not adjustable."
         )
+
+
+def _pitches(axles):
+    """Seat travel for one turn at each corner, zero where the seat does not turn."""
+    return np.array([axle.thread_pitch if axle.adjustable else 0.0 for axle in axles for _ in range(2)])
 
 
 def _ride_matrix(length, front_track, rear_track):

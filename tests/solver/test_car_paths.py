@@ -16,19 +16,25 @@ CAR = {
 
 def test_numbers_by_path():
     assert number_at(CAR, "cg.z") == 0.51
-    assert number_at(CAR, "rear.springs[0].spring.rate") == 52000.0
-    assert number_at(CAR, "hit.table[1][1]") == 13000.0
+    assert number_at(CAR, "rear.springs.0.spring.rate") == 52000.0
+    assert number_at(CAR, "hit.table.1.1") == 13000.0
+
+
+def test_points_by_axis():
+    car = {"lower": {"chassis": [0.56, 0.22]}}
+    assert number_at(car, "lower.chassis.z") == number_at(car, "lower.chassis.1") == 0.22
+    assert with_numbers(car, {"lower.chassis.x": 0.5})["lower"]["chassis"] == [0.5, 0.22]
 
 
 def test_every_listed_path_can_be_read():
     paths = number_paths(CAR)
-    assert "hit.table[1][0]" in paths and "flag" not in paths and "name" not in paths
+    assert "hit.table.1.0" in paths and "flag" not in paths and "name" not in paths
     assert len(paths) == 8
     assert [number_at(CAR, path) for path in paths][:2] == [1210, 1.32]
 
 
 def test_changing_leaves_the_original():
-    changed = with_numbers(CAR, {"mass": 1300.0, "hit.table[1][1]": 14000.0})
+    changed = with_numbers(CAR, {"mass": 1300.0, "hit.table.1.1": 14000.0})
     assert (changed["mass"], changed["hit"]["table"][1][1]) == (1300.0, 14000.0)
     assert (CAR["mass"], CAR["hit"]["table"][1][1]) == (1210, 13000.0)
 
@@ -36,14 +42,15 @@ def test_changing_leaves_the_original():
 @pytest.mark.parametrize(
     ("path", "words"),
     [
-        ("cg.y", "cg.y is not in this car file"),
-        ("rear.springs[3].spring.rate", "is not in this car file"),
+        ("cg.y", "cg.y. is not in this car file"),
+        ("rear.springs.3.spring.rate", "is not in this car file"),
         ("rear.springs.spring", "is not in this car file"),
-        ("mass[0]", "is not in this car file"),
+        ("mass.0", "is not in this car file"),
         ("name", "name is not a number"),
         ("flag", "flag is not a number"),
         ("cg", "cg is not a number"),
-        ("", "empty"),
+        ("hit.table.-1.1", "is not in this car file"),
+        ("", "is not in this car file"),
     ],
 )
 def test_wrong_paths_are_named(path, words):

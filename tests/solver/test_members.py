@@ -133,7 +133,7 @@ def test_handbook_4130():
 
 THREAD = Thread(0.75 * INCH, INCH / 16, 100e3 * PSI)
 ROD_END = RodEnd("chassis rod end", 20000 * LBF, "maker's sheet", shank=THREAD)
-LOWER = Bar("lower bar", 22 * INCH, 1.25 * INCH, 0.095 * INCH, STEEL, threads=(THREAD,), rod_ends=(ROD_END,))
+LOWER = Bar("lower bar", 1.25 * INCH, 0.095 * INCH, STEEL, 22 * INCH, threads=(THREAD,), rod_ends=(ROD_END,))
 BARE = Allowances(dynamic=1.0, fatigue=1.0, source="none, for the test")
 
 
@@ -168,7 +168,7 @@ def test_allowances_are_stated_and_applied():
 
 
 def test_crooked_bar_is_named():
-    bent = Bar("upper bar", 22 * INCH, 1.25 * INCH, 0.095 * INCH, STEEL, bow=0.004)
+    bent = Bar("upper bar", 1.25 * INCH, 0.095 * INCH, STEEL, 22 * INCH, bow=0.004)
     check = check_bar(bent, 0.0, 5000 * LBF, BARE)
     assert check.governs.what == "tube buckles (Perry-Robertson, crooked bar)"
 
@@ -189,7 +189,7 @@ def test_per_side():
     ("call", "words"),
     [
         (
-            lambda: check_bar(Bar("upper bar", 0.0, 0.03, 0.002, STEEL), 0, 1),
+            lambda: check_bar(Bar("upper bar", 0.03, 0.002, STEEL, 0.0), 0, 1),
             "upper bar: the length of the bar is 0 m",
         ),
         (lambda: check_bar(LOWER, -1.0, 0.0), "lower bar: the tension is -1 N"),

@@ -70,7 +70,7 @@ def test_draws_agree_with_the_first_order():
 @pytest.mark.parametrize(
     ("uncertainties", "words"),
     [
-        ({"cg.y": 0.1}, "cg.y is not in this car file"),
+        ({"cg.y": 0.1}, "cg.y. is not in this car file"),
         ({"mass": -1.0}, "uncertainty of mass is -1"),
         ({"mass": 0.0}, "no spread to work out"),
     ],
