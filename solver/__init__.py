@@ -1,0 +1,40 @@
+"""The planar launch solver: pure functions over frozen dataclasses, SI throughout.
+
+``load_car`` or ``car_from_dict`` give a `Car`; ``statics``, ``modes``, ``launch`` and
+``sweep`` answer from it. Nothing is compiled at import: `warm` does that, once.
+"""
+
+import importlib
+
+from solver.version import SOLVER_VERSION
+
+__version__ = SOLVER_VERSION
+
+# Where each public name lives. Looked up at first use, so that importing the
+# package costs neither numba nor numpy.
+_HOMES = {
+    "Car": "car",
+    "CarError": "faults",
+    "Fault": "faults",
+    "LaunchFailed": "faults",
+    "load_car": "carfile",
+    "car_from_dict": "carfile",
+    "car_to_dict": "carfile",
+    "Statics": "statics",
+    "statics": "statics",
+    "Mode": "modes",
+    "modes": "modes",
+    "Launch": "launching",
+    "launch": "launching",
+    "warm": "warming",
+    "FIGURES": "figures",
+    "HISTORIES": "figures",
+}
+
+__all__ = ["SOLVER_VERSION", *_HOMES]
+
+
+def __getattr__(name):
+    if name not in _HOMES:
+        raise AttributeError(f"module 'solver' has no attribute {name!r}")
+    return getattr(importlib.import_module(f"solver.{_HOMES[name]}"), name)

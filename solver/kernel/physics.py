@@ -1,0 +1,268 @@
+"""The right-hand side: from a state and a hit to accelerations and forces.
+
+Seven coordinates (chassis x, z, pitch; housing x, z, angle; front wheels along
+their slide), all measured from ride height. Three unknown forces close the
+system: the two link tensions and the slide's side load. They come from the
+conditions that the links keep their length and the wheels stay on the slide,
+differentiated twice (index-1 form of the constraint equations), with the drift
+of the links' length fed back (Baumgarte, Computer Methods in Applied Mechanics
+and Engineering 1 (1972) 1-16).
+"""
+
+import math
+
+from solver.kernel import layout as L
+from solver.kernel.curves import curve
+from solver.kernel.jit import jit
+from solver.kernel.rest import GRAVITY
+
+FEEDBACK = 50.0  # rad/s, both roots of the drift's decay
+
+
+@jit
+def push(rate, damping, squash, speed):
+    """A contact that pushes only: not gated on `squash`, so that it never jumps."""
+    return rate * squash + damping * speed
+
+
+@jit
+def link(p, y, co, si, ch, sh, chassis_x, chassis_z, housing_x, housing_z, length):
+    """One link: direction, moment arms, and the acceleration its motion asks for."""
+    ax = co * (p[chassis_x] - p[L.SPRUNG_X]) - si * (p[chassis_z] - p[L.SPRUNG_Z])
+    az = si * (p[chassis_x] - p[L.SPRUNG_X]) + co * (p[chassis_z] - p[L.SPRUNG_Z])
+    bx = ch * p[housing_x] - sh * (p[housing_z] - p[L.REAR_RADIUS])
+    bz = sh * p[housing_x] + ch * (p[housing_z] - p[L.REAR_RADIUS])
+    ex = y[L.HX] + bx - p[L.SPRUNG_X] - y[L.X] - ax
+    ez = y[L.HZ] + p[L.REAR_RADIUS] + bz - p[L.SPRUNG_Z] - y[L.Z] - az
+    actual = math.sqrt(ex * ex + ez * ez)
+    ux, uz = ex / actual, ez / actual
+    w, v = y[7 + L.PITCH], y[7 + L.HOUSING]
+    speed_x = y[7 + L.HX] - v * bz - y[7 + L.X] + w * az
+    speed_z = y[7 + L.HZ] + v * bx - y[7 + L.Z] - w * ax
+    along = ux * speed_x + uz * speed_z
+    across = ux * speed_z - uz * speed_x
+    stretch = actual - p[length]
+    wanted = (
+        -across * across / actual
+        - FEEDBACK * (2.0 * along + FEEDBACK * stretch)
+        + v * v * (ux * bx + uz * bz)
+        - w * w * (ux * ax + uz * az)
+    )
+    return ux, uz, ax * uz - az * ux, bx * uz - bz * ux, wanted, stretch
+
+
+@jit
+def rear_line(p, y, co, si, ch, sh, at):
+    """One rear spring line: direction from housing to chassis, arms, squeeze and its speed."""
+    ax = co * (p[at + L.LINE_CX] - p[L.SPRUNG_X]) - si * (p[at + L.LINE_CZ] - p[L.SPRUNG_Z])
+    az = si * (p[at + L.LINE_CX] - p[L.SPRUNG_X]) + co * (p[at + L.LINE_CZ] - p[L.SPRUNG_Z])
+    bx = ch * p[at + L.LINE_HX] - sh * (p[at + L.LINE_HZ] - p[L.REAR_RADIUS])
+    bz = sh * p[at + L.LINE_HX] + ch * (p[at + L.LINE_HZ] - p[L.REAR_RADIUS])
+    ex = p[L.SPRUNG_X] + y[L.X] + ax - y[L.HX] - bx
+    ez = p[L.SPRUNG_Z] + y[L.Z] + az - y[L.HZ] - p[L.REAR_RADIUS] - bz
+    length = math.sqrt(ex * ex + ez * ez)
+    ux, uz = ex / length, ez / length
+    speed_x = y[7 + L.X] - y[7 + L.PITCH] * az - y[7 + L.HX] + y[7 + L.HOUSING] * bz
+    speed_z = y[7 + L.Z] + y[7 + L.PITCH] * ax - y[7 + L.HZ] - y[7 + L.HOUSING] * bx
+    squeeze = p[at + L.LINE_LENGTH] - length
+    return ux, uz, ax * uz - az * ux, bx * uz - bz * ux, squeeze, -ux * speed_x - uz * speed_z
+
+
+@jit
+def rear_springs(p, n, y, co, si, ch, sh, out):
+    """All rear springs, shocks and stops: their force and moments on chassis and housing."""
+    fx, fz, chassis_moment, housing_moment = 0.0, 0.0, 0.0, 0.0
+    coil, shock, stops = 0.0, 0.0, 0.0
+    for i in range(n[L.N_LINES]):
+        at = L.LINES + L.LINE_WIDTH * i
+        ux, uz, arm, housing_arm, squeeze, speed = rear_line(p, y, co, si, ch, sh, at)
+        spring = p[at + L.LINE_PRELOAD] + curve(p, n, L.LINE_SPRING + i, squeeze)
+        damper = curve(p, n, L.LINE_DAMPER + i, speed)
+        force = spring + damper
+        coil += spring
+        shock += damper
+        if n[L.BUMP_LINE] == i:
+            past = squeeze - p[L.REAR_BUMP_CLEARANCE]
+            gate = curve(p, n, L.REAR_BUMP, past) + p[L.REAR_BUMP_DAMPING] * speed
+            out[L.O_GATE + L.GATE_REAR_BUMP] = gate
+            force += max(0.0, gate)
+            stops += max(0.0, gate)
+        if n[L.DROOP_LINE] == i:
+            past = -squeeze - p[L.REAR_DROOP_CLEARANCE]
+            gate = curve(p, n, L.REAR_DROOP, past) - p[L.REAR_DROOP_DAMPING] * speed
+            out[L.O_GATE + L.GATE_REAR_DROOP] = gate
+            force -= max(0.0, gate)
+            stops -= max(0.0, gate)
+        fx += force * ux
+        fz += force * uz
+        chassis_moment += force * arm
+        housing_moment -= force * housing_arm
+        if n[L.TRAVEL_LINE] == i:
+            out[L.O_TRAVEL], out[L.O_TRAVEL_SPEED] = squeeze, speed
+        if n[L.SHOCK_LINE] == i:
+            out[L.O_SHOCK_TRAVEL], out[L.O_SHOCK_SPEED] = squeeze, speed
+    out[L.O_REAR_COIL], out[L.O_REAR_SHOCK], out[L.O_REAR_STOP] = coil, shock, stops
+    out[L.O_REAR_SPRING] = coil + shock
+    return fx, fz, chassis_moment, housing_moment
+
+
+@jit
+def front_spring(p, n, y, out):
+    """Force along the front slide, spring and shock and stops, pushing the chassis up."""
+    travel, speed = y[L.SLIDE], y[7 + L.SLIDE]
+    spring = p[L.FRONT_SPRING_STATIC] + curve(p, n, L.FRONT_SPRING, travel)
+    force = spring + curve(p, n, L.FRONT_DAMPER, speed)
+    past = travel - p[L.FRONT_BUMP_CLEARANCE]
+    bump = curve(p, n, L.FRONT_BUMP, past) + p[L.FRONT_BUMP_DAMPING] * speed
+    past = -travel - p[L.FRONT_DROOP_CLEARANCE]
+    droop = curve(p, n, L.FRONT_DROOP, past) - p[L.FRONT_DROOP_DAMPING] * speed
+    stops = max(0.0, bump) - max(0.0, droop)
+    out[L.O_GATE + L.GATE_FRONT_BUMP], out[L.O_GATE + L.GATE_FRONT_DROOP] = bump, droop
+    out[L.O_FRONT_SPRING], out[L.O_FRONT_STOP] = force, stops
+    out[L.O_FRONT_TRAVEL], out[L.O_FRONT_SPEED] = travel, speed
+    return force + stops
+
+
+@jit
+def wheelie_bar(p, n, y, co, si, ch, sh, out):
+    """Upward force of the wheelie bar's wheels and its moment about the body it is bolted to."""
+    if n[L.WHEELIE_ON] == L.ON_CHASSIS:
+        rx, rz = p[L.WHEELIE_X] - p[L.SPRUNG_X], p[L.WHEELIE_CLEARANCE] - p[L.SPRUNG_Z]
+        arm = co * rx - si * rz
+        height = p[L.SPRUNG_Z] + y[L.Z] + si * rx + co * rz
+        speed = y[7 + L.Z] + y[7 + L.PITCH] * arm
+    else:
+        rx, rz = p[L.WHEELIE_X], p[L.WHEELIE_CLEARANCE] - p[L.REAR_RADIUS]
+        arm = ch * rx - sh * rz
+        height = p[L.REAR_RADIUS] + y[L.HZ] + sh * rx + ch * rz
+        speed = y[7 + L.HZ] + y[7 + L.HOUSING] * arm
+    gate = push(p[L.WHEELIE_RATE], p[L.WHEELIE_DAMPING], -height, -speed)
+    out[L.O_GATE + L.GATE_WHEELIE] = gate
+    force = max(0.0, gate)
+    out[L.O_WHEELIE] = force
+    return force, force * arm
+
+
+@jit
+def accelerate(p, n, hit, y, dy, out):
+    """The right-hand side.
+
+    Parameters
+    ----------
+    p, n : float64 and int64 rows
+        One lane as `layout` describes it, after `rest.settle`.
+    hit : float
+        Horizontal force at the rear patch, N.
+    y, dy : float64 (14,)
+        State and its rate.
+    out : float64 (OUTPUTS,)
+        Forces, travels and gates at this state.
+    """
+    ms, mr, mf = p[L.SPRUNG_MASS], p[L.REAR_MASS], p[L.FRONT_MASS]
+    inertia, housing_inertia = p[L.CHASSIS_INERTIA], p[L.HOUSING_INERTIA]
+    co, si = math.cos(y[L.PITCH]), math.sin(y[L.PITCH])
+    ch, sh = math.cos(y[L.HOUSING]), math.sin(y[L.HOUSING])
+    w, slide_speed = y[7 + L.PITCH], y[7 + L.SLIDE]
+
+    # Front wheels: where they are from the sprung CG, the tyre, the slide.
+    rx, rz = p[L.WHEELBASE] - p[L.SPRUNG_X], p[L.FRONT_RADIUS] - p[L.SPRUNG_Z] + y[L.SLIDE]
+    wx, wz = co * rx - si * rz, si * rx + co * rz
+    rise = p[L.SPRUNG_Z] + y[L.Z] + wz - p[L.FRONT_RADIUS]
+    rise_speed = y[7 + L.Z] + w * wx + co * slide_speed
+    gate = push(
+        p[L.FRONT_TYRE_RATE], p[L.FRONT_TYRE_DAMPING], p[L.FRONT_SQUASH] - rise, -rise_speed
+    )
+    out[L.O_GATE + L.GATE_FRONT_TYRE] = gate
+    front_load = max(0.0, gate)
+    out[L.O_FRONT_LOAD] = front_load
+    out[L.O_FRONT_CLEARANCE] = max(0.0, rise - p[L.FRONT_SQUASH])
+    front_pull = front_load - mf * GRAVITY
+    slide_force = front_spring(p, n, y, out)
+
+    # Rear tyre.
+    gate = push(
+        p[L.REAR_TYRE_RATE], p[L.REAR_TYRE_DAMPING], p[L.REAR_SQUASH] - y[L.HZ], -y[7 + L.HZ]
+    )
+    out[L.O_GATE + L.GATE_REAR_TYRE] = gate
+    rear_load = max(0.0, gate)
+    out[L.O_REAR_LOAD] = rear_load
+
+    # Everything that is not a constraint force.
+    fx, fz, chassis_moment, housing_moment = rear_springs(p, n, y, co, si, ch, sh, out)
+    housing_fx, housing_fz = hit - fx, rear_load - mr * GRAVITY - fz
+    housing_moment += hit * (p[L.REAR_RADIUS] + y[L.HZ])
+    fx -= slide_force * si
+    fz += slide_force * co - ms * GRAVITY
+    chassis_moment += slide_force * (wx * co + wz * si)
+    if n[L.WHEELIE_ON] != L.NO_WHEELIE:
+        force, moment = wheelie_bar(p, n, y, co, si, ch, sh, out)
+        if n[L.WHEELIE_ON] == L.ON_CHASSIS:
+            fz += force
+            chassis_moment += moment
+        else:
+            housing_fz += force
+            housing_moment += moment
+
+    # Link tensions and the slide's side load: S (lower, upper, side) = free motion - wanted.
+    lx, lz, la, lb, wanted, drift = link(
+        p, y, co, si, ch, sh, L.LCX, L.LCZ, L.LHX, L.LHZ, L.LOWER_LENGTH
+    )
+    ux, uz, ua, ub, upper_wanted, upper_drift = link(
+        p, y, co, si, ch, sh, L.UCX, L.UCZ, L.UHX, L.UHZ, L.UPPER_LENGTH
+    )
+    js = wx * si - wz * co
+    side_wanted = w * w * (co * wx + si * wz) + 2.0 * w * slide_speed + front_pull * si / mf
+    free = fx / ms, fz / ms, chassis_moment / inertia
+    housing_free = housing_fx / mr, housing_fz / mr, housing_moment / housing_inertia
+    masses = 1.0 / ms + 1.0 / mr
+    s11 = masses + la * la / inertia + lb * lb / housing_inertia
+    s22 = masses + ua * ua / inertia + ub * ub / housing_inertia
+    s12 = masses * (lx * ux + lz * uz) + la * ua / inertia + lb * ub / housing_inertia
+    s13 = (lx * co + lz * si) / ms + la * js / inertia
+    s23 = (ux * co + uz * si) / ms + ua * js / inertia
+    s33 = 1.0 / ms + js * js / inertia + 1.0 / mf
+    r1 = lx * (housing_free[0] - free[0]) + lz * (housing_free[1] - free[1]) - wanted
+    r1 += lb * housing_free[2] - la * free[2]
+    r2 = ux * (housing_free[0] - free[0]) + uz * (housing_free[1] - free[1]) - upper_wanted
+    r2 += ub * housing_free[2] - ua * free[2]
+    r3 = co * free[0] + si * free[1] + js * free[2] - side_wanted
+    # The side load first: s33 side = r3 + s13 lower + s23 upper.
+    a11, a12, a22 = s11 - s13 * s13 / s33, s12 - s13 * s23 / s33, s22 - s23 * s23 / s33
+    b1, b2 = r1 + s13 * r3 / s33, r2 + s23 * r3 / s33
+    determinant = a11 * a22 - a12 * a12
+    lower = (b1 * a22 - b2 * a12) / determinant
+    upper = (b2 * a11 - b1 * a12) / determinant
+    side = (r3 + s13 * lower + s23 * upper) / s33
+    out[L.O_LOWER], out[L.O_UPPER] = lower, upper
+    out[L.O_DRIFT] = max(abs(drift), abs(upper_drift))
+    out[L.O_LEVERAGE] = determinant / (a11 * a22)
+
+    for i in range(L.COORDINATES):
+        dy[i] = y[L.COORDINATES + i]
+    dy[7 + L.X] = free[0] + (lower * lx + upper * ux - side * co) / ms
+    dy[7 + L.Z] = free[1] + (lower * lz + upper * uz - side * si) / ms
+    dy[7 + L.PITCH] = free[2] + (lower * la + upper * ua - side * js) / inertia
+    dy[7 + L.HX] = housing_free[0] - (lower * lx + upper * ux) / mr
+    dy[7 + L.HZ] = housing_free[1] - (lower * lz + upper * uz) / mr
+    dy[7 + L.HOUSING] = housing_free[2] - (lower * lb + upper * ub) / housing_inertia
+    dy[7 + L.SLIDE] = (
+        (front_pull * co - slide_force) / mf
+        + si * dy[7 + L.X]
+        - co * dy[7 + L.Z]
+        - (wx * co + wz * si) * dy[7 + L.PITCH]
+        + w * w * (wz * co - wx * si)
+    )
+    report(p, y, hit, co, si, dy[7 + L.X], out)
+
+
+@jit
+def report(p, y, hit, co, si, forward, out):
+    """Fill the outputs that follow from the state alone."""
+    out[L.O_PITCH], out[L.O_HOUSING] = y[L.PITCH], y[L.HOUSING]
+    out[L.O_ACCELERATION], out[L.O_HIT] = forward, hit
+    load = out[L.O_REAR_LOAD]
+    out[L.O_GRIP] = hit / load if load > 0.0 else (0.0 if hit == 0.0 else math.inf)
+    rx, rz = p[L.WHEELBASE] - p[L.SPRUNG_X], p[L.FRONT_RADIUS] - p[L.SPRUNG_Z]
+    out[L.O_RIDE_FRONT] = y[L.Z] + si * rx + (co - 1.0) * rz
+    rx, rz = -p[L.SPRUNG_X], p[L.REAR_RADIUS] - p[L.SPRUNG_Z]
+    out[L.O_RIDE_REAR] = y[L.Z] + si * rx + (co - 1.0) * rz

@@ -1,0 +1,142 @@
+"""Ride height: what the measured weights say the springs and links carry at rest."""
+
+import math
+
+from solver.kernel.curves import slope_at_rest, steepest
+from solver.kernel.jit import jit
+from solver.kernel import layout as L
+
+GRAVITY = 9.80665
+VIRTUAL_LINK = 0.3
+
+
+@jit
+def unit(from_x, from_z, to_x, to_z):
+    """Unit vector from one point to another, and their distance."""
+    dx, dz = to_x - from_x, to_z - from_z
+    length = math.sqrt(dx * dx + dz * dz)
+    return dx / length, dz / length, length
+
+
+@jit
+def place_links(p, n):
+    """Write the two links to solve.
+
+    A ladder bar is one rigid bar on the housing, pinned to the chassis. Two links
+    from that one pin to two points of the housing hold it exactly so: the lower one
+    along the bar to the axle centre, the upper one square to it, so that their
+    forces are the pin's load along and across the bar.
+    """
+    if n[L.KIND] == L.FOUR_LINK:
+        for i in range(8):
+            p[L.LCX + i] = p[L.LOWER_CX + i]
+        return
+    px, pz = p[L.LOWER_CX], p[L.LOWER_CZ]
+    ux, uz, _ = unit(px, pz, 0.0, p[L.REAR_RADIUS])
+    p[L.LCX], p[L.LCZ], p[L.LHX], p[L.LHZ] = px, pz, 0.0, p[L.REAR_RADIUS]
+    p[L.UCX], p[L.UCZ] = px, pz
+    p[L.UHX], p[L.UHZ] = px + VIRTUAL_LINK * uz, pz - VIRTUAL_LINK * ux
+
+
+@jit
+def weigh(p):
+    """Sprung mass and its CG by subtraction; the axles' static loads."""
+    front, rear, mass = p[L.FRONT_MASS], p[L.REAR_MASS], p[L.MASS]
+    sprung = mass - front - rear
+    p[L.SPRUNG_MASS] = sprung
+    p[L.SPRUNG_X] = (mass * p[L.CG_X] - front * p[L.WHEELBASE]) / sprung
+    p[L.SPRUNG_Z] = (mass * p[L.CG_Z] - front * p[L.FRONT_RADIUS] - rear * p[L.REAR_RADIUS]) / sprung
+    p[L.FRONT_STATIC] = mass * GRAVITY * p[L.CG_X] / p[L.WHEELBASE]
+    p[L.REAR_STATIC] = mass * GRAVITY - p[L.FRONT_STATIC]
+    p[L.FRONT_SPRING_STATIC] = p[L.FRONT_STATIC] - front * GRAVITY
+    p[L.FRONT_SQUASH] = p[L.FRONT_STATIC] / p[L.FRONT_TYRE_RATE]
+    p[L.REAR_SQUASH] = p[L.REAR_STATIC] / p[L.REAR_TYRE_RATE]
+
+
+@jit
+def spring_pull(p, n):
+    """Direction and moment about the axle of all rear springs, for one newton in sum.
+
+    Springs that share the axle carry their share in proportion to their rates.
+    """
+    sx, sz, sm, rates = 0.0, 0.0, 0.0, 0.0
+    for i in range(n[L.N_LINES]):
+        at = L.LINES + L.LINE_WIDTH * i
+        hx, hz = p[at + L.LINE_HX], p[at + L.LINE_HZ]
+        ux, uz, length = unit(hx, hz, p[at + L.LINE_CX], p[at + L.LINE_CZ])
+        p[at + L.LINE_LENGTH] = length
+        rate = slope_at_rest(p, n, L.LINE_SPRING + i)
+        rates += rate
+        sx += rate * ux
+        sz += rate * uz
+        sm += rate * (hx * uz - (hz - p[L.REAR_RADIUS]) * ux)
+    for i in range(n[L.N_LINES]):
+        p[L.LINES + L.LINE_WIDTH * i + L.LINE_PRELOAD] = slope_at_rest(p, n, L.LINE_SPRING + i) / rates
+    return sx / rates, sz / rates, sm / rates
+
+
+@jit
+def balance_axle(p, n):
+    """Rear spring force and both link tensions from the housing's equilibrium.
+
+    Forces on the housing: each link pulls it towards the chassis, the springs push
+    it away; the tyre carries the axle's static load through its centre.
+    """
+    sx, sz, sm = spring_pull(p, n)
+    lx, lz, p[L.LOWER_LENGTH] = unit(p[L.LHX], p[L.LHZ], p[L.LCX], p[L.LCZ])
+    ux, uz, p[L.UPPER_LENGTH] = unit(p[L.UHX], p[L.UHZ], p[L.UCX], p[L.UCZ])
+    lm = p[L.LHX] * lz - (p[L.LHZ] - p[L.REAR_RADIUS]) * lx
+    um = p[L.UHX] * uz - (p[L.UHZ] - p[L.REAR_RADIUS]) * ux
+    carried = p[L.REAR_STATIC] - p[L.REAR_MASS] * GRAVITY
+    # lx Tl + ux Tu = sx S; lz Tl + uz Tu = sz S - carried; lm Tl + um Tu = sm S.
+    determinant = lx * (uz * sm - sz * um) - ux * (lz * sm - sz * lm) + sx * (lz * um - uz * lm)
+    spring = -carried * (lx * um - ux * lm) / determinant
+    lower = carried * (ux * sm - um * sx) / determinant
+    upper = -carried * (lx * sm - lm * sx) / determinant
+    p[L.REAR_SPRING_STATIC], p[L.LOWER_STATIC], p[L.UPPER_STATIC] = spring, lower, upper
+    for i in range(n[L.N_LINES]):
+        p[L.LINES + L.LINE_WIDTH * i + L.LINE_PRELOAD] *= spring
+
+
+@jit
+def fastest(rate, damping, mass):
+    """Greatest magnitude of an eigenvalue of one mass on a spring and a damper."""
+    half = 0.5 * damping / mass
+    if half * half <= rate / mass:
+        return math.sqrt(rate / mass)
+    return half + math.sqrt(half * half - rate / mass)
+
+
+@jit
+def bound_eigenvalues(p, n):
+    """A bound on the model's fastest eigenvalue, from steepest slopes everywhere.
+
+    Each wheel against a chassis that gives way as its own effective mass does;
+    stops count as if always in contact. Sets the longest stable step.
+    """
+    k = steepest(p, n, L.FRONT_SPRING)
+    k += max(steepest(p, n, L.FRONT_BUMP), steepest(p, n, L.FRONT_DROOP))
+    c = steepest(p, n, L.FRONT_DAMPER) + max(p[L.FRONT_BUMP_DAMPING], p[L.FRONT_DROOP_DAMPING])
+    give = p[L.WHEELBASE] - p[L.SPRUNG_X]
+    give = 1.0 / p[L.SPRUNG_MASS] + give * give / p[L.CHASSIS_INERTIA]
+    front = 1.0 / (1.0 / p[L.FRONT_MASS] + give)
+    front = fastest(k + p[L.FRONT_TYRE_RATE], c + p[L.FRONT_TYRE_DAMPING], front)
+    k = max(steepest(p, n, L.REAR_BUMP), steepest(p, n, L.REAR_DROOP))
+    c = max(p[L.REAR_BUMP_DAMPING], p[L.REAR_DROOP_DAMPING])
+    for i in range(n[L.N_LINES]):
+        k += steepest(p, n, L.LINE_SPRING + i)
+        c += steepest(p, n, L.LINE_DAMPER + i)
+    give = p[L.SPRUNG_X]
+    give = 1.0 / p[L.SPRUNG_MASS] + give * give / p[L.CHASSIS_INERTIA]
+    rear = 1.0 / (1.0 / p[L.REAR_MASS] + give)
+    rear = fastest(k + p[L.REAR_TYRE_RATE], c + p[L.REAR_TYRE_DAMPING], rear)
+    p[L.LAMBDA] = max(front, rear)
+
+
+@jit
+def settle(p, n):
+    """Work out everything derived from the inputs of one lane, in place."""
+    place_links(p, n)
+    weigh(p)
+    balance_axle(p, n)
+    bound_eigenvalues(p, n)

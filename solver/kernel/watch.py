@@ -1,0 +1,72 @@
+"""What is kept while a lane runs: greatest and least values, windows, dated events."""
+
+import math
+
+from solver.kernel import layout as L
+from solver.kernel.jit import jit
+
+
+@jit
+def begin(kept):
+    """Empty accumulators."""
+    for i in range(L.WATCHED):
+        kept[4 * i], kept[4 * i + 1] = -math.inf, 0.0
+        kept[4 * i + 2], kept[4 * i + 3] = math.inf, 0.0
+    for i in range(L.A_WINDOWS, L.ACCUMULATORS):
+        kept[i] = 0.0
+    kept[L.A_FIRST_PEAK] = -math.inf
+    kept[L.A_DIP] = math.inf
+    kept[L.A_DIP_TIME] = -1.0
+
+
+@jit
+def peaks(kept, t, out):
+    """Note the outputs at a step's start."""
+    for i in range(L.WATCHED):
+        value = out[i]
+        if value > kept[4 * i]:
+            kept[4 * i], kept[4 * i + 1] = value, t
+        if value < kept[4 * i + 2]:
+            kept[4 * i + 2], kept[4 * i + 3] = value, t
+    if out[L.O_DRIFT] > kept[L.A_DRIFT]:
+        kept[L.A_DRIFT] = out[L.O_DRIFT]
+
+
+@jit
+def first_peak(kept, t, load, static):
+    """The rear tyres' first peak, and the lowest load after it.
+
+    A fall of half a percent of the static load ends the first peak, so that
+    a ripple on the way up is not taken for it.
+    """
+    if kept[L.A_DIP_TIME] < 0.0:
+        if load > kept[L.A_FIRST_PEAK]:
+            kept[L.A_FIRST_PEAK], kept[L.A_FIRST_PEAK_TIME] = load, t
+        elif load < kept[L.A_FIRST_PEAK] - 0.005 * static:
+            kept[L.A_DIP], kept[L.A_DIP_TIME] = load, t
+    elif load < kept[L.A_DIP]:
+        kept[L.A_DIP], kept[L.A_DIP_TIME] = load, t
+
+
+@jit
+def windows(kept, t, h, load, next_load):
+    """Add a step to the time integrals of the rear load over the first instants."""
+    for i in range(3):
+        end = L.WINDOWS[i]
+        if t < end:
+            part = min(1.0, (end - t) / h)
+            at_end = load + part * (next_load - load)
+            kept[L.A_WINDOWS + i] += 0.5 * part * h * (load + at_end)
+
+
+@jit
+def events(log, count, t, h, out, after):
+    """Date every contact that began or ended within the step; returns the new count."""
+    for i in range(L.N_GATES):
+        before, now = out[L.O_GATE + i], after[L.O_GATE + i]
+        if (before > 0.0) != (now > 0.0):
+            if count < L.EVENTS:
+                log[count, 0] = 2 * i + (1 if now > 0.0 else 0)
+                log[count, 1] = t + h * before / (before - now)
+            count += 1
+    return count

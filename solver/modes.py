@@ -1,0 +1,96 @@
+"""Natural frequencies and damping ratios of the model linearised at ride height."""
+
+import math
+from dataclasses import dataclass
+
+import numpy as np
+
+from solver.carfile import ensure_sound
+from solver.faults import CarError
+from solver.kernel import layout as L
+from solver.kernel.lanes import settle_one
+from solver.kernel.linear import linearise
+from solver.packing import pack
+from solver.statics import rest_faults
+
+
+@dataclass(frozen=True)
+class Mode:
+    """One oscillatory mode.
+
+    Attributes
+    ----------
+    frequency_hz : float
+        Undamped natural frequency, ``|eigenvalue|/(2 pi)``.
+    damping_ratio : float
+        Below 1.
+    shape : dict of str to float
+        Heights of ``front_body``, ``rear_body``, ``front_wheels`` and ``rear_axle``
+        at one instant, the greatest being 1.
+    """
+
+    frequency_hz: float
+    damping_ratio: float
+    shape: dict[str, float]
+
+
+def modes(car):
+    """Oscillatory modes at ride height, slowest first.
+
+    Eigenvalues of the model's own right-hand side, linearised; a shock with
+    another slope each way counts with the mean of the two.
+
+    Parameters
+    ----------
+    car : Car
+
+    Returns
+    -------
+    tuple of Mode
+        At most five; over-damped motions have no frequency and are left out.
+
+    Raises
+    ------
+    CarError
+    """
+    ensure_sound(car)
+    row = pack(car)
+    settle_one(row.p, row.n)
+    if faults := rest_faults(row.p):
+        raise CarError(faults)
+    return modes_of_row(row)
+
+
+def modes_of_row(row):
+    """`Mode` tuple from a settled row, which is left as it was."""
+    matrix = state_matrix(row)
+    values, vectors = np.linalg.eig(matrix)
+    slow = 1e-6 * np.abs(values).max()
+    found = [i for i in range(10) if values[i].imag > slow]
+    found.sort(key=lambda i: abs(values[i]))
+    return tuple(_mode(values[i], vectors[:5, i], row.p) for i in found)
+
+
+def state_matrix(row):
+    """The (10, 10) matrix of (x, z, pitch, axle height, slide) and their rates."""
+    matrix = np.empty((10, 10))
+    linearise(row.p.copy(), row.n, matrix)
+    return matrix
+
+
+def _mode(value, vector, p):
+    size = float(abs(value))
+    return Mode(size / (2.0 * math.pi), float(-value.real) / size, _shape(vector, p))
+
+
+def _shape(vector, p):
+    _, z, pitch, axle, slide = vector
+    front = z + pitch * (p[L.WHEELBASE] - p[L.SPRUNG_X])
+    heights = {
+        "front_body": front,
+        "rear_body": z - pitch * p[L.SPRUNG_X],
+        "front_wheels": front + slide,
+        "rear_axle": axle,
+    }
+    greatest = max(heights.values(), key=abs)
+    return {name: float((height / greatest).real) for name, height in heights.items()}

@@ -1,0 +1,206 @@
+"""From a `Car` to the kernel's rows of numbers, and from file paths to columns."""
+
+import numpy as np
+
+from solver.car import FourLink
+from solver.dyno import damper_table
+from solver.kernel import layout as L
+
+
+class Row:
+    """One lane as the kernel reads it: floats `p`, integers `n`, and where each path went."""
+
+    def __init__(self, p, n, columns):
+        self.p, self.n, self.columns = p, n, columns
+
+
+def pack(car):
+    """Lay a car's numbers out for the kernel.
+
+    Parameters
+    ----------
+    car : Car
+
+    Returns
+    -------
+    Row
+        `columns` maps car-file paths to the columns of `p` they set.
+    """
+    n = np.zeros(L.INTEGERS, dtype=np.int64)
+    scalars, columns = np.zeros(L.SCALARS), {}
+    _put_body(scalars, columns, car)
+    _put_linkage(scalars, n, columns, car.rear.linkage)
+    lines = _put_lines(scalars, n, columns, car.rear)
+    _put_wheelie_bar(scalars, n, columns, car.wheelie_bar)
+    tail = []
+    _put_curves(n, tail, columns, car, lines)
+    n[L.HIT_AT], n[L.HIT_COUNT] = L.SCALARS + len(tail), len(car.hit.table)
+    tail.extend(value for pair in car.hit.table for value in pair)
+    return Row(np.concatenate([scalars, tail]), n, columns)
+
+
+def hinges(table, ratio=1.0):
+    """Value and slope at zero's left end, then (knot, change of slope) for each point.
+
+    Parameters
+    ----------
+    table : sequence of (v, f)
+        At least two points, v rising.
+    ratio : float
+        Motion ratio: the wheel moves `v / ratio` and feels `ratio * f`.
+
+    Returns
+    -------
+    list of float
+        f0, s0, v1, d1, v2, d2, ...
+    """
+    points = [(v / ratio, f * ratio) for v, f in table]
+    slopes = [(b[1] - a[1]) / (b[0] - a[0]) for a, b in zip(points, points[1:], strict=False)]
+    row = [points[0][1] - slopes[0] * points[0][0], slopes[0]]
+    for (v, _), before, after in zip(points[1:-1], slopes, slopes[1:], strict=True):
+        if after != before:
+            row += [v, after - before]
+    return row
+
+
+def _put(scalars, columns, where, path, value):
+    scalars[where] = value
+    columns[path] = (where,)
+
+
+def _put_body(scalars, columns, car):
+    front, rear = car.front, car.rear
+    plain = {
+        "wheelbase": (L.WHEELBASE, car.wheelbase),
+        "mass": (L.MASS, car.mass),
+        "cg.x": (L.CG_X, car.cg[0]),
+        "cg.z": (L.CG_Z, car.cg[1]),
+        "chassis.pitch_inertia": (L.CHASSIS_INERTIA, car.pitch_inertia),
+        "front.unsprung_mass": (L.FRONT_MASS, front.unsprung_mass),
+        "front.tyre_radius": (L.FRONT_RADIUS, front.tyre_radius),
+        "front.tyre.rate": (L.FRONT_TYRE_RATE, front.tyre.rate),
+        "front.tyre.damping": (L.FRONT_TYRE_DAMPING, front.tyre.damping),
+        "rear.unsprung_mass": (L.REAR_MASS, rear.unsprung_mass),
+        "rear.housing_inertia": (L.HOUSING_INERTIA, rear.housing_inertia),
+        "rear.tyre_radius": (L.REAR_RADIUS, rear.tyre_radius),
+        "rear.tyre.rate": (L.REAR_TYRE_RATE, rear.tyre.rate),
+        "rear.tyre.damping": (L.REAR_TYRE_DAMPING, rear.tyre.damping),
+        "hit.scale": (L.HIT_SCALE, 1.0),
+    }
+    for path, (where, value) in plain.items():
+        _put(scalars, columns, where, path, value)
+    scalars[L.DURATION], scalars[L.OUTPUT_STEP] = car.run.duration, car.run.output_step
+
+
+def _put_linkage(scalars, n, columns, linkage):
+    n[L.KIND] = L.FOUR_LINK if isinstance(linkage, FourLink) else L.LADDER_BAR
+    if n[L.KIND] == L.LADDER_BAR:
+        _put_point(scalars, columns, L.LOWER_CX, "rear.linkage.chassis", linkage.chassis)
+        return
+    for name, at in (("lower", L.LOWER_CX), ("upper", L.UPPER_CX)):
+        link, path = getattr(linkage, name), f"rear.linkage.{name}"
+        _put_point(scalars, columns, at, f"{path}.chassis", link.chassis)
+        _put_point(scalars, columns, at + 2, f"{path}.housing", link.housing)
+
+
+def _put_point(scalars, columns, at, path, point):
+    scalars[at], scalars[at + 1] = point
+    columns[f"{path}.x"], columns[f"{path}.z"] = (at,), (at + 1,)
+
+
+def _put_lines(scalars, n, columns, rear):
+    """Spring lines, then lines for stops on mounts of their own; the lines' entries."""
+    entries = [(f"rear.springs.{i}", entry) for i, entry in enumerate(rear.springs)]
+    for name, slot in (("bump_stop", L.BUMP_LINE), ("droop_stop", L.DROOP_LINE)):
+        stop = getattr(rear, name)
+        n[slot] = -1
+        if stop is not None:
+            n[slot] = 0
+            if stop.chassis is not None:
+                n[slot] = len(entries)
+                entries.append((f"rear.{name}", stop))
+    for i, (path, entry) in enumerate(entries):
+        at = L.LINES + L.LINE_WIDTH * i
+        _put_point(scalars, columns, at + L.LINE_CX, f"{path}.chassis", entry.chassis)
+        _put_point(scalars, columns, at + L.LINE_HX, f"{path}.housing", entry.housing)
+    n[L.N_LINES] = len(entries)
+    n[L.TRAVEL_LINE] = next(i for i, s in enumerate(rear.springs) if s.spring)
+    n[L.SHOCK_LINE] = next((i for i, s in enumerate(rear.springs) if s.damper), n[L.TRAVEL_LINE])
+    return entries
+
+
+def _put_wheelie_bar(scalars, n, columns, bar):
+    if bar is None:
+        return
+    n[L.WHEELIE_ON] = L.ON_CHASSIS if bar.mounted_on == "chassis" else L.ON_HOUSING
+    places = (L.WHEELIE_X, L.WHEELIE_CLEARANCE, L.WHEELIE_RATE, L.WHEELIE_DAMPING)
+    for where, name in zip(places, ("x", "clearance", "rate", "damping"), strict=True):
+        _put(scalars, columns, where, f"wheelie_bar.{name}", getattr(bar, name))
+
+
+def _put_curves(n, tail, columns, car, lines):
+    front, rear = car.front, car.rear
+    stops = (
+        (L.FRONT_BUMP, L.FRONT_BUMP_CLEARANCE, "front.bump_stop", front.bump_stop),
+        (L.FRONT_DROOP, L.FRONT_DROOP_CLEARANCE, "front.droop_stop", front.droop_stop),
+        (L.REAR_BUMP, L.REAR_BUMP_CLEARANCE, "rear.bump_stop", rear.bump_stop),
+        (L.REAR_DROOP, L.REAR_DROOP_CLEARANCE, "rear.droop_stop", rear.droop_stop),
+    )
+    adder = _Curves(n, tail, columns)
+    adder.spring(L.FRONT_SPRING, "front.spring", front.spring)
+    adder.damper(L.FRONT_DAMPER, "front.damper", front.damper)
+    for which, _, path, stop in stops:
+        adder.stop(which, path, stop)
+    for i in range(L.MAX_LINES):
+        path, entry = lines[i] if i < len(lines) else ("", None)
+        adder.spring(L.LINE_SPRING + i, f"{path}.spring", getattr(entry, "spring", None))
+        adder.damper(L.LINE_DAMPER + i, f"{path}.damper", getattr(entry, "damper", None))
+
+
+class _Curves:
+    """Lays curves down one after another and notes where each stands."""
+
+    def __init__(self, n, tail, columns):
+        self.n, self.tail, self.columns = n, tail, columns
+
+    def add(self, which, row, path=None):
+        at = L.SCALARS + len(self.tail)
+        self.n[L.CURVES + 2 * which] = at
+        self.n[L.CURVES + 2 * which + 1] = (len(row) - 2) // 2
+        self.tail.extend(row)
+        if path:
+            self.columns[path] = (at + 1,)
+
+    def spring(self, which, path, spring):
+        if spring is None:
+            self.add(which, [0.0, 0.0])
+        elif spring.rate is not None:
+            ratio = spring.motion_ratio
+            self.add(which, [0.0, spring.rate * ratio * ratio], f"{path}.rate")
+        else:
+            row = hinges(spring.table, spring.motion_ratio)
+            # Measured from ride height: the solved preload replaces the table's own.
+            row[0] -= _value(row, 0.0)
+            self.add(which, row)
+
+    def damper(self, which, path, damper):
+        if damper is None:
+            self.add(which, [0.0, 0.0])
+        elif damper.rate is not None:
+            ratio = damper.motion_ratio
+            self.add(which, [0.0, damper.rate * ratio * ratio], f"{path}.rate")
+        else:
+            self.add(which, hinges(damper_table(damper), damper.motion_ratio))
+
+    def stop(self, which, path, stop):
+        if stop is None:
+            self.add(which, [0.0, 0.0])
+        elif stop.rate is not None:
+            self.add(which, [0.0, stop.rate], f"{path}.rate")
+        else:
+            self.add(which, hinges(stop.table))
+
+
+def _value(row, v):
+    pairs = zip(row[2::2], row[3::2], strict=True)
+    return row[0] + row[1] * v + sum(change * max(0.0, v - knot) for knot, change in pairs)

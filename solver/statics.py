@@ -1,0 +1,204 @@
+"""What the car carries at ride height, and what its links say about the hit."""
+
+import math
+from dataclasses import dataclass
+
+from solver.car import FourLink
+from solver.carfile import ensure_sound
+from solver.faults import CarError, Fault
+from solver.geometry import meeting, parallel
+from solver.kernel import layout as L
+from solver.kernel.lanes import settle_one
+from solver.packing import pack
+
+
+@dataclass(frozen=True)
+class InstantCentre:
+    """Where the link lines meet, m; x and z are None when they are parallel.
+
+    `slope` is that of the force line from the rear patch.
+    """
+
+    x: float | None
+    z: float | None
+    slope: float
+
+
+@dataclass(frozen=True)
+class Bar:
+    """One pair of bars: true centre-to-centre length of one (m), angle from level (rad)
+    rising forward, tension of both together (N), plan angle (rad)."""
+
+    length: float
+    angle: float
+    force: float
+    plan_angle: float
+
+
+@dataclass(frozen=True)
+class Statics:
+    """Ride height of one car. Forces N, both sides summed; anti-squat in percent.
+
+    Attributes
+    ----------
+    anti_squat : float
+        Trade definition: whole-car CG, force line from patch to instant centre.
+    anti_squat_dynamic : float
+        Of the sprung mass: at 100 a steady hit moves no rear spring.
+    neutral_slope : float
+        ``h/L``: the line from the rear patch on which the trade's figure is 100.
+    sprung_neutral_line : tuple of float
+        (height above the rear patch, slope) of the line on which the dynamic
+        figure is 100: ``z = [m h/L x - m_r r]/(m - m_r)``.
+    load_transfer_per_newton : float
+        Rear load gained for each newton of hit, ``h/L``.
+    rear_spring_forces, rear_spring_lengths : tuple of float
+        One per entry of ``rear.springs``.
+    """
+
+    rear_load: float
+    front_load: float
+    rear_spring_force: float
+    front_spring_force: float
+    upper_link_force: float
+    lower_link_force: float
+    instant_centre: InstantCentre
+    anti_squat: float
+    anti_squat_dynamic: float
+    neutral_slope: float
+    sprung_neutral_line: tuple[float, float]
+    load_transfer_per_newton: float
+    sprung_mass: float
+    sprung_cg: tuple[float, float]
+    rear_spring_forces: tuple[float, ...]
+    rear_spring_lengths: tuple[float, ...]
+    rear_tyre_squash: float
+    front_tyre_squash: float
+    upper: Bar | None
+    lower: Bar
+
+
+def statics(car):
+    """Solve ride height: preloads, link loads, instant centre, anti-squat.
+
+    Anti-squat ``100 (z_ic/x_ic)/(h/L)``; of the sprung mass
+    ``100 [((m - m_r) z_ic + m_r r)/x_ic]/(m h/L)``, the rear axle's inertia acting
+    at its own height r. Derived from the housing's moments about the instant
+    centre; agrees with Barton and Fieldhouse, *Automotive Chassis Engineering*
+    (2018), eqs 3.63 to 3.69, in the limit of a massless axle.
+
+    Parameters
+    ----------
+    car : Car
+
+    Returns
+    -------
+    Statics
+
+    Raises
+    ------
+    CarError
+        When the car cannot stand at ride height as described.
+    """
+    ensure_sound(car)
+    row = pack(car)
+    settle_one(row.p, row.n)
+    return statics_of_row(car, row)
+
+
+def statics_of_row(car, row):
+    """`Statics` from a settled row of the kernel."""
+    p = row.p
+    faults = rest_faults(p)
+    if faults:
+        raise CarError(faults)
+    centre = instant_centre_of(p)
+    neutral = car.cg[1] / car.wheelbase
+    lower_plan, upper_plan = plan_angles(car)
+    lower = _bar(p, L.LCX, L.LOWER_LENGTH, L.LOWER_STATIC, lower_plan)
+    upper = _bar(p, L.UCX, L.UPPER_LENGTH, L.UPPER_STATIC, upper_plan)
+    rear, sprung = car.rear.unsprung_mass, car.mass - car.rear.unsprung_mass
+    # With parallel links the instant centre is so far off that the axle's part is nil.
+    axle_part = 0.0 if centre.x is None else rear * car.rear.tyre_radius / centre.x
+    share = [float(v) for v in p[L.LINES : L.LINES + L.LINE_WIDTH * len(car.rear.springs)]]
+    return Statics(
+        rear_load=float(p[L.REAR_STATIC]),
+        front_load=float(p[L.FRONT_STATIC]),
+        rear_spring_force=float(p[L.REAR_SPRING_STATIC]),
+        front_spring_force=float(p[L.FRONT_SPRING_STATIC]),
+        upper_link_force=upper.force,
+        lower_link_force=lower.force,
+        instant_centre=centre,
+        anti_squat=100.0 * centre.slope / neutral,
+        anti_squat_dynamic=100.0 * (sprung * centre.slope + axle_part) / (car.mass * neutral),
+        neutral_slope=neutral,
+        sprung_neutral_line=(
+            -rear * car.rear.tyre_radius / sprung,
+            car.mass * neutral / sprung,
+        ),
+        load_transfer_per_newton=neutral,
+        sprung_mass=float(p[L.SPRUNG_MASS]),
+        sprung_cg=(float(p[L.SPRUNG_X]), float(p[L.SPRUNG_Z])),
+        rear_spring_forces=tuple(share[L.LINE_PRELOAD :: L.LINE_WIDTH]),
+        rear_spring_lengths=tuple(share[L.LINE_LENGTH :: L.LINE_WIDTH]),
+        rear_tyre_squash=float(p[L.REAR_SQUASH]),
+        front_tyre_squash=float(p[L.FRONT_SQUASH]),
+        upper=upper if isinstance(car.rear.linkage, FourLink) else None,
+        lower=lower,
+    )
+
+
+def rest_faults(p):
+    """Why a settled row cannot stand at ride height; empty when it can."""
+    spring, lower, upper = (float(p[i]) for i in (L.REAR_SPRING_STATIC, L.LOWER_STATIC, L.UPPER_STATIC))
+    most = 50.0 * float(p[L.REAR_STATIC])
+    if not max(abs(spring), abs(lower), abs(upper)) < most:
+        return [
+            Fault(
+                "rear.linkage",
+                None,
+                "the bars and springs cannot hold the axle at ride height: their lines nearly "
+                "meet in one point",
+            )
+        ]
+    if spring <= 0.0:
+        return [
+            Fault(
+                "rear.springs",
+                round(spring, 1),
+                "the rear springs would have to pull at ride height: check weights and mounts",
+            )
+        ]
+    if float(p[L.FRONT_SPRING_STATIC]) <= 0.0:
+        return [Fault("front.spring", None, "the front springs would carry nothing at ride height")]
+    return []
+
+
+def instant_centre_of(p):
+    """`InstantCentre` of a settled row; refuses one straight above the rear patch."""
+    lower = (p[L.LCX], p[L.LCZ]), (p[L.LHX], p[L.LHZ])
+    upper = (p[L.UCX], p[L.UCZ]), (p[L.UHX], p[L.UHZ])
+    x, z, w = meeting(*lower, *upper)
+    if abs(x) <= 1e-9 * abs(z):
+        raise CarError(
+            [Fault("rear.linkage", None, "the bars' lines meet straight above the rear tyres")]
+        )
+    if parallel(*lower, *upper, w):
+        return InstantCentre(None, None, float(z / x))
+    return InstantCentre(float(x / w), float(z / w), float(z / x))
+
+
+def plan_angles(car):
+    """Plan angles of the lower and the upper bars, rad; nil for a ladder bar."""
+    linkage = car.rear.linkage
+    if isinstance(linkage, FourLink):
+        return linkage.lower.plan_angle, linkage.upper.plan_angle
+    return 0.0, 0.0
+
+
+def _bar(p, at, length, force, plan):
+    rise, run = p[at + 1] - p[at + 3], p[at] - p[at + 2]
+    true = math.cos(plan)
+    return Bar(
+        float(p[length] / true), math.atan2(float(rise), float(run)), float(p[force] / true), plan
+    )
