@@ -7,7 +7,7 @@ import sys
 ROOT = os.path.dirname(os.path.abspath(__file__))
 
 
-def main():
+def main() -> None:
     # Kept in words that any Python 3 can read, so that an old one gets a sentence and not a SyntaxError.
     if sys.version_info < (3, 11):
         sys.exit(

@@ -7,7 +7,7 @@ import socket
 
 from django.core.management.base import CommandError
 
-EVERYWHERE = ("0.0.0.0", "::", "")
+EVERYWHERE = ("0.0.0.0", "::", "")  # noqa: S104 (what a person asked for with --host)
 
 
 def listen(host: str, port: int) -> socket.socket:

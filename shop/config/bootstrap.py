@@ -21,8 +21,16 @@ from typing import NoReturn
 MISLEADING = ("PIP_USER", "PIP_TARGET", "PIP_PREFIX", "PIP_ROOT", "PYTHONHOME")
 
 NO_NETWORK = (
-    "name resolution", "newconnectionerror", "failed to establish a new connection", "max retries exceeded",
-    "network is unreachable", "connection refused", "read timed out", "connecttimeout", "proxyerror",
+    "name resolution",
+    "newconnectionerror",
+    "failed to establish a new connection",
+    "max retries exceeded",
+    "network is unreachable",
+    "connection refused",
+    "read timed out",
+    "connecttimeout",
+    "proxyerror",
+    "from versions: none",  # every requirement of ours exists: an index that knows no version of it was not heard
 )
 
 
@@ -44,7 +52,7 @@ def ready(root: str, arguments: list[str]) -> None:
         stop(f"Launch Ledger needs to write into its own folder {root}, and cannot: {fault.strerror or fault}.")
     if Path(sys.prefix).resolve() != home.folder.resolve():
         sys.stdout.flush()
-        os.execv(home.python, [str(home.python), str(Path(root) / "manage.py"), *arguments])
+        os.execv(home.python, [str(home.python), str(Path(root) / "manage.py"), *arguments])  # noqa: S606
 
 
 def say(words: str) -> None:
@@ -110,8 +118,17 @@ class Venv:
         what = "what Launch Ledger and its tests need" if self.testing else "what Launch Ledger needs"
         say(f"Installing {what}; from nothing this usually takes half a minute to two minutes.")
         self.run(
-            [str(self.python), "-m", "pip", "install", "--quiet", "--disable-pip-version-check", "--no-input",
-             "-r", str(self.requirements)],
+            [
+                str(self.python),
+                "-m",
+                "pip",
+                "install",
+                "--quiet",
+                "--disable-pip-version-check",
+                "--no-input",
+                "-r",
+                str(self.requirements),
+            ],
             f"install {what}",
         )
         self.stamp.write_text(json.dumps({**self.found(), **self.wanted()}))
@@ -132,8 +149,10 @@ class Venv:
         if done.returncode == 0:
             return
         if any(mark in done.stdout.lower() for mark in NO_NETWORK):
-            stop(f"Launch Ledger could not {purpose}: no package index could be reached. The first start needs the "
-                 "network once; later ones do not.")
+            stop(
+                f"Launch Ledger could not {purpose}: no package index could be reached. The first start needs the "
+                "network once; later ones do not."
+            )
         if "ensurepip" in done.stdout:
             stop(missing_venv())
         sys.stderr.write(done.stdout)

@@ -13,12 +13,12 @@ from typing import Any
 
 os.environ.setdefault("DJANGO_SETTINGS_MODULE", "shop.config.settings")
 
-from celery import Celery, signals  # noqa: E402
-from celery.platforms import SecurityWarning  # noqa: E402
-from django.conf import settings  # noqa: E402
-from kombu.transport import TRANSPORT_ALIASES  # noqa: E402
+from celery import Celery, signals
+from celery.platforms import SecurityWarning
+from django.conf import settings
+from kombu.transport import TRANSPORT_ALIASES
 
-from shop.config import folder_broker, lifeline  # noqa: E402
+from shop.config import folder_broker, lifeline
 
 log = logging.getLogger(__name__)
 

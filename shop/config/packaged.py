@@ -45,7 +45,7 @@ def first_of(folder: Path, *names: str) -> Path:
 def stylesheet(script: str) -> str:
     """The rules that plotly's `script` would have injected, as a stylesheet."""
     block = RULES.search(script)
-    if block is None:
+    if block is None or RULE.sub("", block[1]).strip(","):
         raise ImproperlyConfigured("the installed plotly keeps its style rules in a way this project cannot read.")
     lines = []
     for quoted, bare, literal in RULE.findall(block[1]):

@@ -206,6 +206,7 @@ LOGGING = {
     # Django's own handlers would write each error twice, or mail it to nobody.
     "loggers": {
         "django": {"handlers": [], "propagate": True},
+        "django.request": {"level": "ERROR"},  # a page not found is no news
         "waitress.queue": {"level": "ERROR"},  # it warns whenever two requests meet
     },
 }

@@ -40,7 +40,11 @@ class Child:
 
     def start(self, folder: Path, now: float) -> None:
         self.process = subprocess.Popen(
-            self.command, cwd=folder, env=self.environment, pass_fds=self.fds, stdin=subprocess.DEVNULL,
+            self.command,
+            cwd=folder,
+            env=self.environment,
+            pass_fds=self.fds,
+            stdin=subprocess.DEVNULL,
             start_new_session=True,
         )
         self.started = now
@@ -105,7 +109,7 @@ class Supervisor:
 
     def end(self) -> None:
         """Ask every child to end, and kill what is left after the grace, or at a second signal."""
-        self.say(f"Stopping. Work in hand gets up to {self.grace:g} s; what is not done by then is done after the next start.")
+        self.say(f"Stopping. Work in hand gets up to {self.grace:g} s; what is left is done after the next start.")
         for child in self.children:
             child.ask_to_end()
         last = time.monotonic() + self.grace

@@ -13,8 +13,14 @@ from playwright.sync_api import Browser, BrowserContext, ConsoleMessage, Page, s
 from tests.services.programs import needed
 
 FLAGS = [
-    "--no-sandbox", "--disable-gpu", "--disable-quic", "--no-first-run", "--disable-background-networking",
-    "--disable-component-update", "--disable-sync", "--disable-dev-shm-usage",
+    "--no-sandbox",
+    "--disable-gpu",
+    "--disable-quic",
+    "--no-first-run",
+    "--disable-background-networking",
+    "--disable-component-update",
+    "--disable-sync",
+    "--disable-dev-shm-usage",
     # Nothing from outside: a page that asks for a script, font or picture elsewhere fails here as it would in a shop.
     "--host-resolver-rules=MAP * ~NOTFOUND, EXCLUDE localhost, EXCLUDE 127.0.0.1",
 ]
@@ -63,9 +69,7 @@ class Pages:
         self.contexts: list[BrowserContext] = []
 
     def context(self, width: int = 1280, height: int = 900, **options: Any) -> BrowserContext:
-        context = self.browser.new_context(
-            viewport={"width": width, "height": height}, base_url=self.base_url, **options
-        )
+        context = self.browser.new_context(viewport={"width": width, "height": height}, base_url=self.base_url, **options)
         context.set_default_timeout(10_000)
         context.on("page", self.complaints.watch)
         self.contexts.append(context)

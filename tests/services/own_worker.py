@@ -37,8 +37,13 @@ class OwnWorker:
         command[command.index("WARNING")] = "INFO"
         with self.log.open("wb") as log:
             self.process = subprocess.Popen(
-                [sys.executable, "-m", *command], cwd=ROOT, env=environment, stdin=subprocess.DEVNULL,
-                stdout=log, stderr=subprocess.STDOUT, start_new_session=True,
+                [sys.executable, "-m", *command],
+                cwd=ROOT,
+                env=environment,
+                stdin=subprocess.DEVNULL,
+                stdout=log,
+                stderr=subprocess.STDOUT,
+                start_new_session=True,
             )
         until(self.is_ready, "the worker", 90)
 

@@ -37,9 +37,21 @@ def running_redis() -> Iterator[Redis]:
     folder = Path(tempfile.mkdtemp(prefix="redis-", dir="/tmp"))
     found = Redis(folder / "socket")
     process = subprocess.Popen(
-        [needed("redis-server"), "--port", "0", "--unixsocket", found.socket, "--save", "", "--appendonly", "no",
-         "--dir", folder],
-        stdout=(folder / "log").open("w"), stderr=subprocess.STDOUT,
+        [
+            needed("redis-server"),
+            "--port",
+            "0",
+            "--unixsocket",
+            found.socket,
+            "--save",
+            "",
+            "--appendonly",
+            "no",
+            "--dir",
+            folder,
+        ],
+        stdout=(folder / "log").open("w"),
+        stderr=subprocess.STDOUT,
     )
     try:
         last = time.monotonic() + 20

@@ -30,18 +30,25 @@ class Started:
     """One `manage.py start`, with the command line it was given and everything it said."""
 
     def __init__(
-        self, folder: Path, *arguments: str, port: int | None = None, root: Path = ROOT, python: str = sys.executable,
+        self,
+        folder: Path,
+        *arguments: str,
+        port: int | None = None,
+        root: Path = ROOT,
+        python: str = sys.executable,
         **extra: str,
     ) -> None:
         self.port = port or free_port()
         self.log = folder / f"start-{self.port}.log"
-        environment = clean_environment(
-            LEDGER_DATA_DIR=str(folder / "var"), LEDGER_STATIC_DIR=str(OUT / "static"), **extra
-        )
+        environment = clean_environment(LEDGER_DATA_DIR=str(folder / "var"), LEDGER_STATIC_DIR=str(OUT / "static"), **extra)
         with self.log.open("wb") as log:
             self.process = subprocess.Popen(
                 [python, "manage.py", "start", "--port", str(self.port), *arguments],
-                cwd=root, env=environment, stdin=subprocess.DEVNULL, stdout=log, stderr=subprocess.STDOUT,
+                cwd=root,
+                env=environment,
+                stdin=subprocess.DEVNULL,
+                stdout=log,
+                stderr=subprocess.STDOUT,
                 start_new_session=True,
             )
 
@@ -84,14 +91,10 @@ class Started:
         return {pid for pid in (self.web(), self.worker()) if pid} | set(self.pool())
 
     def stop(self) -> None:
+        """At once, whatever state it is in."""
         family = self.family()
-        if self.process.poll() is None:
-            self.process.terminate()
-            try:
-                self.process.wait(20)
-            except subprocess.TimeoutExpired:
-                self.process.kill()
-                self.process.wait()
+        self.process.kill()
+        self.process.wait()
         for pid in family & set(processes()):
             os.kill(pid, signal.SIGKILL)
 

@@ -45,7 +45,11 @@ def refusal(*arguments: str, **environment: str) -> str:
     """What a start says that ends at once; it must fail, in one line, without a traceback."""
     done = subprocess.run(
         [sys.executable, "manage.py", "start", *arguments],
-        cwd=ROOT, env=clean_environment(**environment), capture_output=True, text=True, timeout=60,
+        cwd=ROOT,
+        env=clean_environment(**environment),
+        capture_output=True,
+        text=True,
+        timeout=60,
     )
     said = (done.stdout + done.stderr).strip()
     assert done.returncode != 0

@@ -10,15 +10,23 @@ import urllib.request
 from typing import Any
 
 from django.conf import settings
-from django.core.management.base import BaseCommand, CommandParser
+from django.core.management.base import BaseCommand, CommandParser, OutputWrapper
 from django.db import connections
 
 from shop.config import address, preparing, web
 from shop.config.supervisor import Supervisor
 
 WORKER = [
-    "celery", "--quiet", "--app", "shop.config.celery", "worker", "--loglevel", "WARNING",
-    "--without-gossip", "--without-mingle", "--without-heartbeat",
+    "celery",
+    "--quiet",
+    "--app",
+    "shop.config.celery",
+    "worker",
+    "--loglevel",
+    "WARNING",
+    "--without-gossip",
+    "--without-mingle",
+    "--without-heartbeat",
 ]
 
 
@@ -70,7 +78,7 @@ class Command(BaseCommand):
             self.stdout.write(words)
             self.stdout.flush()
         except BrokenPipeError:  # nobody listens any more; the work goes on
-            self.stdout._out = open(os.devnull, "w")
+            self.stdout = OutputWrapper(open(os.devnull, "w"))
 
 
 def answers(place: str) -> bool:
