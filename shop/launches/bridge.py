@@ -8,7 +8,7 @@ from __future__ import annotations
 import math
 import time
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import asdict, dataclass, field
 from typing import Any
 
 import solver
@@ -19,6 +19,7 @@ from shop.setups import car_file
 from shop.setups.models import Revision
 from shop.units import default_unit, show, unit_of
 from solver import atmosphere, comparing, power, slip_check, timing, weather
+from solver.statics import statics as solve_statics
 
 SOLVER_VERSION = solver.SOLVER_VERSION
 
@@ -214,7 +215,7 @@ def bar_rows(revision: Revision, units: str) -> list[Row]:
 
 
 def statics_of(revision: Revision) -> dict[str, Any]:
-    return solver.statics(car_of(revision)).to_dict()
+    return asdict(solve_statics(car_of(revision)))
 
 
 def preview(revision: Revision, units: str) -> Preview:
