@@ -4,6 +4,8 @@ International Standard Atmosphere (ISO 2533; ICAO Doc 7488), lower layer only:
 tracks are below 11 km.
 """
 
+from __future__ import annotations
+
 from dataclasses import dataclass
 
 from solver.checks import between, positive
@@ -29,7 +31,7 @@ class StandardAir:
     density_ratio: float
 
 
-def standard_air(height):
+def standard_air(height: float) -> StandardAir:
     """Standard atmosphere at a geopotential height.
 
     ``T = T0 - L H``, ``p = p0 (T/T0)^(g/(R L))`` (ISO 2533).
@@ -62,7 +64,7 @@ def standard_air(height):
     )
 
 
-def density_altitude(density):
+def density_altitude(density: float) -> float:
     """Height in the standard atmosphere at which air has this density.
 
     ``H = T0/L [1 - (rho/rho0)^(1/(g/(R L) - 1))]``, the inverse of the above.
@@ -87,7 +89,7 @@ def density_altitude(density):
     return between("the density altitude", height, -5000.0, HIGHEST, "m")
 
 
-def station_from_altimeter(altimeter_setting, elevation):
+def station_from_altimeter(altimeter_setting: float, elevation: float) -> float:
     """Station pressure from an airport's altimeter setting.
 
     An altimeter setting is reduced to sea level along the standard atmosphere;
@@ -119,7 +121,7 @@ def station_from_altimeter(altimeter_setting, elevation):
     return (setting**n - SEA_LEVEL_PRESSURE**n * LAPSE / SEA_LEVEL_TEMPERATURE * level) ** EXPONENT
 
 
-def altimeter_from_station(station_pressure, elevation):
+def altimeter_from_station(station_pressure: float, elevation: float) -> float:
     """Altimeter setting from station pressure, the inverse of the above.
 
     Parameters

@@ -1,11 +1,13 @@
 """Safety factors of one bar: what it carries, against what, and what governs."""
 
+from __future__ import annotations
+
 import math
 from dataclasses import dataclass
 
 from solver.checks import not_negative, positive
 from solver.fasteners import thread_strength
-from solver.members import CAUTIONS, Allowances, Column, Material, column, tube_section
+from solver.members import CAUTIONS, Allowances, Column, Material, Section, column, tube_section
 
 
 @dataclass(frozen=True)
@@ -79,12 +81,12 @@ class BarCheck:
     cautions: tuple = CAUTIONS
 
     @property
-    def governs(self):
+    def governs(self) -> Limit:
         """The limit with the least factor."""
         return self.limits[0]
 
 
-def check_bar(bar, tension, compression, allowances=None):
+def check_bar(bar: Bar, tension: float, compression: float, allowances: Allowances | None = None) -> BarCheck:
     """Safety factors of a bar for its greatest tension and compression.
 
     Parameters
@@ -125,7 +127,9 @@ def check_bar(bar, tension, compression, allowances=None):
     )
 
 
-def _limits(bar, section, strut, pull, push, fatigue):
+def _limits(
+    bar: Bar, section: Section, strut: Column, pull: float, push: float, fatigue: float
+) -> list[Limit]:
     either = max(pull, push)
     crooked = strut.crooked < strut.ideal
     how = "Perry-Robertson, crooked bar" if crooked else strut.formula
@@ -144,5 +148,5 @@ def _limits(bar, section, strut, pull, push, fatigue):
     return limits
 
 
-def _limit(what, load, strength):
+def _limit(what: str, load: float, strength: float) -> Limit:
     return Limit(what, load, strength, strength / load if load > 0.0 else math.inf)

@@ -1,19 +1,22 @@
 """The car file's optional ``bars`` section: what the links are made of."""
 
+from __future__ import annotations
+
 import math
 
 from solver.bar_check import Bar
-from solver.car import FourLink
+from solver.car import FourLink, LadderBar
 from solver.fasteners import STRESS_AREA_CONSTANT, RodEnd, Thread
 from solver.loads import BarPlan
 from solver.members import NORMALISED_4130, Allowances, Material
+from solver.reading import Section
 
 # Names that stand for a material's figures, so that a file need not repeat them.
 MATERIALS = {"4130 normalised": NORMALISED_4130}
 MAX_PARTS = 8
 
 
-def read_bars(section, linkage):
+def read_bars(section: Section | None, linkage: FourLink | LadderBar | None) -> BarPlan | None:
     """Read the section.
 
     Parameters
@@ -44,7 +47,7 @@ def read_bars(section, linkage):
     return plan
 
 
-def _allowances(part):
+def _allowances(part: Section | None) -> Allowances:
     if part is None:
         return Allowances()
     dynamic = part.number("dynamic", 1.0, 10.0, "", default=Allowances.dynamic)
@@ -59,7 +62,7 @@ def _allowances(part):
     return Allowances(dynamic, fatigue, source)
 
 
-def _bar(part, name):
+def _bar(part: Section | None, name: str) -> Bar | None:
     if part is None:
         return None
     bar = Bar(
@@ -80,18 +83,18 @@ def _bar(part, name):
     return bar
 
 
-def _list(part, key):
+def _list(part: Section, key: str) -> list[Section]:
     return part.sections(key, 0, MAX_PARTS) if part.has(key) else []
 
 
-def _count(part):
+def _count(part: Section) -> int:
     count = part.number("count", 1, 4, "bars", default=2)
     if count == count and count != int(count):
         part.fault("count", count, "must be a whole number of bars")
     return int(count) if count == count else 2
 
 
-def _material(part):
+def _material(part: Section) -> Material:
     if isinstance(part.data.get("material"), str):
         name = part.choice("material", tuple(MATERIALS))
         return MATERIALS.get(name, NORMALISED_4130)
@@ -109,7 +112,7 @@ def _material(part):
     return material
 
 
-def _thread(part):
+def _thread(part: Section) -> Thread:
     thread = Thread(
         diameter=part.number("diameter", 0.003, 0.1, "m"),
         pitch=part.number("pitch", 0.0002, 0.01, "m"),
@@ -122,7 +125,7 @@ def _thread(part):
     return thread
 
 
-def _rod_end(part):
+def _rod_end(part: Section) -> RodEnd:
     shank = part.optional_section("shank")
     rod_end = RodEnd(
         name=part.text("name"),

@@ -1,11 +1,15 @@
 """Numbers of a car file by their path, such as ``rear.springs.0.spring.rate``."""
 
+from __future__ import annotations
+
 import copy
+from collections.abc import Mapping
+from typing import Any
 
 from solver.checks import number
 
 
-def number_at(document, path):
+def number_at(document: dict[str, Any], path: str) -> float:
     """One number of a car file.
 
     Parameters
@@ -33,7 +37,7 @@ def number_at(document, path):
     return number(path, place)
 
 
-def with_numbers(document, values):
+def with_numbers(document: dict[str, Any], values: Mapping[str, float]) -> dict[str, Any]:
     """A copy of a car file with other numbers in some places.
 
     Parameters
@@ -63,7 +67,7 @@ def with_numbers(document, values):
     return changed
 
 
-def number_paths(document, prefix=""):
+def number_paths(document: Any, prefix: str = "") -> list[str]:
     """Every path of a car file at which a number stands, in the file's order."""
     if isinstance(document, dict):
         found = []
@@ -78,14 +82,14 @@ def number_paths(document, prefix=""):
     return [prefix] if is_number else []
 
 
-def _inside(place, step, path):
+def _inside(place: Any, step: str, path: str) -> Any:
     try:
         return place[_key(place, step)]
     except (KeyError, IndexError, TypeError, ValueError):
         raise ValueError(f"{path!r} is not in this car file.") from None
 
 
-def _key(place, step):
+def _key(place: Any, step: str) -> Any:
     if not isinstance(place, list):
         return step
     if len(place) == 2 and step in ("x", "z"):

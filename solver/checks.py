@@ -4,10 +4,14 @@ Every one raises ValueError naming the field, the value and what is allowed, so
 that a page can show the sentence as it stands.
 """
 
+from __future__ import annotations
+
 import math
+from collections.abc import Sequence
+from typing import Any
 
 
-def number(name, value, unit=""):
+def number(name: str, value: Any, unit: str = "") -> float:
     """Return `value` as a float, or refuse what is not a finite number."""
     try:
         result = float(value)
@@ -18,7 +22,7 @@ def number(name, value, unit=""):
     return result
 
 
-def positive(name, value, unit=""):
+def positive(name: str, value: Any, unit: str = "") -> float:
     """Return `value` as a float, or refuse what is not above zero."""
     result = number(name, value, unit)
     if result <= 0.0:
@@ -26,7 +30,7 @@ def positive(name, value, unit=""):
     return result
 
 
-def not_negative(name, value, unit=""):
+def not_negative(name: str, value: Any, unit: str = "") -> float:
     """Return `value` as a float, or refuse what is below zero."""
     result = number(name, value, unit)
     if result < 0.0:
@@ -34,7 +38,7 @@ def not_negative(name, value, unit=""):
     return result
 
 
-def between(name, value, low, high, unit=""):
+def between(name: str, value: Any, low: float, high: float, unit: str = "") -> float:
     """Return `value` as a float, or refuse what is outside `low` to `high`."""
     result = number(name, value, unit)
     if not low <= result <= high:
@@ -44,16 +48,16 @@ def between(name, value, low, high, unit=""):
     return result
 
 
-def one_of(name, value, allowed):
+def one_of(name: str, value: Any, allowed: Sequence[str]) -> str:
     """Return `value`, or refuse what is not among the words `allowed`."""
     if value not in allowed:
         raise ValueError(f"{name} is {value!r}: it must be one of {', '.join(allowed)}.")
     return value
 
 
-def _in(unit):
+def _in(unit: str) -> str:
     return f" in {unit}" if unit else ""
 
 
-def _after(unit):
+def _after(unit: str) -> str:
     return f" {unit}" if unit else ""

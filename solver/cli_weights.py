@@ -1,32 +1,38 @@
 """``python -m solver weights FILE``: what the scales say, as text and as plain data."""
 
+from __future__ import annotations
+
 import dataclasses
 import math
+from typing import Any
 
 import numpy as np
 
-from solver.weights import CORNER_NAMES
+from solver.raised_steps import FittedHeight
+from solver.turns import SeatTurns
+from solver.weights import CORNER_NAMES, Corners, PlanCG, Weighing
+from solver.weights_report import WeightsReport
 
 HEADS = ("front left", "front right", "rear left", "rear right")
 
 
-def weights_text(report):
+def weights_text(report: WeightsReport) -> str:
     """A short table a person can read, in SI units."""
     lines = ["Weights", ""]
     lines += _car_lines(report)
-    if report.weighing is not None:
-        lines += ["", *_scale_lines(report)]
+    if report.weighing is not None and report.plan_cg is not None:
+        lines += ["", *_scale_lines(report.weighing, report.plan_cg)]
     if report.height is not None:
         lines += ["", *_height_lines(report.height)]
-    if report.turns is not None:
-        lines += ["", *_turn_lines(report)]
+    if report.turns is not None and report.target is not None:
+        lines += ["", *_turn_lines(report.turns, report.target)]
     for title, sentences in (("Doubts", report.doubts), ("Take care", report.cautions)):
         if sentences:
             lines += ["", title, *(f"  - {sentence}" for sentence in sentences)]
     return "\n".join(lines) + "\n"
 
 
-def plain(value):
+def plain(value: Any) -> Any:
     """A result as dicts, lists and numbers, for JSON; what is not finite becomes null."""
     if dataclasses.is_dataclass(value) and not isinstance(value, type):
         return {field.name: plain(getattr(value, field.name)) for field in dataclasses.fields(value)}
@@ -41,7 +47,7 @@ def plain(value):
     return value
 
 
-def _car_lines(report):
+def _car_lines(report: WeightsReport) -> list[str]:
     sprung, typical = report.sprung, report.typical_inertia
     return [
         _row("front axle load", f"{report.axle_loads.front:.1f} N"),
@@ -54,8 +60,7 @@ def _car_lines(report):
     ]
 
 
-def _scale_lines(report):
-    weighing = report.weighing
+def _scale_lines(weighing: Weighing, plan_cg: PlanCG) -> list[str]:
     return [
         "Corner weights, kg",
         _table_head(),
@@ -64,11 +69,11 @@ def _scale_lines(report):
         _row("front / rear", f"{weighing.front_percent:.2f} / {weighing.rear_percent:.2f} %"),
         _row("left", f"{weighing.left_percent:.2f} %"),
         _row("cross weight (right front + left rear)", f"{weighing.cross_percent:.2f} %"),
-        _row("CG left of the centre line", f"{report.plan_cg.y * 1000:.1f} mm"),
+        _row("CG left of the centre line", f"{plan_cg.y * 1000:.1f} mm"),
     ]
 
 
-def _height_lines(height):
+def _height_lines(height: FittedHeight) -> list[str]:
     spread = (
         "no scatter to judge by"
         if math.isnan(height.height_uncertainty)
@@ -82,29 +87,28 @@ def _height_lines(height):
     ]
 
 
-def _turn_lines(report):
-    turns = report.turns
+def _turn_lines(turns: SeatTurns, target: Corners) -> list[str]:
     kept = "ride height kept" if turns.keeps_height else "least turns, ride height moves"
     return [
         f"Spring seats ({kept}); positive raises the corner",
         _table_head(),
         _table_row("turns", turns.turns, "+.2f"),
         _table_row("scales then, kg", turns.corner_weights, ".1f"),
-        _table_row("target, kg", report.target, ".1f"),
+        _table_row("target, kg", target, ".1f"),
         _table_row("body rises, mm", turns.height_change, "+.1f", 1000.0),
         _row("cross weight then", f"{turns.cross_percent:.2f} %"),
     ]
 
 
-def _row(label, text):
+def _row(label: str, text: str) -> str:
     return f"  {label:<40}{text}"
 
 
-def _table_head():
+def _table_head() -> str:
     return f"  {'':<20}" + "".join(f"{head:>13}" for head in HEADS)
 
 
-def _table_row(label, corners, form, scale=1.0):
+def _table_row(label: str, corners: Corners, form: str, scale: float = 1.0) -> str:
     values = (getattr(corners, name) * scale for name in CORNER_NAMES)
     # Adding zero turns -0.0 into 0.0, which a person reads as no change.
     return f"  {label:<20}" + "".join(f"{format(round(value, 4) + 0.0, form):>13}" for value in values)

@@ -1,9 +1,13 @@
 """Comparing passes: is the difference more than the car's own scatter?"""
 
+from __future__ import annotations
+
 import math
+from collections.abc import Iterable
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from solver.checks import between, number
 from solver.significance import (
@@ -64,7 +68,7 @@ class Comparison:
     words: tuple
 
 
-def summarise_passes(values, lower_is_better=True):
+def summarise_passes(values: Iterable[float], lower_is_better: bool = True) -> Summary:
     """Best, median, worst and scatter of one group of passes.
 
     Parameters
@@ -96,7 +100,9 @@ def summarise_passes(values, lower_is_better=True):
     )
 
 
-def compare_passes(first, second, lower_is_better=True, confidence=0.95):
+def compare_passes(
+    first: Iterable[float], second: Iterable[float], lower_is_better: bool = True, confidence: float = 0.95
+) -> Comparison:
     """Compare two groups of passes.
 
     Welch's t and its interval, an exact permutation test where all
@@ -136,23 +142,25 @@ def compare_passes(first, second, lower_is_better=True, confidence=0.95):
         interval=interval,
         bootstrap=bootstrap(a, b, level),
         permutation=shuffled,
-        words=_words(left, right, welch, interval, shuffled),
+        words=_words(left, right, interval, shuffled),
     )
 
 
-def _data(name, values):
+def _data(name: str, values: Iterable[float]) -> NDArray[np.float64]:
     data = np.array([number(f"a value of {name}", value) for value in values])
     if data.size == 0:
         raise ValueError(f"{name}: at least one pass is needed.")
     return data
 
 
-def _words(first, second, welch, interval, permutation):
+def _words(
+    first: Summary, second: Summary, interval: Interval | None, permutation: Permutation | None
+) -> tuple[str, ...]:
     said = []
     least = min(first.count, second.count)
     if least < 2:
         said.append("One pass tells nothing of the car's own scatter: make more before you judge a change.")
-    elif welch is None:
+    elif interval is None:
         said.append("No pass differs from another within its group, so there is no scatter to compare with.")
     else:
         clear = not interval.low <= 0.0 <= interval.high

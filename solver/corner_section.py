@@ -1,11 +1,14 @@
 """The car file's optional ``corners`` section: what the four scales say, and how the seats turn."""
 
+from __future__ import annotations
+
 import math
 from dataclasses import dataclass
+from typing import Any
 
+from solver.corner_springs import Axle
 from solver.raised_steps import RaisedStep
-from solver.reading import checked_number
-from solver.turns import Axle
+from solver.reading import Section, checked_number
 from solver.weights import CORNER_NAMES, Corners
 
 MAX_STEPS = 40
@@ -32,7 +35,7 @@ class CornerPlan:
     ----------
     measured : Corners
         kg.
-    front, rear : solver.turns.Axle
+    front, rear : solver.corner_springs.Axle
     target : Corners or None
     target_cross_percent : float or None
     keep_height : bool
@@ -50,12 +53,12 @@ class CornerPlan:
     driveshaft: Driveshaft | None = None
 
     @property
-    def has_target(self):
+    def has_target(self) -> bool:
         """Whether corner weights are aimed at."""
         return self.target is not None or self.target_cross_percent is not None
 
 
-def read_corners(section):
+def read_corners(section: Section | None) -> CornerPlan | None:
     """Read the section.
 
     Parameters
@@ -69,27 +72,29 @@ def read_corners(section):
     """
     if section is None:
         return None
-    plan = CornerPlan(
-        measured=_corners(section.section("measured")),
-        front=_axle(section.section("front")),
-        rear=_axle(section.section("rear")),
-        target=_corners(section.optional_section("target")),
-        target_cross_percent=section.optional_number("target_cross_percent", 0.0, 100.0, "percent"),
-        keep_height=_flag(section, "keep_height"),
-        raised=tuple(_step(part) for part in _list(section, "raised")),
-        driveshaft=_driveshaft(section.optional_section("driveshaft")),
-    )
+    measured = _corners(section.section("measured"))
+    front, rear = _axle(section.section("front")), _axle(section.section("rear"))
+    options: dict[str, Any] = {
+        "target": _corners(section.optional_section("target")),
+        "target_cross_percent": section.optional_number("target_cross_percent", 0.0, 100.0, "percent"),
+        "keep_height": _flag(section, "keep_height"),
+        "raised": tuple(_step(part) for part in _list(section, "raised")),
+        "driveshaft": _driveshaft(section.optional_section("driveshaft")),
+    }
     section.refuse_the_rest()
+    if measured is None or front is None or rear is None:
+        return None
+    plan = CornerPlan(measured, front, rear, **options)
     _check_whole(section, plan)
     return plan
 
 
-def _check_whole(section, plan):
+def _check_whole(section: Section, plan: CornerPlan) -> None:
     if plan.target is not None and plan.target_cross_percent is not None:
         section.fault(
             "target_cross_percent", plan.target_cross_percent, "stands beside a target: give one of the two"
         )
-    axles = {name: axle for name, axle in (("front", plan.front), ("rear", plan.rear)) if axle is not None}
+    axles = {"front": plan.front, "rear": plan.rear}
     for name, axle in axles.items():
         if axle.spring_rates is None and (plan.has_target or plan.driveshaft is not None):
             wanted = "spring seats" if plan.has_target else "the roll plane"
@@ -101,11 +106,11 @@ def _check_whole(section, plan):
         section.fault("", None, "aims at a target, and neither axle is adjustable")
     elif plan.has_target and plan.keep_height and not all(adjustable):
         section.fault("keep_height", True, "takes seats that turn at all four corners")
-    if plan.measured is not None and sum(plan.measured.as_array()) == 0.0:
+    if sum(plan.measured.as_array()) == 0.0:
         section.fault("measured", None, "is nothing at all four corners")
 
 
-def _corners(part):
+def _corners(part: Section | None) -> Corners | None:
     if part is None:
         return None
     values = [part.number(name, 0.0, 10_000.0, "kg") for name in CORNER_NAMES]
@@ -113,7 +118,7 @@ def _corners(part):
     return Corners(*values)
 
 
-def _flag(section, key):
+def _flag(section: Section, key: str) -> bool:
     if not section.has(key):
         return True
     value = section.data[key]
@@ -123,11 +128,11 @@ def _flag(section, key):
     return value
 
 
-def _list(section, key):
+def _list(section: Section, key: str) -> list[Section]:
     return section.sections(key, 0, MAX_STEPS) if section.has(key) else []
 
 
-def _axle(part):
+def _axle(part: Section | None) -> Axle | None:
     if part is None:
         return None
     axle = Axle(
@@ -144,7 +149,7 @@ def _axle(part):
     return axle
 
 
-def _pair(part):
+def _pair(part: Section) -> tuple[float, ...] | None:
     """Left and right spring rate as ``[left, right]`` in N/m."""
     if not part.has("spring_rates"):
         return None
@@ -159,7 +164,7 @@ def _pair(part):
     )
 
 
-def _step(part):
+def _step(part: Section) -> RaisedStep:
     step = RaisedStep(
         angle=part.number("angle", 0.0, round(math.pi / 4, 4), "rad"),
         raised=part.choice("raised", ("front", "rear")),
@@ -173,7 +178,7 @@ def _step(part):
     return step
 
 
-def _driveshaft(part):
+def _driveshaft(part: Section | None) -> Driveshaft | None:
     if part is None:
         return None
     shaft = Driveshaft(

@@ -1,5 +1,7 @@
 """Threads and rod ends of a bar."""
 
+from __future__ import annotations
+
 import math
 from dataclasses import dataclass
 
@@ -48,7 +50,7 @@ class RodEnd:
     shank: Thread | None = None
 
 
-def stress_area(diameter, pitch, form="unified"):
+def stress_area(diameter: float, pitch: float, form: str = "unified") -> float:
     """Tensile stress area of a screw thread.
 
     Unified: ``0.7854 (D - 0.9743/n)^2``, n threads per inch (ASME B1.1).
@@ -77,7 +79,7 @@ def stress_area(diameter, pitch, form="unified"):
     return math.pi / 4.0 * (major - constant * step) ** 2
 
 
-def thread_strength(thread):
+def thread_strength(thread: Thread) -> float:
     """Tension that a thread carries: stress area times proof strength.
 
     Parameters
@@ -98,7 +100,7 @@ def thread_strength(thread):
     return stress_area(thread.diameter, thread.pitch, thread.form) * strength
 
 
-def axial_warning(name="rod end"):
+def axial_warning(name: str = "rod end") -> str:
     """What to say when a rod end is loaded along its bolt.
 
     Makers' engineering notes put the axial strength at about a tenth to a fifth

@@ -1,5 +1,8 @@
 """Pitch inertia of the chassis: added up from components, or a typical value."""
 
+from __future__ import annotations
+
+from collections.abc import Iterable
 from dataclasses import dataclass
 
 from solver.checks import not_negative, positive
@@ -79,7 +82,7 @@ class PitchInertia:
     shares: tuple = ()
 
 
-def pitch_inertia(components):
+def pitch_inertia(components: Iterable[Component]) -> PitchInertia:
     """Add up the pitch inertia of a list of components about their common CG.
 
     Parallel-axis theorem: ``I = sum(I_i + m_i d_i^2)``, with
@@ -121,7 +124,7 @@ def pitch_inertia(components):
     )
 
 
-def _share(part, x, z):
+def _share(part: Component, x: float, z: float) -> Share:
     if part.own_inertia is None:
         length = not_negative(f"the length of {part.name}", part.length, "m")
         height = not_negative(f"the height of {part.name}", part.height, "m")
@@ -132,7 +135,7 @@ def _share(part, x, z):
     return Share(name=part.name, own=own, offset=offset, total=own + offset)
 
 
-def typical_pitch_inertia(mass, cg_x, wheelbase):
+def typical_pitch_inertia(mass: float, cg_x: float, wheelbase: float) -> PitchInertia:
     """A typical pitch inertia, for a car that was never measured.
 
     ``I = 0.9 m a b``, with a and b from the CG to the axles: the dynamic index

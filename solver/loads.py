@@ -1,11 +1,16 @@
 """From the link forces of a launch to the safety factors of its bars."""
 
+from __future__ import annotations
+
 import math
+from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
 
 import numpy as np
+from numpy.typing import ArrayLike
 
 from solver.bar_check import Bar, BarCheck, check_bar
+from solver.car import FourLink, Link
 from solver.checks import between
 from solver.members import CAUTIONS, Allowances
 
@@ -62,7 +67,7 @@ class LoadReport:
     cautions: tuple = (*CAUTIONS, SHARING)
 
 
-def peak_load(t, force, count=2):
+def peak_load(t: ArrayLike, force: ArrayLike, count: int = 2) -> PeakLoad:
     """Greatest tension and compression of one bar from the lumped link force.
 
     Parameters
@@ -100,7 +105,12 @@ def peak_load(t, force, count=2):
     )
 
 
-def bar_loads(t, forces, bars, allowances=None):
+def bar_loads(
+    t: ArrayLike,
+    forces: Mapping[str, ArrayLike],
+    bars: Mapping[str, Bar],
+    allowances: Allowances | None = None,
+) -> LoadReport:
     """Check every bar against its greatest loads in a run.
 
     Parameters
@@ -134,7 +144,7 @@ def bar_loads(t, forces, bars, allowances=None):
     return LoadReport(bars=tuple(sorted(found, key=lambda load: load.check.governs.factor)))
 
 
-def link_length(link):
+def link_length(link: Link) -> float:
     """Centre-to-centre length of a bar between its pins, its plan angle counted, m.
 
     Parameters
@@ -149,7 +159,7 @@ def link_length(link):
     return seen / math.cos(link.plan_angle)
 
 
-def with_lengths(plan, linkage):
+def with_lengths(plan: BarPlan, linkage: FourLink) -> dict[str, Bar]:
     """The described bars by name, each with its length.
 
     Parameters

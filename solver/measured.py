@@ -3,10 +3,14 @@
 JCGM 100:2008 (GUM) clauses 4.3, 4.4 and 5.2.
 """
 
+from __future__ import annotations
+
 import math
+from collections.abc import Mapping
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from solver.checks import between, not_negative, number, one_of
 
@@ -29,7 +33,7 @@ class Input:
     kind: str = "normal"
 
 
-def standard_uncertainty(tolerance, kind="normal"):
+def standard_uncertainty(tolerance: float, kind: str = "normal") -> float:
     """Standard uncertainty from a tolerance, +- half-width (GUM 4.3, 4.4).
 
     Parameters
@@ -53,7 +57,9 @@ def standard_uncertainty(tolerance, kind="normal"):
     return not_negative("the tolerance", tolerance) * TOLERANCE_FACTOR[kind]
 
 
-def covariance_of(inputs, correlations=None):
+def covariance_of(
+    inputs: Mapping[str, Input], correlations: Mapping[tuple[str, str], float] | None = None
+) -> NDArray[np.float64]:
     """Covariance matrix of the inputs, shape (n, n), in their order.
 
     Raises

@@ -4,6 +4,8 @@ Pure statics on numbers typed in: SI, forces in newtons. Allowances for shock
 and repeated load are stated, never hidden; see `Allowances`.
 """
 
+from __future__ import annotations
+
 import math
 from dataclasses import dataclass
 
@@ -106,12 +108,12 @@ class Allowances:
     fatigue: float = 0.5
     source: str = "common practice, no source"
 
-    def __post_init__(self):
+    def __post_init__(self) -> None:
         between("the dynamic allowance", self.dynamic, 1.0, 10.0)
         between("the fatigue allowance", self.fatigue, 0.05, 1.0)
 
 
-def tube_section(outside_diameter, wall):
+def tube_section(outside_diameter: float, wall: float) -> Section:
     """Area, second moment and radius of gyration of a round tube.
 
     Parameters
@@ -141,7 +143,9 @@ def tube_section(outside_diameter, wall):
     return Section(outside, area, second, math.sqrt(second / area))
 
 
-def column(section, length, material, fixity=1.0, bow=0.0):
+def column(
+    section: Section, length: float, material: Material, fixity: float = 1.0, bow: float = 0.0
+) -> Column:
     """Compression that a bar carries before it buckles or yields.
 
     Euler ``C pi^2 E A/(l/k)^2`` above the changeover slenderness
@@ -194,7 +198,7 @@ def column(section, length, material, fixity=1.0, bow=0.0):
     )
 
 
-def _perry_robertson(section, strength, euler_stress, bow):
+def _perry_robertson(section: Section, strength: float, euler_stress: float, bow: float) -> float:
     if bow == 0.0:
         return min(strength, euler_stress)
     crookedness = bow * section.outside_diameter / 2.0 / section.radius_of_gyration**2
@@ -203,7 +207,7 @@ def _perry_robertson(section, strength, euler_stress, bow):
     return strength * euler_stress / (half + math.sqrt(half**2 - strength * euler_stress))
 
 
-def per_side(lumped_force, bars=2):
+def per_side(lumped_force: float, bars: int = 2) -> float:
     """One bar's force from that of the planar model, which lumps both sides.
 
     Parameters

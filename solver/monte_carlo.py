@@ -1,12 +1,18 @@
 """Monte Carlo propagation, to check what the first order says (GUM Supplement 1)."""
 
+from __future__ import annotations
+
 import math
+from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
+from numpy.typing import NDArray
 
 from solver.checks import between
-from solver.measured import covariance_of
+from solver.measured import Input, covariance_of
+from solver.uncertainty import Propagation
 
 
 @dataclass(frozen=True)
@@ -50,7 +56,12 @@ class Agreement:
     agrees: bool
 
 
-def draw_inputs(inputs, draws, seed, correlations=None):
+def draw_inputs(
+    inputs: Mapping[str, Input],
+    draws: int,
+    seed: int,
+    correlations: Mapping[tuple[str, str], float] | None = None,
+) -> dict[str, NDArray[np.float64]]:
     """Draw the inputs at random.
 
     Parameters
@@ -92,7 +103,7 @@ def draw_inputs(inputs, draws, seed, correlations=None):
     return drawn
 
 
-def _single(item, random, count):
+def _single(item: Input, random: np.random.Generator, count: int) -> NDArray[np.float64]:
     """Draws of one input that is not normal, with the standard uncertainty it states."""
     if item.kind == "rectangular":
         unit = random.uniform(-math.sqrt(3.0), math.sqrt(3.0), count)
@@ -103,7 +114,15 @@ def _single(item, random, count):
     return item.value + item.uncertainty * unit
 
 
-def monte_carlo(function, inputs, draws=100_000, seed=1, correlations=None, coverage=0.95, vectorised=True):
+def monte_carlo(
+    function: Callable[..., Any],
+    inputs: Mapping[str, Input],
+    draws: int = 100000,
+    seed: int = 1,
+    correlations: Mapping[tuple[str, str], float] | None = None,
+    coverage: float = 0.95,
+    vectorised: bool = True,
+) -> Draws:
     """Propagate distributions by drawing inputs (GUM Supplement 1, clause 7).
 
     Parameters
@@ -135,14 +154,13 @@ def monte_carlo(function, inputs, draws=100_000, seed=1, correlations=None, cove
     else:
         rows = [function(**{name: float(v[i]) for name, v in drawn.items()}) for i in range(draws)]
         if isinstance(rows[0], dict):
-            rows = {name: np.array([row[name] for row in rows]) for name in rows[0]}
+            names, samples = _stacked({name: [row[name] for row in rows] for name in rows[0]}, draws)
         else:
-            rows = np.array(rows, dtype=float).reshape(draws, -1).T
-        names, samples = _stacked(rows, draws)
+            names, samples = _stacked(np.array(rows, dtype=float).reshape(draws, -1).T, draws)
     return summarise(names, samples, coverage)
 
 
-def summarise(names, samples, coverage=0.95):
+def summarise(names: Iterable[str], samples: NDArray[np.float64], coverage: float = 0.95) -> Draws:
     """Means, standard deviations and intervals of samples of shape (m, draws).
 
     Returns
@@ -162,7 +180,9 @@ def summarise(names, samples, coverage=0.95):
     )
 
 
-def compare(propagation, draws, digits=2, factor=1.959964):
+def compare(
+    propagation: Propagation, draws: Draws, digits: int = 2, factor: float = 1.959964
+) -> tuple[Agreement, ...]:
     """Hold the first order against Monte Carlo (GUM Supplement 1, clause 8.1).
 
     Parameters
@@ -201,7 +221,7 @@ def compare(propagation, draws, digits=2, factor=1.959964):
     return tuple(found)
 
 
-def _stacked(result, draws):
+def _stacked(result: Any, draws: int) -> tuple[tuple[str, ...], NDArray[np.float64]]:
     if isinstance(result, dict):
         rows = [np.broadcast_to(np.asarray(value, dtype=float), (draws,)) for value in result.values()]
         return tuple(result), np.stack(rows)

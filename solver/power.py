@@ -1,5 +1,7 @@
 """Correcting power, times and speeds for the weather."""
 
+from __future__ import annotations
+
 from dataclasses import dataclass
 
 from solver.checks import between, positive
@@ -26,7 +28,7 @@ class PowerCorrection:
     warnings: tuple
 
 
-def j1349_correction(temperature, dry_pressure):
+def j1349_correction(temperature: float, dry_pressure: float) -> PowerCorrection:
     """SAE J1349 correction for a naturally breathing engine.
 
     ``1.18 (990/Pd) sqrt((Tc + 273)/298) - 0.18``, Pd in mbar of dry air: indicated
@@ -55,7 +57,7 @@ def j1349_correction(temperature, dry_pressure):
     kelvin = hot - 273.15 + 273.0
     ratio = REFERENCE_DRY_PRESSURE / dry * (kelvin / REFERENCE_TEMPERATURE) ** 0.5
     factor = 1.18 * ratio - 0.18
-    warnings = ()
+    warnings: tuple[str, ...] = ()
     if not 0.93 <= factor <= 1.07:
         warnings = (
             f"The correction is {factor:.3f}: beyond 7 percent either way it is a stretch (limit from memory).",
@@ -63,7 +65,7 @@ def j1349_correction(temperature, dry_pressure):
     return PowerCorrection(factor=factor, standard="SAE J1349", warnings=warnings)
 
 
-def corrected_time(seconds, factor, exponent=EXPONENT):
+def corrected_time(seconds: float, factor: float, exponent: float = EXPONENT) -> float:
     """Elapsed time the car would have run with standard air's power.
 
     ``t / factor^(1/3)``: see `EXPONENT_STATUS`.
@@ -89,7 +91,7 @@ def corrected_time(seconds, factor, exponent=EXPONENT):
     return positive("the elapsed time", seconds, "s") / _ratio(factor, exponent)
 
 
-def corrected_speed(speed, factor, exponent=EXPONENT):
+def corrected_speed(speed: float, factor: float, exponent: float = EXPONENT) -> float:
     """Trap speed the car would have run with standard air's power.
 
     ``v factor^(1/3)``, in the unit the speed came in; otherwise as
@@ -103,6 +105,6 @@ def corrected_speed(speed, factor, exponent=EXPONENT):
     return positive("the speed", speed) * _ratio(factor, exponent)
 
 
-def _ratio(factor, exponent):
+def _ratio(factor: float, exponent: float) -> float:
     share = between("the exponent", exponent, 0.0, 1.0)
     return between("the power correction", factor, 0.5, 2.0) ** share

@@ -1,12 +1,15 @@
 """The preload that evens out the rear tyres at one instant of a launch."""
 
+from __future__ import annotations
+
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import ArrayLike
 
 from solver.checks import between, one_of
 from solver.roll import GRAVITY, standing_difference
-from solver.roll_stiffness import front_share
+from solver.roll_stiffness import RollAxle, front_share
 from solver.weights import Corners, weigh
 
 
@@ -39,8 +42,16 @@ class Preload:
 
 
 def cancelling_preload(
-    t, front_load, shaft_torque, corners, front, rear, time=None, rotation="standard", gravity=GRAVITY
-):
+    t: ArrayLike,
+    front_load: ArrayLike,
+    shaft_torque: ArrayLike,
+    corners: Corners,
+    front: RollAxle,
+    rear: RollAxle,
+    time: float | None = None,
+    rotation: str = "standard",
+    gravity: float = GRAVITY,
+) -> Preload:
     """Standing preload that cancels the rear tyres' difference at one time.
 
     With equal rear tyres the whole couple about the centre line sits at the
@@ -106,7 +117,7 @@ def cancelling_preload(
     )
 
 
-def _doubts(before, after):
+def _doubts(before: float, after: float) -> tuple[str, ...]:
     if abs(after - before) < 3.0:
         return ()
     return (

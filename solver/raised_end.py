@@ -12,6 +12,8 @@ Rr the loaded radii *at level* (moments about the rear patch). SAE 2004-01-1076
 warns that many formulas mishandle unequal radii; this is the exact form.
 """
 
+from __future__ import annotations
+
 import math
 from dataclasses import dataclass
 
@@ -44,7 +46,7 @@ class LevelCar:
     front_radius: float
     rear_radius: float
 
-    def __post_init__(self):
+    def __post_init__(self) -> None:
         not_negative("the front axle weight", self.front, "kg")
         not_negative("the rear axle weight", self.rear, "kg")
         positive("the weight of the car", self.front + self.rear, "kg")
@@ -53,12 +55,12 @@ class LevelCar:
         positive("the rear loaded radius", self.rear_radius, "m")
 
     @property
-    def mass(self):
+    def mass(self) -> float:
         """Both axles together, kg."""
         return self.front + self.rear
 
     @property
-    def cg_x(self):
+    def cg_x(self) -> float:
         """CG forward of the rear axle, m."""
         return self.wheelbase * self.front / self.mass
 
@@ -78,7 +80,7 @@ class CGHeight:
     caution: str = CAUTION
 
 
-def raised_angle(car, raised, rise):
+def raised_angle(car: LevelCar, raised: str, rise: float) -> float:
     """Pitch of the chassis from level, from the rise of the raised wheel centres.
 
     The line between the wheel centres turns about the centre that stays, so the
@@ -117,7 +119,13 @@ def raised_angle(car, raised, rise):
     return math.asin((step + rise) / line) - math.asin(step / line)
 
 
-def centre_rise(pad_rise, raised_radius, raised_radius_now, standing_radius, standing_radius_now):
+def centre_rise(
+    pad_rise: float,
+    raised_radius: float,
+    raised_radius_now: float,
+    standing_radius: float,
+    standing_radius_now: float,
+) -> float:
     """Rise of the raised wheel centre when the pads' heights were measured.
 
     The standing tyres squash a little more as the load moves to them and the
@@ -153,7 +161,7 @@ def centre_rise(pad_rise, raised_radius, raised_radius_now, standing_radius, sta
     return pad_rise + (raised_radius_now - raised_radius) - (standing_radius_now - standing_radius)
 
 
-def cg_height(car, raised, standing_load, angle):
+def cg_height(car: LevelCar, raised: str, standing_load: float, angle: float) -> CGHeight:
     """CG height from one reading with one end raised.
 
     Front raised: ``h = Rr + [x - (Ff/W) L] cot(p) + (Ff/W)(Rf - Rr)``; rear
@@ -205,7 +213,7 @@ def cg_height(car, raised, standing_load, angle):
     )
 
 
-def _doubts(height, angle, moved, radius):
+def _doubts(height: float, angle: float, moved: float, radius: float) -> tuple[str, ...]:
     doubts = []
     if angle < SMALL_ANGLE:
         doubts.append(

@@ -1,9 +1,13 @@
 """CG height from several raised readings, up and down again (ISO 10392)."""
 
+from __future__ import annotations
+
 import math
+from collections.abc import Iterable, Iterator
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from solver.checks import between, one_of, positive
 from solver.raised_end import CAUTION
@@ -66,7 +70,9 @@ class FittedHeight:
     caution: str = CAUTION
 
 
-def fit_raised_steps(steps, mass, wheelbase, front_radius, rear_radius):
+def fit_raised_steps(
+    steps: Iterable[RaisedStep], mass: float, wheelbase: float, front_radius: float, rear_radius: float
+) -> FittedHeight:
     """Fit the CG height to readings at several angles.
 
     ISO 10392 fits load against tan(angle). With unequal radii the load alone is
@@ -139,7 +145,7 @@ class _Row:
     way: str
 
 
-def _rows(number, step, mass):
+def _rows(number: int, step: RaisedStep, mass: float) -> Iterator[_Row]:
     one_of(f"the raised end of step {number}", step.raised, ("front", "rear"))
     one_of(f"the way of step {number}", step.way, ("up", "down"))
     degrees = between(f"the angle of step {number}", math.degrees(step.angle), 0.0, 45.0, "degrees")
@@ -154,13 +160,13 @@ def _rows(number, step, mass):
         yield _Row(nose_up, mass - load, -1.0, step.way)
 
 
-def _up_down(residuals, ways):
+def _up_down(residuals: NDArray[np.float64], ways: list[str]) -> float:
     down = [value for value, way in zip(residuals, ways, strict=True) if way == "down"]
     up = [value for value, way in zip(residuals, ways, strict=True) if way == "up"]
     return float(np.mean(down) - np.mean(up)) if up and down else 0.0
 
 
-def _doubts(steps):
+def _doubts(steps: list[RaisedStep]) -> tuple[str, ...]:
     doubts = []
     angles = {round(step.angle, 6) for step in steps if step.angle > 0.0}
     if len(angles) < 3:

@@ -14,13 +14,16 @@ the rear tyres' difference gains. That holds when the front tyres unload and
 leave the ground too, where the formula alone does not.
 """
 
+from __future__ import annotations
+
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import ArrayLike, NDArray
 
 from solver.checks import one_of
-from solver.roll_stiffness import front_share, stiffness_on_tyres
-from solver.weights import weigh
+from solver.roll_stiffness import RollAxle, front_share, stiffness_on_tyres
+from solver.weights import Corners, weigh
 
 GRAVITY = 9.80665
 CAUTION = "Quasi-static: roll inertia, dampers and side forces are not in it, so short peaks are only near the truth."
@@ -63,8 +66,16 @@ class RollHistory:
 
 
 def roll_history(
-    t, front_load, rear_load, shaft_torque, corners, front, rear, rotation="standard", gravity=GRAVITY
-):
+    t: ArrayLike,
+    front_load: ArrayLike,
+    rear_load: ArrayLike,
+    shaft_torque: ArrayLike,
+    corners: Corners,
+    front: RollAxle,
+    rear: RollAxle,
+    rotation: str = "standard",
+    gravity: float = GRAVITY,
+) -> RollHistory:
     """Left and right tyre loads over a planar run.
 
     Parameters
@@ -128,7 +139,7 @@ class StandingDifference:
     rear: float
 
 
-def standing_difference(corners, gravity=GRAVITY):
+def standing_difference(corners: Corners, gravity: float = GRAVITY) -> StandingDifference:
     """Left less right of each axle of the standing car, N, from corner weights in kg."""
     return StandingDifference(
         front=(corners.front_left - corners.front_right) * gravity,
@@ -136,7 +147,13 @@ def standing_difference(corners, gravity=GRAVITY):
     )
 
 
-def _doubts(time, free, ahead, free_rear, behind):
+def _doubts(
+    time: NDArray[np.float64],
+    free: NDArray[np.float64],
+    ahead: NDArray[np.float64],
+    free_rear: NDArray[np.float64],
+    behind: NDArray[np.float64],
+) -> tuple[str, ...]:
     found = []
     lifted = np.abs(free) > ahead
     if lifted.any():

@@ -1,9 +1,14 @@
 """Rear tyres left and right over a launch, from a car file's ``corners`` section."""
 
+from __future__ import annotations
+
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import ArrayLike
 
+from solver.corner_section import CornerPlan
+from solver.corner_springs import Axle
 from solver.preload import Preload, cancelling_preload
 from solver.roll import RollHistory, roll_history
 from solver.roll_stiffness import RollAxle, driveshaft_torque, roll_stiffness
@@ -29,12 +34,12 @@ class Greatest:
     difference: float
 
 
-def roll_axle(axle):
-    """How an axle of `solver.turns` resists roll.
+def roll_axle(axle: Axle) -> RollAxle:
+    """How an axle of `solver.corner_springs` resists roll.
 
     Parameters
     ----------
-    axle : solver.turns.Axle
+    axle : solver.corner_springs.Axle
         Its anti-roll bar's rate at the wheels b counts as ``b t^2`` in roll (a
         couple of forces b t phi, a track apart).
 
@@ -47,6 +52,8 @@ def roll_axle(axle):
     ValueError
         When a value is out of range.
     """
+    if axle.spring_rates is None:
+        raise ValueError("the axle's springs are not described: its roll stiffness cannot be worked out.")
     base = axle.track if axle.spring_base is None else axle.spring_base
     stiffness = roll_stiffness(
         axle.spring_rates, axle.motion_ratio, base, bar_stiffness=axle.bar_rate * axle.track**2
@@ -54,7 +61,9 @@ def roll_axle(axle):
     return RollAxle(track=axle.track, roll_stiffness=stiffness, tyre_rate=axle.tyre_rate)
 
 
-def left_right(t, front_load, rear_load, wheel_torque, plan):
+def left_right(
+    t: ArrayLike, front_load: ArrayLike, rear_load: ArrayLike, wheel_torque: ArrayLike, plan: CornerPlan
+) -> LeftRight:
     """Left and right tyre loads of a launch.
 
     Parameters
@@ -75,10 +84,8 @@ def left_right(t, front_load, rear_load, wheel_torque, plan):
     ValueError
         When the plan describes no driveshaft or springs, or lengths differ.
     """
-    if plan.driveshaft is None or plan.front.spring_rates is None or plan.rear.spring_rates is None:
-        raise ValueError(
-            "the car file's corners section describes no driveshaft, or not the springs of both axles."
-        )
+    if plan.driveshaft is None:
+        raise ValueError("the car file's corners section describes no driveshaft.")
     front, rear = roll_axle(plan.front), roll_axle(plan.rear)
     torque = driveshaft_torque(wheel_torque, plan.driveshaft.final_drive)
     rotation = plan.driveshaft.rotation
@@ -92,7 +99,7 @@ def left_right(t, front_load, rear_load, wheel_torque, plan):
     return LeftRight(history=history, preload=preload, reason="")
 
 
-def greatest_difference(history):
+def greatest_difference(history: RollHistory) -> Greatest:
     """The greatest difference of the rear tyres over the run, left less right: `Greatest`."""
     index = int(np.argmax(np.abs(history.rear_difference)))
     return Greatest(time=float(history.t[index]), difference=float(history.rear_difference[index]))

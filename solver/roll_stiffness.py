@@ -1,8 +1,11 @@
 """Roll stiffness of axles, and how the driveshaft's torque divides between them."""
 
+from __future__ import annotations
+
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import ArrayLike, NDArray
 
 from solver.checks import not_negative, positive
 
@@ -27,7 +30,9 @@ class RollAxle:
     tyre_rate: float | None = None
 
 
-def roll_stiffness(spring_rates, motion_ratio, base, bar_stiffness=0.0):
+def roll_stiffness(
+    spring_rates: tuple[float, float], motion_ratio: float, base: float, bar_stiffness: float = 0.0
+) -> float:
     """Roll stiffness of one axle's springs and anti-roll bar.
 
     Two springs a distance apart resist roll with ``kl kr b^2/(kl + kr)``, which
@@ -62,7 +67,7 @@ def roll_stiffness(spring_rates, motion_ratio, base, bar_stiffness=0.0):
     return left * right / (left + right) * (ratio * width) ** 2 + bar
 
 
-def front_share(front, rear):
+def front_share(front: RollAxle, rear: RollAxle) -> float:
     """Part of the driveshaft torque that ends in the front tyres.
 
     ``Kf/(Kf + Kr)`` on rigid tyres, the published formula. With tyre rates the
@@ -86,14 +91,14 @@ def front_share(front, rear):
     _check(front, "front")
     _check(rear, "rear")
     stiff = stiffness_on_tyres(front)
-    turned = 0.0 if rear.tyre_rate is None else stiff / _tyre_roll(rear)
+    turned = 0.0 if rear.tyre_rate is None else stiff / _tyre_roll(rear.tyre_rate, rear.track)
     whole = stiff + rear.roll_stiffness * (1.0 + turned)
     if whole <= 0.0:
         raise ValueError("neither axle resists roll: front and rear roll stiffness are both zero.")
     return stiff / whole
 
 
-def torque_difference(driveshaft_torque, front, rear):
+def torque_difference(driveshaft_torque: float, front: RollAxle, rear: RollAxle) -> float:
     """Rear tyre load left less right from the torque alone, front tyres on the ground.
 
     ``2 Td/t share``: each tyre changes by half of it, which is the published
@@ -118,7 +123,7 @@ def torque_difference(driveshaft_torque, front, rear):
     return 2.0 * driveshaft_torque / rear.track * front_share(front, rear)
 
 
-def driveshaft_torque(wheel_torque, final_drive):
+def driveshaft_torque(wheel_torque: ArrayLike, final_drive: float) -> NDArray[np.float64]:
     """Driveshaft torque from the torque at both wheels: ``T/N`` (no losses).
 
     Parameters
@@ -142,20 +147,20 @@ def driveshaft_torque(wheel_torque, final_drive):
     return np.asarray(wheel_torque, dtype=float) / positive("the final drive ratio", final_drive)
 
 
-def stiffness_on_tyres(axle):
+def stiffness_on_tyres(axle: RollAxle) -> float:
     """Roll stiffness of one axle against the ground, its tyres in series, N m/rad."""
     if axle.tyre_rate is None or axle.roll_stiffness == 0.0:
         return axle.roll_stiffness
-    tyres = _tyre_roll(axle)
+    tyres = _tyre_roll(axle.tyre_rate, axle.track)
     return axle.roll_stiffness * tyres / (axle.roll_stiffness + tyres)
 
 
-def _check(axle, name):
+def _check(axle: RollAxle, name: str) -> None:
     positive(f"the {name} track", axle.track, "m")
     not_negative(f"the {name} roll stiffness", axle.roll_stiffness, "N m/rad")
     if axle.tyre_rate is not None:
         positive(f"the {name} tyre rate", axle.tyre_rate, "N/m")
 
 
-def _tyre_roll(axle):
-    return axle.tyre_rate * axle.track**2 / 2.0
+def _tyre_roll(tyre_rate: float, track: float) -> float:
+    return tyre_rate * track**2 / 2.0

@@ -4,12 +4,19 @@ SciPy's statistics are imported when first used: they take longer to load than a
 launch takes to run.
 """
 
+from __future__ import annotations
+
 import math
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
+from numpy.typing import NDArray
 
 from solver.checks import not_negative
+
+if TYPE_CHECKING:
+    from solver.comparing import Summary
 
 EXACT_LIMIT = 200_000
 RESAMPLES = 9_999
@@ -49,7 +56,7 @@ class Permutation:
     smallest_possible: float
 
 
-def welch_from_summaries(first, second):
+def welch_from_summaries(first: Summary, second: Summary) -> Welch:
     """Welch's t from two summaries (Welch 1947, with Satterthwaite's degrees of freedom).
 
     Parameters
@@ -82,12 +89,12 @@ def welch_from_summaries(first, second):
     return Welch(t=float(result.statistic), freedom=_freedom(first, second), p=float(result.pvalue))
 
 
-def _freedom(first, second):
+def _freedom(first: Summary, second: Summary) -> float:
     a, b = first.deviation**2 / first.count, second.deviation**2 / second.count
     return (a + b) ** 2 / (a**2 / (first.count - 1) + b**2 / (second.count - 1))
 
 
-def t_interval(first, second, welch, level):
+def t_interval(first: Summary, second: Summary, welch: Welch, level: float) -> Interval:
     """Interval of the difference of means by Welch's t, at a confidence `level`."""
     from scipy import stats
 
@@ -97,7 +104,7 @@ def t_interval(first, second, welch, level):
     return Interval(low=middle - half, high=middle + half, confidence=level, method="Welch's t")
 
 
-def permutation(a, b):
+def permutation(a: NDArray[np.float64], b: NDArray[np.float64]) -> Permutation:
     """Permutation test of the difference of means of two arrays, two passes or more each.
 
     Exact up to `EXACT_LIMIT` arrangements, else a random sample that is the
@@ -121,7 +128,7 @@ def permutation(a, b):
     return Permutation(p=float(result.pvalue), arrangements=tried, exact=exact, smallest_possible=smallest)
 
 
-def bootstrap(a, b, level):
+def bootstrap(a: NDArray[np.float64], b: NDArray[np.float64], level: float) -> Interval | None:
     """Bias-corrected bootstrap interval of the difference of means (scipy.stats.bootstrap).
 
     None when a group has fewer than `BOOTSTRAP_LEAST` passes or no scatter:

@@ -1,9 +1,11 @@
 """Whether a typed-in slip can be right."""
 
+from __future__ import annotations
+
 import itertools
 from dataclasses import dataclass
 
-from solver.timing import MARKS, TRAPPED, mean_acceleration
+from solver.timing import MARKS, TRAPPED, Slip, mean_acceleration
 
 GRAVITY = 9.80665
 # Quicker than this from the line is a typing error: common practice, no source.
@@ -22,12 +24,12 @@ class SlipCheck:
     doubts: tuple
 
     @property
-    def holds(self):
+    def holds(self) -> bool:
         """Whether there is no fault."""
         return not self.faults
 
 
-def check_slip(slip):
+def check_slip(slip: Slip) -> SlipCheck:
     """Check a slip's times and speeds against each other.
 
     Times must rise with distance; the mean speed from mark to mark should rise
@@ -47,7 +49,7 @@ def check_slip(slip):
     faults = _values(slip)
     if faults:
         return SlipCheck(faults=tuple(faults), doubts=())
-    order = sorted(slip.times, key=MARKS.get)
+    order = sorted(slip.times, key=lambda name: MARKS[name])
     for first, second in itertools.pairwise(order):
         if slip.times[second] <= slip.times[first]:
             faults.append(
@@ -68,7 +70,7 @@ class _Stretch:
     speed: float
 
 
-def _values(slip):
+def _values(slip: Slip) -> list[str]:
     faults = []
     for what, entries, known in (("time", slip.times, MARKS), ("speed", slip.speeds, TRAPPED)):
         for name, value in entries.items():
@@ -79,7 +81,7 @@ def _values(slip):
     return faults
 
 
-def _too_quick(slip, order):
+def _too_quick(slip: Slip, order: list[str]) -> list[str]:
     for name in order:
         pull = mean_acceleration(MARKS[name], slip.times[name], slip.rollout)
         if pull > GREATEST_LAUNCH:
@@ -92,7 +94,7 @@ def _too_quick(slip, order):
     return []
 
 
-def _stretches(slip, order):
+def _stretches(slip: Slip, order: list[str]) -> list[_Stretch]:
     found = []
     previous, gone, clock = "the start", 0.0, 0.0
     for name in order:
@@ -102,7 +104,7 @@ def _stretches(slip, order):
     return found
 
 
-def _slowing(stretches):
+def _slowing(stretches: list[_Stretch]) -> list[str]:
     return [
         f"From {later.start} to {later.end} the car is slower on average than before it: did the"
         " driver lift, or is a time mistyped?"
@@ -111,7 +113,7 @@ def _slowing(stretches):
     ]
 
 
-def _traps(slip, stretches):
+def _traps(slip: Slip, stretches: list[_Stretch]) -> list[str]:
     doubts = []
     ends = {stretch.end: (index, stretch) for index, stretch in enumerate(stretches)}
     for name, speed in slip.speeds.items():

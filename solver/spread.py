@@ -5,15 +5,24 @@ from the standard uncertainties of the car file's numbers. All the runs this
 takes go through the solver as lanes of one batch.
 """
 
+from __future__ import annotations
+
+import math
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
+from numpy.typing import NDArray
 
 from solver.car_paths import number_at, with_numbers
 from solver.checks import not_negative, positive
 from solver.measured import Input
-from solver.monte_carlo import draw_inputs, summarise
+from solver.monte_carlo import Draws, draw_inputs, summarise
 from solver.uncertainty import Propagation, from_sensitivities
+
+# Takes car files, one a lane, and gives each one's figures, None for one it does not have.
+FiguresOf = Callable[[list[dict[str, Any]]], Sequence[Mapping[str, float | None]]]
 
 # A figure whose curvature over one standard uncertainty is more than this part of its
 # uncertainty is not well told by the first order.
@@ -41,7 +50,7 @@ class Spread:
     curved: tuple
 
     @property
-    def figures(self):
+    def figures(self) -> tuple[str, ...]:
         """Names of the figures that have a spread."""
         return self.propagation.names
 
@@ -59,7 +68,13 @@ class Purchase:
     then: float
 
 
-def spread_of(document, uncertainties, figures_of, correlations=None, step=1.0):
+def spread_of(
+    document: dict[str, Any],
+    uncertainties: Mapping[str, float],
+    figures_of: FiguresOf,
+    correlations: Mapping[tuple[str, str], float] | None = None,
+    step: float = 1.0,
+) -> Spread:
     """Figures of a launch with standard uncertainties.
 
     Sensitivities by ``[f(x + s u) - f(x - s u)]/(2 s u)`` (JCGM 100:2008, 5.1.3
@@ -109,7 +124,14 @@ def spread_of(document, uncertainties, figures_of, correlations=None, step=1.0):
     return Spread(propagation=propagation, left_out=left_out, curved=curved)
 
 
-def spread_by_draws(document, uncertainties, figures_of, draws=1000, seed=1, correlations=None):
+def spread_by_draws(
+    document: dict[str, Any],
+    uncertainties: Mapping[str, float],
+    figures_of: FiguresOf,
+    draws: int = 1000,
+    seed: int = 1,
+    correlations: Mapping[tuple[str, str], float] | None = None,
+) -> Draws:
     """The same by drawing whole cars at random (GUM Supplement 1), one a lane.
 
     Parameters
@@ -138,7 +160,7 @@ def spread_by_draws(document, uncertainties, figures_of, draws=1000, seed=1, cor
     return summarise(names, table)
 
 
-def best_purchases(spread, figure, part=0.5):
+def best_purchases(spread: Spread, figure: str, part: float = 0.5) -> tuple[Purchase, ...]:
     """Which number to measure again, for one figure.
 
     Parameters
@@ -172,7 +194,7 @@ def best_purchases(spread, figure, part=0.5):
     return tuple(sorted(found, key=lambda purchase: purchase.then))
 
 
-def _inputs(document, uncertainties):
+def _inputs(document: dict[str, Any], uncertainties: Mapping[str, float]) -> dict[str, Input]:
     """Inputs that are uncertain at all: a zero adds two lanes and nothing else."""
     inputs = {}
     for path, value in uncertainties.items():
@@ -183,13 +205,15 @@ def _inputs(document, uncertainties):
     return inputs
 
 
-def _table(found):
+def _table(
+    found: Sequence[Mapping[str, float | None]],
+) -> tuple[tuple[str, ...], NDArray[np.float64], tuple[str, ...]]:
     """Figures that every lane has, shape (figures, lanes), and the names of the others."""
-    names = [
-        name
-        for name in found[0]
-        if all(lane.get(name) is not None and np.isfinite(lane[name]) for lane in found)
-    ]
+    names = [name for name in found[0] if all(_is_number(lane.get(name)) for lane in found)]
     every = {name: None for lane in found for name in lane}
     left_out = tuple(name for name in every if name not in names)
     return tuple(names), np.array([[lane[name] for lane in found] for name in names]), left_out
+
+
+def _is_number(value: float | None) -> bool:
+    return value is not None and math.isfinite(value)

@@ -5,11 +5,15 @@ front tyre has rolled out of the stage beam, and the speed on the slip is the
 mean over the last 66 ft before the mark.
 """
 
+from __future__ import annotations
+
 import itertools
 import math
+from collections.abc import Mapping
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import ArrayLike, NDArray
 
 from solver.checks import not_negative, number, positive
 from solver.power import EXPONENT, corrected_speed, corrected_time
@@ -46,7 +50,7 @@ class SteadyRun:
     speed: float
 
 
-def steady_run(acceleration, distance):
+def steady_run(acceleration: float, distance: float) -> SteadyRun:
     """Time and end speed at constant acceleration from rest: ``sqrt(2 s/a)``, ``sqrt(2 a s)``.
 
     Parameters
@@ -70,7 +74,7 @@ def steady_run(acceleration, distance):
     return SteadyRun(seconds=math.sqrt(2.0 * far / rate), speed=math.sqrt(2.0 * rate * far))
 
 
-def mean_acceleration(distance, seconds, rollout=TYPICAL_ROLLOUT):
+def mean_acceleration(distance: float, seconds: float, rollout: float = TYPICAL_ROLLOUT) -> float:
     """Constant acceleration that covers a distance in a slip's time, rollout included.
 
     The car is already moving when the clock starts: with constant acceleration
@@ -101,7 +105,13 @@ def mean_acceleration(distance, seconds, rollout=TYPICAL_ROLLOUT):
     return 2.0 * (math.sqrt(far + before) - math.sqrt(before)) ** 2 / time**2
 
 
-def slip_from_run(t, distance, speed, rollout=TYPICAL_ROLLOUT, marks=None):
+def slip_from_run(
+    t: ArrayLike,
+    distance: ArrayLike,
+    speed: ArrayLike,
+    rollout: float = TYPICAL_ROLLOUT,
+    marks: Mapping[str, float] | None = None,
+) -> Slip:
     """The slip that a run would print.
 
     The clock runs from the instant at which the car has moved by the rollout. Between
@@ -143,11 +153,14 @@ def slip_from_run(t, distance, speed, rollout=TYPICAL_ROLLOUT, marks=None):
         found[name] = at - start
         if name in TRAPPED:
             entered = time_at(times, gone, speeds, rollout + mark - TRAP_LENGTH)
-            trapped[name] = TRAP_LENGTH / (at - entered)
+            if entered is not None:
+                trapped[name] = TRAP_LENGTH / (at - entered)
     return Slip(times=found, speeds=trapped, rollout=rollout)
 
 
-def time_at(t, distance, speed, mark):
+def time_at(
+    t: NDArray[np.float64], distance: NDArray[np.float64], speed: NDArray[np.float64], mark: float
+) -> float | None:
     """When the run passes a distance, or None when it does not reach it.
 
     Parameters
@@ -179,12 +192,12 @@ def time_at(t, distance, speed, mark):
     return float(t[after - 1]) + step * (low + high) / 2.0
 
 
-def _hermite(u, start, end, rise, fall):
+def _hermite(u: float, start: float, end: float, rise: float, fall: float) -> float:
     back = 1.0 - u
     return (1 + 2 * u) * back**2 * start + u**2 * (3 - 2 * u) * end + u * back**2 * rise - u**2 * back * fall
 
 
-def corrected_slip(slip, factor, exponent=EXPONENT):
+def corrected_slip(slip: Slip, factor: float, exponent: float = EXPONENT) -> Slip:
     """The slip in standard air: see `solver.power` for the exponent and its standing.
 
     Parameters
@@ -210,7 +223,7 @@ def corrected_slip(slip, factor, exponent=EXPONENT):
     )
 
 
-def increments(slip, marks=None):
+def increments(slip: Slip, marks: Mapping[str, float] | None = None) -> dict[str, float]:
     """Times from mark to mark: dict of ``'60 ft to 330 ft'`` to s, in order of distance.
 
     Raises
@@ -222,7 +235,7 @@ def increments(slip, marks=None):
     for name in slip.times:
         if name not in known:
             raise ValueError(f"the mark {name!r} has no known distance: there are {', '.join(known)}.")
-    order = sorted(slip.times, key=known.get)
+    order = sorted(slip.times, key=lambda name: known[name])
     return {
         f"{first} to {second}": number(f"the time at {second}", slip.times[second]) - slip.times[first]
         for first, second in itertools.pairwise(order)

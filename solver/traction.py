@@ -4,6 +4,8 @@ Whole-car figures, both sides together. Slopes are of the force line from the
 rear patch, as rise over run.
 """
 
+from __future__ import annotations
+
 from dataclasses import dataclass
 
 from solver.checks import number, positive
@@ -44,7 +46,7 @@ class NeutralSlopes:
     no_pitch: float
 
 
-def load_transfer(mass, acceleration, cg_height, wheelbase):
+def load_transfer(mass: float, acceleration: float, cg_height: float, wheelbase: float) -> float:
     """Load that moves to the rear tyres: ``m a h/L`` (moments about the front patch).
 
     Parameters
@@ -76,7 +78,14 @@ def load_transfer(mass, acceleration, cg_height, wheelbase):
     )
 
 
-def axle_loads(mass, acceleration, cg_x, cg_height, wheelbase, gravity=GRAVITY):
+def axle_loads(
+    mass: float,
+    acceleration: float,
+    cg_x: float,
+    cg_height: float,
+    wheelbase: float,
+    gravity: float = GRAVITY,
+) -> AxleLoads:
     """Axle loads under steady acceleration.
 
     Parameters
@@ -107,7 +116,9 @@ def axle_loads(mass, acceleration, cg_x, cg_height, wheelbase, gravity=GRAVITY):
     return AxleLoads(front=front, rear=mass * gravity - front, transfer=moved)
 
 
-def traction_limit(grip, cg_x, cg_height, wheelbase, gravity=GRAVITY):
+def traction_limit(
+    grip: float, cg_x: float, cg_height: float, wheelbase: float, gravity: float = GRAVITY
+) -> TractionLimit:
     """Greatest steady acceleration of a rear-drive car.
 
     ``a = mu g (a1/L)/(1 - mu h/L)`` with a1 from the front axle to the CG (Jazar,
@@ -145,7 +156,9 @@ def traction_limit(grip, cg_x, cg_height, wheelbase, gravity=GRAVITY):
     return TractionLimit(acceleration=min(slip, lift), lift_acceleration=lift, wheels_lift=lift < slip)
 
 
-def rear_spring_change(mass, acceleration, cg_height, wheelbase, slope):
+def rear_spring_change(
+    mass: float, acceleration: float, cg_height: float, wheelbase: float, slope: float
+) -> float:
     """Load that the rear springs gain in a steady hit, unsprung mass neglected.
 
     ``m a (h/L - e/d)`` with ``e/d`` the slope of the force line (Barton and
@@ -172,7 +185,7 @@ def rear_spring_change(mass, acceleration, cg_height, wheelbase, slope):
     return moved - mass * acceleration * number("the slope", slope)
 
 
-def neutral_slopes(cg_height, wheelbase, front_rate, rear_rate):
+def neutral_slopes(cg_height: float, wheelbase: float, front_rate: float, rear_rate: float) -> NeutralSlopes:
     """Slopes of the force line for no squat and for no pitch.
 
     ``h/L`` and ``(1 + kr/kf) h/L`` (Barton and Fieldhouse eqs 3.66 to 3.69).

@@ -4,12 +4,17 @@ JCGM 100:2008 (GUM) clause 5, with sensitivities by central differences. What
 the first order may miss is checked by `solver.monte_carlo`.
 """
 
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
+from numpy.typing import ArrayLike, NDArray
 
 from solver.checks import not_negative, positive
-from solver.measured import covariance_of
+from solver.measured import Input, covariance_of
 
 
 @dataclass(frozen=True)
@@ -58,21 +63,21 @@ class Propagation:
     covariance: np.ndarray
     input_covariance: np.ndarray
 
-    def value(self, name="value"):
+    def value(self, name: str = "value") -> float:
         """One output's value."""
         return float(self.values[self._row(name)])
 
-    def uncertainty(self, name="value"):
+    def uncertainty(self, name: str = "value") -> float:
         """One output's standard uncertainty."""
         return float(self.uncertainties[self._row(name)])
 
-    def correlation(self, first, second):
+    def correlation(self, first: str, second: str) -> float:
         """Correlation coefficient of two outputs; zero when either has no uncertainty."""
         a, b = self._row(first), self._row(second)
         scale = self.uncertainties[a] * self.uncertainties[b]
         return float(self.covariance[a, b] / scale) if scale > 0.0 else 0.0
 
-    def ranking(self, name="value"):
+    def ranking(self, name: str = "value") -> tuple[Contribution, ...]:
         """Contributions to one output, greatest amount first: a tuple of `Contribution`."""
         row = self.sensitivities[self._row(name)]
         variance = float(row @ self.input_covariance @ row)
@@ -88,7 +93,7 @@ class Propagation:
         ]
         return tuple(sorted(found, key=lambda part: -part.amount))
 
-    def remeasured(self, changes):
+    def remeasured(self, changes: Mapping[str, float]) -> dict[str, float]:
         """Standard uncertainties of all outputs if some inputs were measured better.
 
         Parameters
@@ -118,13 +123,18 @@ class Propagation:
         variance = np.einsum("ij,jk,ik->i", self.sensitivities, covariance, self.sensitivities)
         return dict(zip(self.names, np.sqrt(np.maximum(variance, 0.0)).tolist(), strict=True))
 
-    def _row(self, name):
+    def _row(self, name: str) -> int:
         if name not in self.names:
             raise ValueError(f"{name!r} is not an output: there are {', '.join(self.names)}.")
         return self.names.index(name)
 
 
-def propagate(function, inputs, correlations=None, step=0.1):
+def propagate(
+    function: Callable[..., Any],
+    inputs: Mapping[str, Input],
+    correlations: Mapping[tuple[str, str], float] | None = None,
+    step: float = 0.1,
+) -> Propagation:
     """Propagate standard uncertainties through a function, to first order.
 
     ``u_c^2(y) = sum c_i c_j u_i u_j r_ij`` (GUM equation 13), with ``c_i`` by
@@ -166,7 +176,13 @@ def propagate(function, inputs, correlations=None, step=0.1):
     return from_sensitivities(inputs, names, values, np.column_stack(columns), correlations)
 
 
-def from_sensitivities(inputs, names, values, sensitivities, correlations=None):
+def from_sensitivities(
+    inputs: Mapping[str, Input],
+    names: Iterable[str],
+    values: ArrayLike,
+    sensitivities: ArrayLike,
+    correlations: Mapping[tuple[str, str], float] | None = None,
+) -> Propagation:
     """The same from sensitivities already at hand (GUM equation 13).
 
     Parameters
@@ -201,11 +217,11 @@ def from_sensitivities(inputs, names, values, sensitivities, correlations=None):
     )
 
 
-def _values(inputs):
+def _values(inputs: Mapping[str, Input]) -> dict[str, float]:
     return {name: item.value for name, item in inputs.items()}
 
 
-def _named(result):
+def _named(result: Any) -> tuple[tuple[str, ...], NDArray[np.float64]]:
     if isinstance(result, dict):
         return tuple(result), np.array(list(result.values()), dtype=float)
     array = np.atleast_1d(np.asarray(result, dtype=float))

@@ -1,5 +1,7 @@
 """Moist air: density by CIPM-2007, and what a weather station's numbers mean."""
 
+from __future__ import annotations
+
 import math
 from dataclasses import dataclass
 
@@ -42,7 +44,7 @@ class MoistAir:
     warnings: tuple
 
 
-def saturation_pressure(temperature):
+def saturation_pressure(temperature: float) -> float:
     """Saturation vapour pressure over water, by the equation of CIPM-2007.
 
     ``exp(A T^2 + B T + C + D/T)`` (Picard et al., Metrologia 45 (2008) 149-155,
@@ -67,7 +69,9 @@ def saturation_pressure(temperature):
     return math.exp(1.2378847e-5 * hot**2 - 1.9121316e-2 * hot + 33.93711047 - 6.3431645e3 / hot)
 
 
-def moist_air(temperature, pressure, humidity, carbon_dioxide=400e-6):
+def moist_air(
+    temperature: float, pressure: float, humidity: float, carbon_dioxide: float = 0.0004
+) -> MoistAir:
     """Density of moist air by CIPM-2007.
 
     ``rho = p Ma/(Z R T) [1 - xv (1 - Mv/Ma)]`` (Picard, Davis, Glaeser and Fujii,
@@ -116,7 +120,7 @@ def moist_air(temperature, pressure, humidity, carbon_dioxide=400e-6):
     )
 
 
-def _compressibility(pressure, temperature, fraction):
+def _compressibility(pressure: float, temperature: float, fraction: float) -> float:
     t, ratio = temperature - KELVIN, pressure / temperature
     first = (
         1.58123e-6
@@ -128,7 +132,7 @@ def _compressibility(pressure, temperature, fraction):
     return 1.0 - ratio * first + ratio**2 * (1.83e-11 - 0.765e-8 * fraction**2)
 
 
-def _warnings(pressure, celsius):
+def _warnings(pressure: float, celsius: float) -> tuple[str, ...]:
     found = []
     if not 60000.0 <= pressure <= 110000.0:
         found.append(f"The station pressure is {pressure / 100:.0f} hPa: {PUBLISHED_RANGE}.")
@@ -140,7 +144,7 @@ def _warnings(pressure, celsius):
     return tuple(found)
 
 
-def humidity_from_dew_point(temperature, dew_point):
+def humidity_from_dew_point(temperature: float, dew_point: float) -> float:
     """Relative humidity from temperature and dew point.
 
     The vapour pressure is the saturation pressure at the dew point (definition).

@@ -4,9 +4,13 @@ Masses are kilograms, as scales show them. `x` is forward of the rear axle
 centre and `y` is to the left, as everywhere in this package.
 """
 
+from __future__ import annotations
+
+from collections.abc import Iterable
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from solver.checks import not_negative, positive
 
@@ -23,11 +27,11 @@ class Corners:
     rear_right: float
 
     @classmethod
-    def from_array(cls, values):
+    def from_array(cls, values: Iterable[float]) -> Corners:
         """Make corners from four numbers in the order FL, FR, RL, RR."""
         return cls(*(float(value) for value in values))
 
-    def as_array(self):
+    def as_array(self) -> NDArray[np.float64]:
         """The four numbers as an array of shape (4,), in the order FL, FR, RL, RR."""
         return np.array([self.front_left, self.front_right, self.rear_left, self.rear_right], dtype=float)
 
@@ -75,7 +79,7 @@ class SprungMass:
     z: float
 
 
-def weigh(corners):
+def weigh(corners: Corners) -> Weighing:
     """Sum four corner weights and take the percentages a shop works with.
 
     Parameters
@@ -117,7 +121,7 @@ def weigh(corners):
     )
 
 
-def cg_from_scales(corners, wheelbase, front_track, rear_track):
+def cg_from_scales(corners: Corners, wheelbase: float, front_track: float, rear_track: float) -> PlanCG:
     """Centre of gravity seen from above, from level corner weights.
 
     Moments about the rear axle and about the car's centre line:
@@ -153,7 +157,7 @@ def cg_from_scales(corners, wheelbase, front_track, rear_track):
     return PlanCG(x=x, y=moment / weighing.total, behind_front_axle=length - x)
 
 
-def axle_weights(mass, cg_x, wheelbase):
+def axle_weights(mass: float, cg_x: float, wheelbase: float) -> AxleWeights:
     """Front and rear axle weight (kg) of a car standing level.
 
     Parameters
@@ -180,7 +184,16 @@ def axle_weights(mass, cg_x, wheelbase):
     return AxleWeights(front=front, rear=total - front)
 
 
-def sprung_mass(mass, cg_x, cg_z, wheelbase, front_unsprung, rear_unsprung, front_radius, rear_radius):
+def sprung_mass(
+    mass: float,
+    cg_x: float,
+    cg_z: float,
+    wheelbase: float,
+    front_unsprung: float,
+    rear_unsprung: float,
+    front_radius: float,
+    rear_radius: float,
+) -> SprungMass:
     """Take the axles out of the whole car and leave what the springs carry.
 
     ``m_s = m - m_f - m_r``, ``m_s x_s = m x - m_f L``,

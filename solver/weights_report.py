@@ -1,9 +1,13 @@
 """Everything the weights of one car say together, for the command line and the shop."""
 
+from __future__ import annotations
+
 from dataclasses import dataclass
 
 import numpy as np
 
+from solver.car import Car
+from solver.corner_section import CornerPlan
 from solver.inertia import PitchInertia, typical_pitch_inertia
 from solver.raised_end import CAUTION
 from solver.raised_steps import FittedHeight, RaisedStep, fit_raised_steps
@@ -43,7 +47,7 @@ class WeightsReport:
     cautions: tuple
 
 
-def report_weights(car, gravity=9.80665):
+def report_weights(car: Car, gravity: float = 9.80665) -> WeightsReport:
     """Work out all that the weights of a car file allow.
 
     Parameters
@@ -75,9 +79,8 @@ def report_weights(car, gravity=9.80665):
         car.rear.tyre_radius,
     )
     height = _height(car, plan) if plan and plan.raised else None
-    turns = target = None
-    if plan and plan.has_target:
-        target = plan.target or target_from_cross(plan.measured, plan.target_cross_percent)
+    turns, target = None, _target(plan) if plan else None
+    if plan and target:
         turns = seat_turns(
             plan.measured, target, car.wheelbase, plan.front, plan.rear, gravity, plan.keep_height
         )
@@ -98,7 +101,13 @@ def report_weights(car, gravity=9.80665):
     )
 
 
-def _height(car, plan):
+def _target(plan: CornerPlan) -> Corners | None:
+    if plan.target_cross_percent is not None:
+        return target_from_cross(plan.measured, plan.target_cross_percent)
+    return plan.target
+
+
+def _height(car: Car, plan: CornerPlan) -> FittedHeight:
     weighing = weigh(plan.measured)
     level = RaisedStep(0.0, plan.raised[0].raised, weighing.front, weighing.rear)
     return fit_raised_steps(
@@ -106,7 +115,9 @@ def _height(car, plan):
     )
 
 
-def _doubts(car, weighing, height, turns):
+def _doubts(
+    car: Car, weighing: Weighing | None, height: FittedHeight | None, turns: SeatTurns | None
+) -> tuple[str, ...]:
     doubts = []
     if weighing is not None:
         x = car.wheelbase * weighing.front / weighing.total

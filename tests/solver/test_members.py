@@ -79,7 +79,7 @@ def test_tube_sections(diameter, wall, area, second, gyration, accuracy):
 
 def test_solid_bar_is_the_thickest_wall():
     assert tube_section(0.02, 0.01).area == pytest.approx(math.pi * 1e-4)
-    with pytest.raises(ValueError, match="at most 0.01 m"):
+    with pytest.raises(ValueError, match=r"at most 0\.01 m"):
         tube_section(0.02, 0.011)
 
 

@@ -6,7 +6,8 @@ import numpy as np
 import pytest
 from scipy.optimize import minimize
 
-from solver.turns import Axle, seat_turns, target_from_cross
+from solver.corner_springs import Axle
+from solver.turns import seat_turns, target_from_cross
 from solver.weights import Corners, weigh
 
 G = 9.80665

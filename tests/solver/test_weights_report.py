@@ -9,9 +9,10 @@ import pytest
 
 from solver.carfile import car_from_dict, car_to_dict
 from solver.cli_weights import plain, weights_text
+from solver.corner_springs import Axle
 from solver.faults import CarError
 from solver.roll_plan import greatest_difference, left_right, roll_axle
-from solver.turns import Axle, seat_turns, target_from_cross
+from solver.turns import seat_turns, target_from_cross
 from solver.weights import Corners
 from solver.weights_report import report_weights
 
