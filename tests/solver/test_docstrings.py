@@ -44,7 +44,7 @@ def test_every_module_says_what_it_holds(module):
     assert module.__doc__
 
 
-@pytest.mark.parametrize("thing", public_things())
+@pytest.mark.parametrize("thing", list(public_things()))
 def test_public_docstrings_match_signatures(thing):
     assert thing.__doc__, "no docstring"
     if inspect.isfunction(thing):
