@@ -6,6 +6,11 @@ of pairs.
 """
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from solver.corner_section import CornerPlan
+    from solver.loads import BarPlan
 
 Point = tuple[float, float]
 Table = tuple[tuple[float, float], ...]
@@ -185,5 +190,5 @@ class Car:
     hit: Hit
     run: Run
     wheelie_bar: WheelieBar | None = None
-    corners: object | None = None
-    bars: object | None = None
+    corners: "CornerPlan | None" = None
+    bars: "BarPlan | None" = None
