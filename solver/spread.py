@@ -7,13 +7,12 @@ takes go through the solver as lanes of one batch.
 
 from __future__ import annotations
 
-import math
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
-from numpy.typing import NDArray
+from numpy.typing import ArrayLike, NDArray
 
 from solver.car_paths import number_at, with_numbers
 from solver.checks import not_negative, positive
@@ -21,8 +20,9 @@ from solver.measured import Input
 from solver.monte_carlo import Draws, draw_inputs, summarise
 from solver.uncertainty import Propagation, from_sensitivities
 
-# Takes car files, one a lane, and gives each one's figures, None for one it does not have.
-FiguresOf = Callable[[list[dict[str, Any]]], Sequence[Mapping[str, float | None]]]
+# Takes car files, one a lane, and gives each figure as an array over the lanes, NaN in a
+# lane that does not have it.
+FiguresOf = Callable[[list[dict[str, Any]]], Mapping[str, ArrayLike]]
 
 # A figure whose curvature over one standard uncertainty is more than this part of its
 # uncertainty is not well told by the first order.
@@ -88,8 +88,9 @@ def spread_of(
         Standard uncertainty of the number at each path, in its own unit;
         see `solver.measured.standard_uncertainty` for tolerances.
     figures_of : callable
-        Takes a list of car files, one a lane, and returns one dict of figure to
-        number (or None) for each; `solver.spread_lanes.launch_figures`.
+        Takes a list of car files, one a lane, and returns a dict of figure to
+        array over the lanes, NaN where a lane does not have it;
+        `solver.spread_lanes.launch_figures`.
     correlations : dict of (str, str) to float, optional
     step : float
         Half-width of the differences in standard uncertainties.
@@ -206,14 +207,11 @@ def _inputs(document: dict[str, Any], uncertainties: Mapping[str, float]) -> dic
 
 
 def _table(
-    found: Sequence[Mapping[str, float | None]],
+    found: Mapping[str, ArrayLike],
 ) -> tuple[tuple[str, ...], NDArray[np.float64], tuple[str, ...]]:
     """Figures that every lane has, shape (figures, lanes), and the names of the others."""
-    names = [name for name in found[0] if all(_is_number(lane.get(name)) for lane in found)]
-    every = {name: None for lane in found for name in lane}
-    left_out = tuple(name for name in every if name not in names)
-    return tuple(names), np.array([[lane[name] for lane in found] for name in names]), left_out
-
-
-def _is_number(value: float | None) -> bool:
-    return value is not None and math.isfinite(value)
+    arrays = {name: np.asarray(values, dtype=float) for name, values in found.items()}
+    whole = {name: values for name, values in arrays.items() if np.isfinite(values).all()}
+    if not whole:
+        raise ValueError("no figure is there in every lane: there is no spread to work out.")
+    return tuple(whole), np.stack(list(whole.values())), tuple(name for name in arrays if name not in whole)

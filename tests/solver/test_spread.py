@@ -2,6 +2,7 @@
 
 import math
 
+import numpy as np
 import pytest
 
 from solver.car_paths import number_at
@@ -13,14 +14,13 @@ SPREADS = {"mass": 2.0, "cg.z": 0.012, "wheelbase": 0.002}
 
 def arithmetic(documents):
     """Figures by formula, so that the spread can be worked out on paper."""
-    return [
-        {
-            "transfer": car["mass"] * car["pull"] * car["cg"]["z"] / car["wheelbase"],
-            "lift_time": 1.0 / car["cg"]["z"] if car["cg"]["z"] > 0.49 else None,
-            "steady": 3.0,
-        }
-        for car in documents
-    ]
+    height = np.array([car["cg"]["z"] for car in documents])
+    transfer = [car["mass"] * car["pull"] * car["cg"]["z"] / car["wheelbase"] for car in documents]
+    return {
+        "transfer": transfer,
+        "lift_time": np.where(height > 0.49, 1.0 / height, np.nan),
+        "steady": np.full(len(documents), 3.0),
+    }
 
 
 def test_first_order_by_hand():
@@ -52,7 +52,8 @@ def test_remeasuring_says_what_it_buys():
 
 def test_curved_figures_are_told():
     def bowl(documents):
-        return [{"bowl": (number_at(car, "cg.z") - 0.5) ** 2, "line": car["mass"]} for car in documents]
+        heights = np.array([number_at(car, "cg.z") for car in documents])
+        return {"bowl": (heights - 0.5) ** 2, "line": [car["mass"] for car in documents]}
 
     spread = spread_of(CAR, SPREADS, bowl)
     assert spread.curved == ("bowl",)
