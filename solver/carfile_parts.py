@@ -1,7 +1,8 @@
 """Springs, shocks, tyres, stops and links as they stand in a car file."""
 
-from solver.car import Adjuster, Click, Damper, FourLink, LadderBar, Link, RearSpring, Spring
-from solver.car import Stop, Tyre
+from itertools import pairwise
+
+from solver.car import Adjuster, Click, Damper, FourLink, LadderBar, Link, RearSpring, Spring, Stop, Tyre
 
 FORCE = (-1e6, 1e6)
 SPRING_COLUMNS = ("compression in m", "force in N")
@@ -53,7 +54,7 @@ def read_adjuster(section):
     setting = section.number("setting", 0.0, 100.0, "clicks")
     clicks = tuple(_read_click(part) for part in section.sections("clicks", 1, 12))
     names = [click.click for click in clicks]
-    if any(not b > a for a, b in zip(names, names[1:], strict=False)):
+    if any(not b > a for a, b in pairwise(names)):
         section.fault("clicks", names, "the clicks must rise from curve to curve")
     elif names and not names[0] <= setting <= names[-1]:
         section.fault(
@@ -167,12 +168,12 @@ def _one_of_two(section, first, second):
 
 
 def _force_must_rise(section, table):
-    if any(not b[1] > a[1] for a, b in zip(table, table[1:], strict=False)):
+    if any(not b[1] > a[1] for a, b in pairwise(table)):
         section.fault("table", table, "the force must rise with every further compression")
 
 
 def _force_must_not_fall(section, table):
-    if any(b[1] < a[1] for a, b in zip(table, table[1:], strict=False)):
+    if any(b[1] < a[1] for a, b in pairwise(table)):
         section.fault("table", table, "the force must not fall as the speed rises")
 
 

@@ -1,5 +1,7 @@
 """A shock's force-velocity curve at an adjuster setting between two dyno'd clicks."""
 
+from itertools import pairwise
+
 
 def damper_table(damper):
     """The (velocity, force) table of a damper, compression positive.
@@ -46,7 +48,7 @@ def stroke(adjuster):
             f"setting {adjuster.setting:g} is beyond the clicks that were on the dyno "
             f"({clicks[0].click:g} to {clicks[-1].click:g})"
         )
-    for softer, harder in zip(clicks, clicks[1:], strict=False):
+    for softer, harder in pairwise(clicks):
         if softer.click <= adjuster.setting <= harder.click:
             share = (adjuster.setting - softer.click) / (harder.click - softer.click)
             return _blend(softer.table, harder.table, share)

@@ -1,5 +1,7 @@
 """From a `Car` to the kernel's rows of numbers, and from file paths to columns."""
 
+from itertools import pairwise
+
 import numpy as np
 
 from solver.car import FourLink
@@ -32,6 +34,7 @@ def pack(car):
     _put_linkage(scalars, n, columns, car.rear.linkage)
     lines = _put_lines(scalars, n, columns, car.rear)
     _put_wheelie_bar(scalars, n, columns, car.wheelie_bar)
+    _put_stops(scalars, columns, car)
     tail = []
     _put_curves(n, tail, columns, car, lines)
     n[L.HIT_AT], n[L.HIT_COUNT] = L.SCALARS + len(tail), len(car.hit.table)
@@ -55,7 +58,7 @@ def hinges(table, ratio=1.0):
         f0, s0, v1, d1, v2, d2, ...
     """
     points = [(v / ratio, f * ratio) for v, f in table]
-    slopes = [(b[1] - a[1]) / (b[0] - a[0]) for a, b in zip(points, points[1:], strict=False)]
+    slopes = [(b[1] - a[1]) / (b[0] - a[0]) for a, b in pairwise(points)]
     row = [points[0][1] - slopes[0] * points[0][0], slopes[0]]
     for (v, _), before, after in zip(points[1:-1], slopes, slopes[1:], strict=True):
         if after != before:
@@ -89,6 +92,8 @@ def _put_body(scalars, columns, car):
     }
     for path, (where, value) in plain.items():
         _put(scalars, columns, where, path, value)
+    if rear.tyre.grip is not None:
+        _put(scalars, columns, L.GRIP, "rear.tyre.grip", rear.tyre.grip)
     scalars[L.DURATION], scalars[L.OUTPUT_STEP] = car.run.duration, car.run.output_step
 
 
@@ -138,18 +143,30 @@ def _put_wheelie_bar(scalars, n, columns, bar):
         _put(scalars, columns, where, f"wheelie_bar.{name}", getattr(bar, name))
 
 
+def _put_stops(scalars, columns, car):
+    for path, stop, clearance, damping in (
+        ("front.bump_stop", car.front.bump_stop, L.FRONT_BUMP_CLEARANCE, L.FRONT_BUMP_DAMPING),
+        ("front.droop_stop", car.front.droop_stop, L.FRONT_DROOP_CLEARANCE, L.FRONT_DROOP_DAMPING),
+        ("rear.bump_stop", car.rear.bump_stop, L.REAR_BUMP_CLEARANCE, L.REAR_BUMP_DAMPING),
+        ("rear.droop_stop", car.rear.droop_stop, L.REAR_DROOP_CLEARANCE, L.REAR_DROOP_DAMPING),
+    ):
+        if stop is not None:
+            _put(scalars, columns, clearance, f"{path}.clearance", stop.clearance)
+            _put(scalars, columns, damping, f"{path}.damping", stop.damping)
+
+
 def _put_curves(n, tail, columns, car, lines):
     front, rear = car.front, car.rear
     stops = (
-        (L.FRONT_BUMP, L.FRONT_BUMP_CLEARANCE, "front.bump_stop", front.bump_stop),
-        (L.FRONT_DROOP, L.FRONT_DROOP_CLEARANCE, "front.droop_stop", front.droop_stop),
-        (L.REAR_BUMP, L.REAR_BUMP_CLEARANCE, "rear.bump_stop", rear.bump_stop),
-        (L.REAR_DROOP, L.REAR_DROOP_CLEARANCE, "rear.droop_stop", rear.droop_stop),
+        (L.FRONT_BUMP, "front.bump_stop", front.bump_stop),
+        (L.FRONT_DROOP, "front.droop_stop", front.droop_stop),
+        (L.REAR_BUMP, "rear.bump_stop", rear.bump_stop),
+        (L.REAR_DROOP, "rear.droop_stop", rear.droop_stop),
     )
     adder = _Curves(n, tail, columns)
     adder.spring(L.FRONT_SPRING, "front.spring", front.spring)
     adder.damper(L.FRONT_DAMPER, "front.damper", front.damper)
-    for which, _, path, stop in stops:
+    for which, path, stop in stops:
         adder.stop(which, path, stop)
     for i in range(L.MAX_LINES):
         path, entry = lines[i] if i < len(lines) else ("", None)

@@ -5,6 +5,7 @@ nobody asked for is refused at the end.
 """
 
 import math
+from itertools import pairwise
 
 from solver.faults import Fault
 
@@ -100,7 +101,7 @@ class Section:
             self.fault(key, value, f"must have from {fewest} to {MAX_TABLE} points")
             return ()
         rows = tuple(self._row(key, i, row, columns, limits) for i, row in enumerate(value))
-        if any(not b[0] > a[0] for a, b in zip(rows, rows[1:], strict=False)):
+        if any(not b[0] > a[0] for a, b in pairwise(rows)):
             self.fault(key, value, f"the {columns[0]} must rise from point to point")
         return rows
 

@@ -180,9 +180,7 @@ def instant_centre_of(p):
     upper = (p[L.UCX], p[L.UCZ]), (p[L.UHX], p[L.UHZ])
     x, z, w = meeting(*lower, *upper)
     if abs(x) <= 1e-9 * abs(z):
-        raise CarError(
-            [Fault("rear.linkage", None, "the bars' lines meet straight above the rear tyres")]
-        )
+        raise CarError([Fault("rear.linkage", None, "the bars' lines meet straight above the rear tyres")])
     if parallel(*lower, *upper, w):
         return InstantCentre(None, None, float(z / x))
     return InstantCentre(float(x / w), float(z / w), float(z / x))
@@ -199,6 +197,4 @@ def plan_angles(car):
 def _bar(p, at, length, force, plan):
     rise, run = p[at + 1] - p[at + 3], p[at] - p[at + 2]
     true = math.cos(plan)
-    return Bar(
-        float(p[length] / true), math.atan2(float(rise), float(run)), float(p[force] / true), plan
-    )
+    return Bar(float(p[length] / true), math.atan2(float(rise), float(run)), float(p[force] / true), plan)

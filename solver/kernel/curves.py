@@ -4,8 +4,8 @@
 goes on with the end slopes, costs two multiplications a knot.
 """
 
-from solver.kernel.jit import jit
 from solver.kernel import layout as L
+from solver.kernel.jit import jit
 
 
 @jit

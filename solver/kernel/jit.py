@@ -13,7 +13,7 @@ from pathlib import Path
 import numba
 from numba import prange
 
-__all__ = ["jit", "prange", "parallel"]
+__all__ = ["jit", "parallel", "prange"]
 
 
 def _stamp():

@@ -2,7 +2,6 @@
 
 import numpy as np
 
-from solver.kernel import layout as L
 from solver.kernel.jit import jit, parallel, prange
 from solver.kernel.march import march
 from solver.kernel.rest import settle

@@ -136,17 +136,20 @@ STATES = 14
     O_REAR_STOP,
     O_FRONT_STOP,
     O_WHEELIE,
+    # How far past its clearance each rear stop's line is; negative is travel left.
+    O_REAR_BUMP_PAST,
+    O_REAR_DROOP_PAST,
     O_DRIFT,
     O_LEVERAGE,
     # What is zero at an event: the contacts' forces before they are cut at nil.
     O_GATE,
-) = range(28)
+) = range(30)
 N_GATES = 7
 (GATE_FRONT_TYRE, GATE_REAR_TYRE, GATE_FRONT_BUMP, GATE_FRONT_DROOP) = range(4)
 (GATE_REAR_BUMP, GATE_REAR_DROOP, GATE_WHEELIE) = 4, 5, 6
 OUTPUTS = O_GATE + N_GATES
 # Channels whose greatest and least values are kept at every step.
-WATCHED = O_WHEELIE + 1
+WATCHED = O_REAR_DROOP_PAST + 1
 
 # Accumulators: (greatest, its time, least, its time) for each watched channel, then:
 A_WINDOWS = 4 * WATCHED

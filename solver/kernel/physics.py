@@ -84,13 +84,13 @@ def rear_springs(p, n, y, co, si, ch, sh, out):
         if n[L.BUMP_LINE] == i:
             past = squeeze - p[L.REAR_BUMP_CLEARANCE]
             gate = curve(p, n, L.REAR_BUMP, past) + p[L.REAR_BUMP_DAMPING] * speed
-            out[L.O_GATE + L.GATE_REAR_BUMP] = gate
+            out[L.O_GATE + L.GATE_REAR_BUMP], out[L.O_REAR_BUMP_PAST] = gate, past
             force += max(0.0, gate)
             stops += max(0.0, gate)
         if n[L.DROOP_LINE] == i:
             past = -squeeze - p[L.REAR_DROOP_CLEARANCE]
             gate = curve(p, n, L.REAR_DROOP, past) - p[L.REAR_DROOP_DAMPING] * speed
-            out[L.O_GATE + L.GATE_REAR_DROOP] = gate
+            out[L.O_GATE + L.GATE_REAR_DROOP], out[L.O_REAR_DROOP_PAST] = gate, past
             force -= max(0.0, gate)
             stops -= max(0.0, gate)
         fx += force * ux

@@ -2,9 +2,9 @@
 
 import math
 
+from solver.kernel import layout as L
 from solver.kernel.curves import slope_at_rest, steepest
 from solver.kernel.jit import jit
-from solver.kernel import layout as L
 
 GRAVITY = 9.80665
 VIRTUAL_LINK = 0.3

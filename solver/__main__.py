@@ -1,0 +1,101 @@
+"""``python -m solver statics|modes|launch FILE``: answers from a car file alone."""
+
+import argparse
+import csv
+import json
+import sys
+from dataclasses import asdict
+from pathlib import Path
+
+from solver.faults import CarError, LaunchFailed
+from solver.printing import launch_table, modes_table, statics_table
+
+BAD_FILE, FAILED = 2, 3
+
+
+def main(arguments=None):
+    """Run one command; returns the exit status: 0, 2 for a bad file, 3 for a failed launch."""
+    options = _parser().parse_args(arguments)
+    try:
+        return options.command(options)
+    except CarError as error:
+        for fault in error.faults:
+            print(f"{options.file}: {fault}", file=sys.stderr)
+        return BAD_FILE
+    except LaunchFailed as error:
+        print(f"{options.file}: the launch failed {error}", file=sys.stderr)
+        return FAILED
+    except OSError as error:
+        print(f"{error.filename}: cannot be written: {error.strerror}", file=sys.stderr)
+        return BAD_FILE
+
+
+def _parser():
+    parser = argparse.ArgumentParser(prog="python -m solver", description=__doc__)
+    commands = parser.add_subparsers(required=True, metavar="command")
+    for name, command, what in (
+        ("statics", _statics, "ride height: loads, preloads, instant centre, anti-squat"),
+        ("modes", _modes, "natural frequencies and damping ratios"),
+        ("launch", _launch, "the whole launch"),
+    ):
+        part = commands.add_parser(name, help=what)
+        part.add_argument("file", metavar="FILE", help="a car file")
+        part.add_argument("--json", metavar="OUT", type=Path, help="write the result as JSON")
+        if name == "launch":
+            part.add_argument("--csv", metavar="OUT", type=Path, help="write the histories as CSV")
+        part.set_defaults(command=command)
+    return parser
+
+
+def _car(options):
+    from solver.carfile import load_car
+
+    return load_car(options.file)
+
+
+def _statics(options):
+    from solver.launching import plain
+    from solver.statics import statics
+
+    result = statics(_car(options))
+    _answer(options, {"statics": plain(asdict(result))}, lambda: statics_table(result))
+    return 0
+
+
+def _modes(options):
+    from solver.launching import plain
+    from solver.modes import modes
+
+    result = modes(_car(options))
+    data = {"modes": [plain(asdict(mode)) for mode in result]}
+    _answer(options, data, lambda: modes_table(result))
+    return 0
+
+
+def _launch(options):
+    from solver.launching import launch
+
+    result = launch(_car(options))
+    if options.csv:
+        _write_csv(options.csv, result.histories)
+    _answer(options, result.to_dict(), lambda: launch_table(result), quiet=bool(options.csv))
+    return 0
+
+
+def _answer(options, data, table, quiet=False):
+    """Write JSON where asked, else print the table."""
+    if options.json:
+        options.json.write_text(json.dumps(data, allow_nan=False), encoding="utf-8")
+    elif not quiet:
+        print(table())
+
+
+def _write_csv(path, histories):
+    with open(path, "w", encoding="utf-8", newline="") as file:
+        writer = csv.writer(file)
+        writer.writerow(histories)
+        writer.writerows(zip(*(values.tolist() for values in histories.values()), strict=True))
+
+
+if __name__ == "__main__":
+    sys.exit(main())

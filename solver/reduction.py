@@ -1,0 +1,145 @@
+"""From the kernel's accumulators to named figures: the same for one lane and for thousands."""
+
+import numpy as np
+
+from solver.kernel import layout as L
+from solver.statics import plan_angles
+
+# name: (output, greatest or least, factor)
+_PEAKS = {
+    "peak_rear_load": (L.O_REAR_LOAD, "greatest", 1.0),
+    "least_rear_load": (L.O_REAR_LOAD, "least", 1.0),
+    "peak_front_load": (L.O_FRONT_LOAD, "greatest", 1.0),
+    "least_front_load": (L.O_FRONT_LOAD, "least", 1.0),
+    "peak_rear_spring_force": (L.O_REAR_SPRING, "greatest", 1.0),
+    "least_rear_spring_force": (L.O_REAR_SPRING, "least", 1.0),
+    "peak_rear_shock_force": (L.O_REAR_SHOCK, "greatest", 1.0),
+    "least_rear_shock_force": (L.O_REAR_SHOCK, "least", 1.0),
+    "peak_front_spring_force": (L.O_FRONT_SPRING, "greatest", 1.0),
+    "least_front_spring_force": (L.O_FRONT_SPRING, "least", 1.0),
+    "upper_link_tension": (L.O_UPPER, "greatest", 1.0),
+    "upper_link_compression": (L.O_UPPER, "least", 1.0),
+    "lower_link_tension": (L.O_LOWER, "greatest", 1.0),
+    "lower_link_compression": (L.O_LOWER, "least", 1.0),
+    "rear_squat": (L.O_TRAVEL, "greatest", 1.0),
+    "rear_separation": (L.O_TRAVEL, "least", -1.0),
+    "rear_shock_compression_speed": (L.O_SHOCK_SPEED, "greatest", 1.0),
+    "rear_shock_rebound_speed": (L.O_SHOCK_SPEED, "least", -1.0),
+    "front_bump": (L.O_FRONT_TRAVEL, "greatest", 1.0),
+    "front_droop": (L.O_FRONT_TRAVEL, "least", -1.0),
+    "peak_pitch": (L.O_PITCH, "greatest", 1.0),
+    "peak_housing_angle": (L.O_HOUSING, "greatest", 1.0),
+    "least_housing_angle": (L.O_HOUSING, "least", 1.0),
+    "front_rise": (L.O_RIDE_FRONT, "greatest", 1.0),
+    "rear_rise": (L.O_RIDE_REAR, "greatest", 1.0),
+    "rear_drop": (L.O_RIDE_REAR, "least", 1.0),
+    "peak_acceleration": (L.O_ACCELERATION, "greatest", 1.0),
+    "peak_grip_needed": (L.O_GRIP, "greatest", 1.0),
+    "front_lift_height": (L.O_FRONT_CLEARANCE, "greatest", 1.0),
+    "peak_wheelie_bar_load": (L.O_WHEELIE, "greatest", 1.0),
+    "peak_rear_bump_stop_force": (L.O_REAR_STOP, "greatest", 1.0),
+    "peak_rear_droop_stop_force": (L.O_REAR_STOP, "least", -1.0),
+    "peak_front_bump_stop_force": (L.O_FRONT_STOP, "greatest", 1.0),
+    "peak_front_droop_stop_force": (L.O_FRONT_STOP, "least", -1.0),
+}
+
+_FIRST_TIMES = {
+    "front_lift_time": (L.GATE_FRONT_TYRE, 0),
+    "front_landing_time": (L.GATE_FRONT_TYRE, 1),
+    "rear_unload_time": (L.GATE_REAR_TYRE, 0),
+    "rear_bottoming_time": (L.GATE_REAR_BUMP, 1),
+    "rear_topping_time": (L.GATE_REAR_DROOP, 1),
+    "front_bottoming_time": (L.GATE_FRONT_BUMP, 1),
+    "front_topping_time": (L.GATE_FRONT_DROOP, 1),
+    "wheelie_bar_time": (L.GATE_WHEELIE, 1),
+}
+
+# What a car may lack: (figures, whether the car has it).
+_NEEDS = (
+    (("peak_wheelie_bar_load",), lambda car: car.wheelie_bar),
+    (("peak_rear_bump_stop_force", "rear_bump_travel_left"), lambda car: car.rear.bump_stop),
+    (("peak_rear_droop_stop_force", "rear_droop_travel_left"), lambda car: car.rear.droop_stop),
+    (("peak_front_bump_stop_force", "front_bump_travel_left"), lambda car: car.front.bump_stop),
+    (("peak_front_droop_stop_force", "front_droop_travel_left"), lambda car: car.front.droop_stop),
+    (("peak_grip_used",), lambda car: car.rear.tyre.grip),
+)
+
+
+def reduce(car, p, kept, log, counts):
+    """Figures of lanes that share a car's structure.
+
+    Parameters
+    ----------
+    car : Car
+        The base car: which stops, bars and grips there are.
+    p : float array (lanes, width)
+        Settled rows.
+    kept, log, counts : arrays (lanes, ACCUMULATORS), (lanes, EVENTS, 2), (lanes,)
+
+    Returns
+    -------
+    dict of str to float array (lanes,)
+        SI; NaN where there is nothing to tell (front tyres that never left).
+    """
+    figures = {}
+    for name, (output, side, factor) in _PEAKS.items():
+        at = 4 * output + (0 if side == "greatest" else 2)
+        figures[name] = factor * kept[:, at] + 0.0
+        figures[f"{name}_time"] = kept[:, at + 1]
+    _first_peak(figures, kept)
+    for i, (window, name) in enumerate(zip(L.WINDOWS, ("100ms", "250ms", "500ms"), strict=True)):
+        held = kept[:, L.A_WINDOWS + i] / window
+        figures[f"mean_rear_load_{name}"] = np.where(p[:, L.DURATION] >= window - 1e-9, held, np.nan)
+    for name, (gate, state) in _FIRST_TIMES.items():
+        figures[name] = first_time(log, counts, 2 * gate + state)
+    for side, plan in zip(("lower", "upper"), plan_angles(car), strict=True):
+        for stress in ("tension", "compression"):
+            figures[f"{side}_link_{stress}"] /= np.cos(plan)
+    _travel_left(figures, p, kept)
+    _grip(figures, p)
+    for names, has in _NEEDS:
+        if not has(car):
+            for name in names:
+                figures[name] = np.full(len(p), np.nan)
+    _forget_times(figures)
+    return figures
+
+
+def first_time(log, counts, kind):
+    """Time of the first event of a kind per lane, NaN where there was none."""
+    row = np.arange(log.shape[1])[None, :] < counts[:, None]
+    times = np.where(row & (log[:, :, 0] == kind), log[:, :, 1], np.inf).min(axis=1)
+    return np.where(np.isfinite(times), times, np.nan)
+
+
+def _first_peak(figures, kept):
+    fell = kept[:, L.A_DIP_TIME] >= 0.0
+    for name, at, time in (
+        ("first_peak_rear_load", L.A_FIRST_PEAK, L.A_FIRST_PEAK_TIME),
+        ("rear_load_dip", L.A_DIP, L.A_DIP_TIME),
+    ):
+        figures[name] = np.where(fell, kept[:, at], np.nan)
+        figures[f"{name}_time"] = np.where(fell, kept[:, time], np.nan)
+
+
+def _travel_left(figures, p, kept):
+    """Clearance less the greatest travel; below nil is how far into the stop it went."""
+    figures["rear_bump_travel_left"] = -kept[:, 4 * L.O_REAR_BUMP_PAST]
+    figures["rear_droop_travel_left"] = -kept[:, 4 * L.O_REAR_DROOP_PAST]
+    figures["front_bump_travel_left"] = p[:, L.FRONT_BUMP_CLEARANCE] - figures["front_bump"]
+    figures["front_droop_travel_left"] = p[:, L.FRONT_DROOP_CLEARANCE] - figures["front_droop"]
+
+
+def _grip(figures, p):
+    grip = np.where(p[:, L.GRIP] > 0.0, p[:, L.GRIP], np.nan)
+    figures["peak_grip_used"] = figures["peak_grip_needed"] / grip
+    figures["peak_grip_used_time"] = figures["peak_grip_needed_time"]
+
+
+def _forget_times(figures):
+    """A time of something that was not there is not there either."""
+    for name in figures:
+        if f"{name}_time" in figures:
+            figures[f"{name}_time"] = np.where(np.isnan(figures[name]), np.nan, figures[f"{name}_time"])
+    lifted = figures["front_lift_height"] > 0.0
+    figures["front_lift_height_time"] = np.where(lifted, figures["front_lift_height_time"], np.nan)

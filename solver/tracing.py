@@ -1,0 +1,131 @@
+"""Histories and dated events of one lane, from what the kernel recorded."""
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from solver.geometry import meeting, parallel, turned
+from solver.kernel import layout as L
+from solver.statics import plan_angles
+
+EVENT_WORDS = {
+    (L.GATE_FRONT_TYRE, 0): ("front_tyres_leave", "Front tyres leave the ground"),
+    (L.GATE_FRONT_TYRE, 1): ("front_tyres_land", "Front tyres land"),
+    (L.GATE_REAR_TYRE, 0): ("rear_tyres_leave", "Rear tyres leave the ground"),
+    (L.GATE_REAR_TYRE, 1): ("rear_tyres_land", "Rear tyres land"),
+    (L.GATE_FRONT_BUMP, 1): ("front_bottoms", "Front meets its bump stop"),
+    (L.GATE_FRONT_BUMP, 0): ("front_off_bump", "Front leaves its bump stop"),
+    (L.GATE_FRONT_DROOP, 1): ("front_tops", "Front meets its droop stop"),
+    (L.GATE_FRONT_DROOP, 0): ("front_off_droop", "Front leaves its droop stop"),
+    (L.GATE_REAR_BUMP, 1): ("rear_bottoms", "Rear meets its bump stop"),
+    (L.GATE_REAR_BUMP, 0): ("rear_off_bump", "Rear leaves its bump stop"),
+    (L.GATE_REAR_DROOP, 1): ("rear_tops", "Rear meets its droop stop"),
+    (L.GATE_REAR_DROOP, 0): ("rear_off_droop", "Rear leaves its droop stop"),
+    (L.GATE_WHEELIE, 1): ("wheelie_bar_touches", "Wheelie bar touches"),
+    (L.GATE_WHEELIE, 0): ("wheelie_bar_lifts", "Wheelie bar lifts off"),
+}
+
+# Histories that are one output of the kernel as it stands.
+_DIRECT = {
+    "rear_spring_force": L.O_REAR_SPRING,
+    "rear_coil_force": L.O_REAR_COIL,
+    "rear_shock_force": L.O_REAR_SHOCK,
+    "rear_spring_travel": L.O_TRAVEL,
+    "rear_spring_velocity": L.O_TRAVEL_SPEED,
+    "rear_shock_travel": L.O_SHOCK_TRAVEL,
+    "rear_shock_velocity": L.O_SHOCK_SPEED,
+    "rear_load": L.O_REAR_LOAD,
+    "front_load": L.O_FRONT_LOAD,
+    "front_travel": L.O_FRONT_TRAVEL,
+    "front_velocity": L.O_FRONT_SPEED,
+    "front_spring_force": L.O_FRONT_SPRING,
+    "front_clearance": L.O_FRONT_CLEARANCE,
+    "ride_height_front": L.O_RIDE_FRONT,
+    "ride_height_rear": L.O_RIDE_REAR,
+    "acceleration": L.O_ACCELERATION,
+    "hit": L.O_HIT,
+    "grip_needed": L.O_GRIP,
+    "rear_stop_force": L.O_REAR_STOP,
+    "front_stop_force": L.O_FRONT_STOP,
+    "wheelie_bar_load": L.O_WHEELIE,
+}
+
+
+@dataclass(frozen=True)
+class Event:
+    """A contact that began or ended: when (s), a name for programs, words for people."""
+
+    time: float
+    kind: str
+    words: str
+
+
+def event_list(log, count):
+    """`Event` tuple from a lane's log, in time order."""
+    rows = log[: min(count, L.EVENTS)]
+    found = [Event(float(t), *EVENT_WORDS[divmod(int(kind), 2)]) for kind, t in rows]
+    return tuple(sorted(found, key=lambda event: event.time))
+
+
+def histories_of(car, p, states, outputs):
+    """Named histories of one lane.
+
+    Parameters
+    ----------
+    car : Car
+    p : float array (width,)
+        The settled row.
+    states, outputs : float arrays (reports, STATES), (reports, OUTPUTS)
+
+    Returns
+    -------
+    dict of str to float array (reports,)
+    """
+    lower_plan, upper_plan = plan_angles(car)
+    named = {
+        "t": np.arange(len(states)) * car.run.output_step,
+        "pitch": states[:, L.PITCH],
+        "cg_x": states[:, L.X],
+        "cg_z": states[:, L.Z],
+        "housing_angle": states[:, L.HOUSING],
+        "upper_link_force": outputs[:, L.O_UPPER] / np.cos(upper_plan),
+        "lower_link_force": outputs[:, L.O_LOWER] / np.cos(lower_plan),
+        "speed": states[:, 7 + L.X],
+    }
+    named.update({name: outputs[:, at] for name, at in _DIRECT.items()})
+    named.update(_moving_centre(car, p, states))
+    # Columns of the record would keep all of it alive and are slow to walk.
+    return {name: np.ascontiguousarray(values) for name, values in named.items()}
+
+
+def _moving_centre(car, p, states):
+    """Instant centre and the trade's anti-squat at each instant, and the distance run."""
+    x, z, pitch = states[:, L.X] + p[L.SPRUNG_X], states[:, L.Z] + p[L.SPRUNG_Z], states[:, L.PITCH]
+    axle_x, axle_z = states[:, L.HX], states[:, L.HZ] + p[L.REAR_RADIUS]
+
+    def on_chassis(px, pz):
+        dx, dz = turned(pitch, (px - p[L.SPRUNG_X], pz - p[L.SPRUNG_Z]))
+        return x + dx, z + dz
+
+    def on_housing(px, pz):
+        dx, dz = turned(states[:, L.HOUSING], (px, pz - p[L.REAR_RADIUS]))
+        return axle_x + dx, axle_z + dz
+
+    lower = on_chassis(p[L.LCX], p[L.LCZ]), on_housing(p[L.LHX], p[L.LHZ])
+    upper = on_chassis(p[L.UCX], p[L.UCZ]), on_housing(p[L.UHX], p[L.UHZ])
+    # Seen from the patch, which moves with the axle.
+    lower, upper = (tuple((px - axle_x, pz) for px, pz in bar) for bar in (lower, upper))
+    meet_x, meet_z, w = meeting(*lower, *upper)
+    gone = parallel(*lower, *upper, w)
+    w = np.where(gone, np.nan, w)
+    front_x, front_z = on_chassis(p[L.WHEELBASE], p[L.FRONT_RADIUS] + states[:, L.SLIDE])
+    height = (
+        p[L.SPRUNG_MASS] * z + p[L.REAR_MASS] * axle_z + p[L.FRONT_MASS] * front_z
+    ) / car.mass
+    with np.errstate(divide="ignore", invalid="ignore"):
+        return {
+            "instant_centre_x": meet_x / w,
+            "instant_centre_z": meet_z / w,
+            "anti_squat": 100.0 * (meet_z / meet_x) * (front_x - axle_x) / height,
+            "distance": front_x - p[L.WHEELBASE],
+        }
