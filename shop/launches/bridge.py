@@ -12,6 +12,8 @@ from dataclasses import asdict, dataclass, field
 from typing import Any
 
 import solver
+from shop.drawing.scene import Scene, Strut
+from shop.garage.quantities import BRACKETS_OF
 from shop.garage.quantities import BY_KEY as SURVEY_KEYS
 from shop.quantities import Quantity
 from shop.refusals import Refused
@@ -216,6 +218,47 @@ def bar_rows(revision: Revision, units: str) -> list[Row]:
 
 def statics_of(revision: Revision) -> dict[str, Any]:
     return asdict(solve_statics(car_of(revision)))
+
+
+def scene_of(revision: Revision, holes: Mapping[str, int] | None = None, ghost: Revision | None = None) -> Scene:
+    """What there is to draw of a (possibly unsaved) revision; `holes` are the ones to mark."""
+    inputs = car_file.inputs_of(revision)
+    stance = car_file.attitude(inputs)
+    built = car_file.build_from(inputs, "")
+    centre = statics_of(revision)["instant_centre"]
+    chassis = [place for place in BRACKETS_OF[revision.survey.linkage] if place.endswith("chassis")]
+    brackets = {
+        bracket.place: tuple(
+            stance.move(hole) if bracket.place in chassis else hole for hole in bracket.si_holes()
+        )
+        for bracket in revision.survey.brackets.all()
+        if bracket.place in BRACKETS_OF[revision.survey.linkage]
+    }
+    bar = built["wheelie_bar"]
+    origins = {measurement.key: measurement.origin for measurement in revision.survey.measurements.all()}
+    units = revision.shop.units
+    return Scene(
+        wheelbase=built["wheelbase"],
+        front_radius=built["front"]["tyre_radius"],
+        rear_radius=built["rear"]["tyre_radius"],
+        cg=(built["cg"]["x"], built["cg"]["z"]),
+        cg_provisional=origins.get("cg_height") == "typical",
+        brackets=brackets,
+        chosen=dict(holes if holes is not None else revision.holes),
+        centre=None if centre["x"] is None else (centre["x"], centre["z"]),
+        slope=centre["slope"],
+        length=lambda metres: length_text(metres, units),
+        struts=tuple(_strut(line) for line in built["rear"]["springs"]),
+        wheelie_bar=None if bar is None else (bar["x"], bar["clearance"]),
+        title=f"{revision.car}, {revision.label}",
+        ghost=None if ghost is None else scene_of(ghost),
+    )
+
+
+def _strut(line: Mapping[str, Any]) -> Strut:
+    both = line["spring"] is not None and line["damper"] is not None
+    label = "spring and shock" if both else "spring" if line["spring"] is not None else "shock"
+    return Strut(tuple(line["chassis"]), tuple(line["housing"]), label)
 
 
 def preview(revision: Revision, units: str) -> Preview:
