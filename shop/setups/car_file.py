@@ -85,6 +85,8 @@ def inputs_of(revision: Revision) -> Inputs:
         for quantity in SURVEY_KEYS.values()
         if not quantity.optional
         and quantity.key not in survey
+        # A car without a wheelie bar need not say how stiff it is.
+        and not (quantity.section == "wheelie" and "wheelie_bar_x" not in survey)
         and revision.survey.linkage in quantity.linkages
     }
     if missing:
