@@ -1,4 +1,4 @@
-"""The Celery application: `from shop.config.celery import app`, then `@app.task`.
+"""The Celery application. Tasks are `@shared_task` in an app's `tasks.py`, and found from there.
 
 A message carries a job's id and nothing else. Whatever a broker or a dying worker does to messages, the job row
 decides: a worker claims it, and the sweep below sends strays again.
@@ -18,7 +18,7 @@ from celery.platforms import SecurityWarning
 from django.conf import settings
 from kombu.transport import TRANSPORT_ALIASES
 
-from shop.config import folder_broker, lifeline
+from shop.config import folder_broker, lifeline, warming
 
 log = logging.getLogger(__name__)
 
@@ -34,7 +34,12 @@ def broker_options(url: str) -> dict[str, Any]:
     if url.startswith("folder:"):
         return folder_broker.options(settings.QUEUE_DIR)
     # What a dead worker held goes back after ten minutes, looked for every ten seconds; the sweep is far sooner.
-    return {"visibility_timeout": 600, "unacked_restore_interval": 10, "unacked_restore_throttle": 1}
+    return {
+        "visibility_timeout": 600,
+        "unacked_restore_interval": 10,
+        "unacked_restore_throttle": 1,
+        "socket_connect_timeout": 3,
+    }
 
 
 app = Celery("launch-ledger")
@@ -64,12 +69,7 @@ app.autodiscover_tasks()
 def prepare(**_: Any) -> None:
     """Compile the solver before the pool forks, so that no launch waits for it and both processes share it."""
     lifeline.hold()
-    try:
-        import solver
-
-        solver.warm()
-    except Exception:
-        log.exception("the solver could not be made ready ahead of its first launch")
+    warming.warm()
 
 
 @signals.worker_ready.connect

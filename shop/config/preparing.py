@@ -8,6 +8,7 @@ import secrets
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from importlib.metadata import version
+from io import StringIO
 from pathlib import Path
 
 from django.conf import settings
@@ -16,6 +17,8 @@ from django.core.management import call_command
 from django.core.management.base import CommandError
 from django.db import DatabaseError, connection, transaction
 from django.db.migrations.executor import MigrationExecutor
+
+from shop.config import warming
 
 Say = Callable[[str], None]
 
@@ -41,6 +44,13 @@ def prepare(say: Say, *, empty: bool) -> None:
         except DatabaseError as fault:
             raise CommandError(f"The database cannot be used: {str(fault).strip().splitlines()[0]}") from fault
         collect(say)
+        compile_solver(say)
+
+
+def compile_solver(say: Say) -> None:
+    if not warming.is_compiled():
+        say("Compiling the solver for this machine, once (usually under a minute).")
+        warming.compile_once()
 
 
 def migrate(say: Say) -> None:
@@ -57,7 +67,7 @@ def open_shop(say: Say, *, empty: bool) -> None:
         return
     if not empty:
         say("Loading the demo shop, with everything in it invented (some seconds).")
-        call_command("demo", verbosity=0)
+        call_command("demo", verbosity=0, stdout=StringIO())
         return
     email, password = make_first_shop()
     say(
