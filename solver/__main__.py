@@ -1,4 +1,4 @@
-"""``python -m solver statics|modes|launch FILE``: answers from a car file alone."""
+"""``python -m solver statics|modes|launch|weights|loads FILE``: answers from a car file alone."""
 
 import argparse
 import csv
@@ -37,6 +37,8 @@ def _parser():
         ("statics", _statics, "ride height: loads, preloads, instant centre, anti-squat"),
         ("modes", _modes, "natural frequencies and damping ratios"),
         ("launch", _launch, "the whole launch"),
+        ("weights", _weights, "scales, CG, sprung mass, CG height, spring-seat turns"),
+        ("loads", _loads, "bars against the launch, rear tyres left and right"),
     ):
         part = commands.add_parser(name, help=what)
         part.add_argument("file", metavar="FILE", help="a car file")
@@ -79,6 +81,22 @@ def _launch(options):
     if options.csv:
         _write_csv(options.csv, result.histories)
     _answer(options, result.to_dict(), lambda: launch_table(result), quiet=bool(options.csv))
+    return 0
+
+
+def _weights(options):
+    from solver.cli_weights import weights_answer
+
+    result = weights_answer(_car(options))
+    _answer(options, result.data, lambda: result.text)
+    return 0
+
+
+def _loads(options):
+    from solver.cli_loads import loads_answer
+
+    result = loads_answer(_car(options))
+    _answer(options, result.data, lambda: result.text)
     return 0
 
 

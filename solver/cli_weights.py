@@ -8,12 +8,38 @@ from typing import Any
 
 import numpy as np
 
+from solver.car import Car
+from solver.faults import CarError, Fault
 from solver.raised_steps import FittedHeight
 from solver.turns import SeatTurns
 from solver.weights import CORNER_NAMES, Corners, PlanCG, Weighing
-from solver.weights_report import WeightsReport
+from solver.weights_report import WeightsReport, report_weights
+
+
+@dataclasses.dataclass(frozen=True)
+class Answer:
+    """One command's answer: plain data for JSON, and a table a person can read."""
+
+    data: dict[str, Any]
+    text: str
+
 
 HEADS = ("front left", "front right", "rear left", "rear right")
+
+
+def weights_answer(car: Car) -> Answer:
+    """What ``python -m solver weights`` answers for a car.
+
+    Raises
+    ------
+    CarError
+        When the weights contradict each other or a target cannot be met.
+    """
+    try:
+        report = report_weights(car)
+    except ValueError as error:
+        raise CarError([Fault("corners" if car.corners else "mass", None, str(error))]) from None
+    return Answer(data={"weights": plain(report)}, text=weights_text(report))
 
 
 def weights_text(report: WeightsReport) -> str:
@@ -29,7 +55,7 @@ def weights_text(report: WeightsReport) -> str:
     for title, sentences in (("Doubts", report.doubts), ("Take care", report.cautions)):
         if sentences:
             lines += ["", title, *(f"  - {sentence}" for sentence in sentences)]
-    return "\n".join(lines) + "\n"
+    return "\n".join(lines)
 
 
 def plain(value: Any) -> Any:

@@ -5,14 +5,18 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
+from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import ArrayLike
 
 from solver.bar_check import Bar, BarCheck, check_bar
-from solver.car import FourLink, Link
+from solver.car import Car, FourLink, Link
 from solver.checks import between
 from solver.members import CAUTIONS, Allowances
+
+if TYPE_CHECKING:
+    from solver.launching import Launch
 
 SHARING = (
     "The force of the planar model is shared alike by the bars of one height; torque reaction, a panhard"
@@ -177,3 +181,46 @@ def with_lengths(plan: BarPlan, linkage: FourLink) -> dict[str, Bar]:
         for name, bar in described.items()
         if bar is not None
     }
+
+
+def loads_of(car: Car, run: Launch) -> LoadReport:
+    """Check a car's described bars against one of its launches.
+
+    Peaks are those read at every step of the run, not at its reports.
+
+    Parameters
+    ----------
+    car : solver.Car
+        With its optional ``bars`` section.
+    run : solver.Launch
+        Of that car.
+
+    Returns
+    -------
+    LoadReport
+
+    Raises
+    ------
+    ValueError
+        When the car file does not describe its bars.
+    """
+    if car.bars is None or not isinstance(car.rear.linkage, FourLink):
+        raise ValueError("the car file describes no four-link bars: give its bars section.")
+    found = []
+    for name, bar in with_lengths(car.bars, car.rear.linkage).items():
+        peak = _peak_of_figures(run, name, bar.count)
+        check = check_bar(bar, peak.tension, peak.compression, car.bars.allowances)
+        found.append(BarLoad(name=name, count=bar.count, peak=peak, check=check))
+    return LoadReport(bars=tuple(sorted(found, key=lambda load: load.check.governs.factor)))
+
+
+def _peak_of_figures(run: Launch, name: str, count: int) -> PeakLoad:
+    most, least = run.figures[f"{name}_link_tension"], run.figures[f"{name}_link_compression"]
+    pull, push = max(most, 0.0) / count, max(-least, 0.0) / count
+    return PeakLoad(
+        tension=pull,
+        tension_time=run.figures[f"{name}_link_tension_time"] if pull > 0.0 else None,
+        compression=push,
+        compression_time=run.figures[f"{name}_link_compression_time"] if push > 0.0 else None,
+        standing=getattr(run.statics, f"{name}_link_force") / count,
+    )
