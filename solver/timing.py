@@ -23,6 +23,8 @@ FOOT = 0.3048
 # source; shallow or deep staging and tyre size move it by some inches.
 TYPICAL_ROLLOUT = 12 * 0.0254
 TRAP_LENGTH = 66 * FOOT
+# A body that pitches moves the front axle back by some millimetres before the car gets going.
+ROCKING = 0.02
 MARKS = {
     "60 ft": 60 * FOOT,
     "330 ft": 330 * FOOT,
@@ -140,8 +142,10 @@ def slip_from_run(
     times, gone, speeds = (np.asarray(series, dtype=float) for series in (t, distance, speed))
     if times.ndim != 1 or not times.shape == gone.shape == speeds.shape or times.size < 2:
         raise ValueError("times, distances and speeds must be of one length, two samples or more.")
-    if np.any(np.diff(gone) < -1e-9):
+    farthest = np.maximum.accumulate(gone)
+    if np.any(farthest - gone > ROCKING):
         raise ValueError("the car rolls backwards in this run: a slip needs one that goes forward only.")
+    gone = farthest
     start = time_at(times, gone, speeds, not_negative("the rollout", rollout, "m"))
     if start is None:
         raise ValueError(f"the run ends after {gone[-1]:.3f} m, before the rollout of {rollout:g} m.")
