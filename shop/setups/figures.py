@@ -19,6 +19,9 @@ ANGLE_NAMES = {"lower": "Lower bars, slope in side view", "upper": "Upper bars, 
                "ladder": "Ladder bar, slope in side view"}
 
 
+HEADLINE = ("ic_x", "ic_z", "anti_squat", "anti_squat_dynamic", "lower", "upper", "ladder")
+
+
 @dataclass(frozen=True)
 class Figures:
     """Groups of rows under their headings, and the inputs nobody measured."""
@@ -59,7 +62,7 @@ def bar_slopes(inputs: car_file.Inputs) -> list[Row]:
     rows = []
     for link, (rear, front) in ends.items():
         slope = math.atan2(front[1] - rear[1], front[0] - rear[0])
-        rows.append(Row(f"{link}_slope", ANGLE_NAMES[link], show(slope, "angle", "°"), "up towards the front", slope))
+        rows.append(Row(f"{link}_slope", ANGLE_NAMES[link], show(slope, "angle", "°"), "positive: rises towards the front", slope))
     return rows
 
 
@@ -102,6 +105,11 @@ class Line:
 def beside(before: Figures | None, after: Figures, units: str) -> list[tuple[str, list[Line]]]:
     """The groups of `after`, each figure with that of `before` and the signed difference."""
     return [(title, [_line(before, row, units) for row in rows]) for title, rows in after.groups]
+
+
+def headline(groups: list[tuple[str, list[Line]]]) -> list[Line]:
+    """The figures one looks at while choosing holes."""
+    return [line for _, lines in groups for line in lines if line.row.key in HEADLINE]
 
 
 def _line(before: Figures | None, row: Row, units: str) -> Line:

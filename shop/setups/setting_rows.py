@@ -57,7 +57,9 @@ def _setting(key: str, revision: Revision, changed: dict) -> SettingRow | None:
     if setting is None and key not in changed:
         return None
     label = quantity_of(key, setting["unit"] if setting else "").label
-    note = "typical, not measured" if setting and "origin" in setting else ""
+    note = ""
+    if setting and "origin" in setting:
+        note = "stated default" if quantity_of(key, setting["unit"]).section == "hit" else "typical, nobody measured it"
     return _row(key, label, as_typed(setting), changed, note)
 
 

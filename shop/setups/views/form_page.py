@@ -13,8 +13,9 @@ from shop.drawing.side_view import side_view
 from shop.launches import bridge
 from shop.people.permissions import ISSUE, WRITE
 from shop.refusals import Refused
+from shop.setups import services
 from shop.setups.differences import Change, hole_changes, setting_changes
-from shop.setups.figures import Figures, beside, figures_at_rest
+from shop.setups.figures import Figures, beside, figures_at_rest, headline
 from shop.setups.form_rows import rows_of, sections_of
 from shop.setups.forms import RevisionForm
 from shop.setups.models import Revision
@@ -29,7 +30,7 @@ def form_page(
     context["preview_url"] = f"{reverse('setups:preview', args=[draft.car_id])}?{_query(draft)}"
     context["may_write"] = request.member.may(WRITE)
     context["may_issue"] = request.member.may(ISSUE)
-    context["next_number"] = (form["newest"].value() or 0)
+    context["next_number"] = services.newest_number(draft.car) + 1
     context["surveys"] = list(draft.car.surveys.all()) if draft.pk is None else []
     if theirs is not None:
         context["theirs"] = theirs
@@ -68,7 +69,7 @@ def _meaning(request: HttpRequest, draft: Revision, form: RevisionForm) -> dict[
                 form.add_refusal(refused)
     rows = rows_of(form, draft)
     groups = beside(_at_rest(draft.parent, units), figures, units) if figures else []
-    return {"figures": figures, "groups": groups, "drawing": drawing, "fault": fault,
+    return {"figures": figures, "groups": groups, "headline": headline(groups), "drawing": drawing, "fault": fault,
             "rows": rows, "hole_rows": [rows[place] for place in form.surveyed.hole_counts], "sections": sections_of(rows)}
 
 
