@@ -71,7 +71,7 @@ def test_rollout_makes_the_clock_start_late():
 def test_a_body_that_rocks_back_first_still_has_a_slip():
     t, x, v = steady_history(step=0.01, seconds=3.0)
     rocked = x - np.where(t < 0.05, 0.008 * np.sin(np.pi * t / 0.05), 0.0)
-    assert rocked.min() < -0.006
+    assert rocked.min() < -0.005
     slip = slip_from_run(t, rocked, v)
     assert slip.times["60 ft"] == pytest.approx(slip_from_run(t, x, v).times["60 ft"], abs=1e-6)
 
