@@ -1,0 +1,34 @@
+"""Which revision is on a car just now, as far as the records tell."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from shop.garage.models import Car
+from shop.setups.models import Revision
+from shop.track.models import Pass
+
+LAST, NONE = "last", "none"
+
+
+@dataclass(frozen=True)
+class OnTheCar:
+    """The revision, and how that is known."""
+
+    revision: Revision | None
+    words: str
+
+
+def on_the_car(car: Car) -> OnTheCar:
+    """The revision of the last pass entered, unless a newer one was issued since; else the newest issued."""
+    issued = Revision.objects.filter(car=car, number__isnull=False).order_by("-number").first()
+    last = Pass.objects.filter(car=car).select_related("revision").order_by("-created_at", "-id").first()
+    if issued is None:
+        return OnTheCar(None, f"{car} has no issued revision yet")
+    if last is None:
+        return OnTheCar(issued, f"{issued.label}, the newest; no pass has been entered yet")
+    if issued.issued_at > last.created_at:
+        return OnTheCar(issued, f"{issued.label}, issued since the last pass")
+    if last.revision is None:
+        return OnTheCar(None, "none: the last pass was entered without a revision")
+    return OnTheCar(last.revision, f"{last.revision.label}, as on the last pass")
