@@ -24,6 +24,8 @@ from solver import atmosphere, comparing, power, slip_check, timing, weather
 from solver.statics import statics as solve_statics
 
 SOLVER_VERSION = solver.SOLVER_VERSION
+# Label, dimension and meaning of every figure of a launch, in the order in which pages show them.
+LAUNCH_FIGURES = solver.FIGURES
 
 
 class CannotSolve(Exception):

@@ -59,10 +59,10 @@ def _setting_change(key: str, a: Revision, b: Revision) -> Change | None:
     return Change(key, label, as_typed(before), as_typed(after), signed(step, new.dimension, after["unit"]))
 
 
-def signed(step: float, dimension: str, unit: str) -> str:
+def signed(step: float, dimension: str, unit: str, *, decimals: int | None = None) -> str:
     """A difference with its sign, in a unit; an offset such as that of °F does not enter it."""
     chosen = unit_of(dimension, unit)
-    text = show(chosen.to_si(abs(step) / chosen.factor), dimension, unit)
+    text = show(chosen.to_si(abs(step) / chosen.factor), dimension, unit, decimals=decimals)
     return f"{'+' if step > 0 else '−'}{text}"
 
 

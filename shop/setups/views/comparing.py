@@ -15,7 +15,18 @@ from shop.people.access import shop_view
 from shop.refusals import Refused
 from shop.setups.differences import hole_changes, setting_changes, survey_changes
 from shop.setups.figures import beside, figures_at_rest
+from shop.setups.launch_figures import pairs_of
 from shop.setups.models import Revision
+
+# Channels of a launch's histories that share a chart, with its heading.
+CHARTS = (
+    ("rear_load,front_load", "Tyre loads"),
+    ("rear_spring_force,front_spring_force", "Spring and shock forces"),
+    ("upper_link_force,lower_link_force", "Bar forces"),
+    ("pitch,housing_angle", "Pitch and pinion angle"),
+    ("ride_height_front,ride_height_rear", "Body rise"),
+    ("rear_shock_velocity", "Rear shock speed"),
+)
 
 
 @shop_view()
@@ -67,4 +78,8 @@ def _at_rest(a: Revision, b: Revision, units: str) -> dict[str, Any]:
 
 def _launches(a: Revision, b: Revision, units: str) -> dict[str, Any]:
     jobs = [revision.jobs.filter(kind="launch").select_related("result").order_by("-id").first() for revision in (a, b)]
-    return {"jobs": jobs, "both_done": all(job is not None and job.state == Job.DONE for job in jobs)}
+    if not all(job is not None and job.state == Job.DONE for job in jobs):
+        return {"jobs": jobs, "both_done": False}
+    first, others = pairs_of(jobs[0].result.figures, jobs[1].result.figures, units)
+    return {"jobs": jobs, "both_done": True, "first_figures": first, "other_figures": others, "charts": CHARTS,
+            "histories": f"/launches/{jobs[1].pk}/histories.json?compare={jobs[0].pk}"}
