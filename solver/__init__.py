@@ -26,9 +26,13 @@ _HOMES = {
     "modes": "modes",
     "Launch": "launching",
     "launch": "launching",
+    "Sweep": "sweeping",
+    "sweep": "sweeping",
+    "sweepable": "sweeping",
     "warm": "warming",
     "FIGURES": "figures",
     "HISTORIES": "figures",
+    "STATIC_FIGURES": "figures",
 }
 
 __all__ = ["SOLVER_VERSION", *_HOMES]

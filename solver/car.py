@@ -58,7 +58,11 @@ class Damper:
 
 @dataclass(frozen=True)
 class Tyre:
-    """A pair of tyres as a vertical spring (N/m) and damper (N s/m) that push only."""
+    """A pair of tyres as a vertical spring (N/m) and damper (N s/m) that push only.
+
+    Grip, sliding grip (at full slip), slip stiffness (N, both tyres) and relaxation
+    length (m) are the driven tyres', for drive torque.
+    """
 
     rate: float
     damping: float
@@ -164,6 +168,64 @@ class Hit:
 
 
 @dataclass(frozen=True)
+class WheelTorque:
+    """Drive mode 2 from a table of (time, N m), both rear wheels together."""
+
+    table: Table
+
+
+@dataclass(frozen=True)
+class Engine:
+    """Full-throttle torque over speed (rad/s, N m), and its speed when the car is let go."""
+
+    curve: Table
+    inertia: float
+    launch_speed: float
+
+
+@dataclass(frozen=True)
+class Clutch:
+    """A slipping clutch: capacity over time (s, N m); locked, it creeps up to `creep` rad/s."""
+
+    capacity: Table
+    creep: float = 25.0
+
+
+@dataclass(frozen=True)
+class Converter:
+    """A torque converter by its stall point, with its shape over speed ratio.
+
+    Takes ``stall_torque (engine speed / stall_speed)^2 capacity(ratio)`` and passes
+    that times ``torque_ratio(ratio)``; both tables over turbine speed / engine speed.
+    """
+
+    stall_speed: float
+    stall_torque: float
+    torque_ratio: Table = ((0.0, 2.0), (0.88, 1.0), (1.0, 1.0))
+    capacity: Table = ((0.0, 1.0), (0.88, 0.85), (1.0, 0.0))
+    throttle: Table = ((0.0, 1.0), (1.0, 1.0))
+
+
+@dataclass(frozen=True)
+class Gears:
+    """Gearbox ratios from first up, the axle's ratio, and when it shifts (input rad/s)."""
+
+    ratios: tuple[float, ...]
+    final_drive: float
+    shift_speed: float | None = None
+    efficiency: float = 1.0
+
+
+@dataclass(frozen=True)
+class Powertrain:
+    """Drive mode 2 from an engine through a clutch or a converter and gears."""
+
+    engine: Engine
+    coupling: Clutch | Converter
+    gears: Gears
+
+
+@dataclass(frozen=True)
 class Run:
     """How long to solve, how often to report (s), and the rollout (m)."""
 
@@ -187,8 +249,13 @@ class Car:
     pitch_inertia: float
     front: Front
     rear: Rear
-    hit: Hit
+    hit: Hit | WheelTorque | Powertrain
     run: Run
     wheelie_bar: WheelieBar | None = None
     corners: "CornerPlan | None" = None
     bars: "BarPlan | None" = None
+
+
+def has_engine(car):
+    """Whether the hit comes from an engine."""
+    return isinstance(car.hit, Powertrain)

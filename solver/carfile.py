@@ -5,7 +5,8 @@ import json
 from pathlib import Path
 
 from solver.bar_section import read_bars
-from solver.car import Car, FourLink, Front, Hit, Rear, Run, WheelieBar
+from solver.car import Car, FourLink, Front, Rear, Run, WheelieBar
+from solver.carfile_drive import drive_to_dict, read_drive
 from solver.carfile_parts import (
     read_damper,
     read_linkage,
@@ -125,7 +126,7 @@ def car_to_dict(car):
         "front": _plain(car.front),
         "rear": rear,
         "wheelie_bar": _plain(car.wheelie_bar),
-        "hit": {"kind": "force", **_plain(car.hit)},
+        "hit": drive_to_dict(car.hit, _plain),
         "run": _plain(car.run),
         **{name: _plain(section) for name, section in sections.items() if section is not None},
     }
@@ -166,7 +167,7 @@ def _read_car(top):
         pitch_inertia=_read_chassis(top.section("chassis")),
         front=_read_front(top.section("front")),
         rear=_read_rear(top.section("rear")),
-        hit=_read_hit(top.section("hit")),
+        hit=read_drive(top.section("hit")),
         run=_read_run(top.section("run")),
         wheelie_bar=_read_wheelie_bar(top.optional_section("wheelie_bar")),
         corners=read_corners(top.optional_section("corners")),
@@ -238,16 +239,6 @@ def _read_wheelie_bar(section):
     )
     section.refuse_the_rest()
     return bar
-
-
-def _read_hit(section):
-    if section is None:
-        return None
-    section.choice("kind", ("force",))
-    columns = ("time in s", "force in N")
-    table = section.table("table", columns, ((0.0, 100.0), (-1e6, 1e6)))
-    section.refuse_the_rest()
-    return Hit(table)
 
 
 def _read_run(section):

@@ -89,7 +89,7 @@ def read_tyre(section, driven):
             "grip": section.optional_number("grip", 0.05, 10.0, ""),
             "sliding_grip": section.optional_number("sliding_grip", 0.05, 10.0, ""),
             "slip_stiffness": section.optional_number("slip_stiffness", 1e3, 1e7, "N"),
-            "relaxation_length": section.optional_number("relaxation_length", 0.0, 3.0, "m"),
+            "relaxation_length": section.optional_number("relaxation_length", 0.05, 3.0, "m"),
         }
     section.refuse_the_rest()
     return Tyre(rate, damping, **extra)

@@ -2,7 +2,7 @@
 
 Pages, sheets, the API and the command line are generated from these two tables.
 Dimensions are names, not units: force, length, speed, acceleration, time, angle,
-ratio, percent, coefficient. Values are SI; angles in radians.
+torque, spin (rad/s), ratio, percent, coefficient. Values are SI; angles in radians.
 """
 
 from typing import NamedTuple
@@ -54,6 +54,10 @@ HISTORIES = {
     "rear_stop_force": Quantity("Rear stops", "force", "Bump positive, droop negative"),
     "front_stop_force": Quantity("Front stops", "force", "Bump positive, droop negative"),
     "wheelie_bar_load": Quantity("Wheelie bar", "force", "Its wheels on the ground"),
+    "wheel_torque": Quantity("Wheel torque", "torque", "Both rear wheels; drive torque only"),
+    "wheel_speed": Quantity("Rear wheel spin", "spin", "Drive torque only"),
+    "slip": Quantity("Rear tyre slip", "ratio", "Share of road speed, as the carcass feels it"),
+    "engine_speed": Quantity("Engine speed", "spin", "With an engine only"),
 }
 
 
@@ -118,6 +122,26 @@ FIGURES = {
     "rear_droop_travel_left": Quantity("Rear droop travel left", "length", "To the stop at full extension"),
     "front_bump_travel_left": Quantity("Front bump travel left", "length", "To the stop"),
     "front_droop_travel_left": Quantity("Front droop travel left", "length", "To the stop"),
+    **_pair("peak_slip", "Peak rear tyre slip", "ratio", "As the carcass feels it; drive torque only"),
+    **_pair("peak_wheel_torque", "Peak wheel torque", "torque", "Both rear wheels; drive torque only"),
+    **_pair("least_engine_speed", "Lowest engine speed", "spin", "With an engine only"),
+    "rollout_time": Quantity("Rollout", "time", "Until the front tyres clear the starting beam"),
+    "sixty_foot_time": Quantity("60 ft time", "time", "From the beam, 60 ft past the rollout"),
     "end_speed": Quantity("Speed at the end", "speed", "Of the run solved"),
     "end_distance": Quantity("Distance at the end", "length", "Of the run solved"),
+}
+
+STATIC_FIGURES = {
+    "rear_load": Quantity("Rear tyres at rest", "force", "Both sides"),
+    "front_load": Quantity("Front tyres at rest", "force", "Both sides"),
+    "rear_spring_force": Quantity("Rear springs at rest", "force", "Solved preload, both sides"),
+    "upper_link_force": Quantity("Upper bars at rest", "force", "Tension positive, both bars"),
+    "lower_link_force": Quantity("Lower bars at rest", "force", "Tension positive, both bars"),
+    "instant_centre_x": Quantity("Instant centre ahead", "length", "Of the rear axle"),
+    "instant_centre_z": Quantity("Instant centre height", "length", "Above the ground"),
+    "instant_centre_slope": Quantity("Force line slope", "ratio", "From the rear patch"),
+    "anti_squat": Quantity("Anti-squat", "percent", "Trade definition, whole-car CG"),
+    "anti_squat_dynamic": Quantity("Anti-squat, sprung mass", "percent", "At 100 the spring stays put"),
+    "upper_bar_length": Quantity("Upper bar length", "length", "Centre to centre, true"),
+    "lower_bar_length": Quantity("Lower bar length", "length", "Centre to centre, true"),
 }

@@ -17,7 +17,6 @@ from solver.tracing import event_list, histories_of
 from solver.version import SOLVER_VERSION
 
 LONGEST_STEP = 1.25e-3
-HALVINGS = 4
 
 REASONS = {
     L.NOT_FINITE: "the forces ran out of all bounds; the stiffest spring, shock or stop is too "
@@ -27,8 +26,6 @@ REASONS = {
     L.DRIFTED: "the bars' lengths could not be held",
     L.INEXACT: "the accuracy could not be held, even in steps sixteen times shorter",
 }
-# What a shorter step may cure; the rest are what the car did.
-CURABLE = (L.NOT_FINITE, L.DRIFTED, L.INEXACT)
 
 
 @dataclass(frozen=True)
@@ -101,17 +98,13 @@ def launch(car, longest_step=LONGEST_STEP):
     kept, log = np.zeros(L.ACCUMULATORS), np.zeros((L.EVENTS, 2))
     reports = math.floor(car.run.duration / car.run.output_step + 1e-9) + 1
     states, outputs = np.zeros((reports, L.STATES)), np.zeros((reports, L.OUTPUTS))
-    for halving in range(HALVINGS + 1):
-        step = longest_step / 2**halving
-        code, time, _, count = run_one(row.p, row.n, step, kept, log, states, outputs)
-        if code not in CURABLE:
-            break
+    code, time, count, step = run_one(
+        row.p, row.n, longest_step, kept, log, True, states, outputs
+    )
     if code != L.SOLVED:
         raise LaunchFailed(time, REASONS[code])
     figures = reduce(car, row.p[None], kept[None], log[None], np.array([count]))
     histories = histories_of(car, row.p, states, outputs)
-    figures["end_speed"] = histories["speed"][-1:]
-    figures["end_distance"] = histories["distance"][-1:]
     return Launch(
         statics=at_rest,
         modes=modes_of_row(row),

@@ -1,12 +1,13 @@
 """From a `Car` to the kernel's rows of numbers, and from file paths to columns."""
 
-from itertools import pairwise
 
 import numpy as np
 
 from solver.car import FourLink
 from solver.dyno import damper_table
+from solver.hinges import hinges, value_of
 from solver.kernel import layout as L
+from solver.packing_drive import put_drive
 
 
 class Row:
@@ -26,7 +27,7 @@ def pack(car):
     Returns
     -------
     Row
-        `columns` maps car-file paths to the columns of `p` they set.
+        `columns` maps car-file paths to (column of `p`, factor on the file's value).
     """
     n = np.zeros(L.INTEGERS, dtype=np.int64)
     scalars, columns = np.zeros(L.SCALARS), {}
@@ -36,39 +37,17 @@ def pack(car):
     _put_wheelie_bar(scalars, n, columns, car.wheelie_bar)
     _put_stops(scalars, columns, car)
     tail = []
-    _put_curves(n, tail, columns, car, lines)
-    n[L.HIT_AT], n[L.HIT_COUNT] = L.SCALARS + len(tail), len(car.hit.table)
-    tail.extend(value for pair in car.hit.table for value in pair)
+    adder = Curves(n, tail, columns)
+    _put_curves(adder, car, lines)
+    table = put_drive(scalars, n, adder, car)
+    n[L.HIT_AT], n[L.HIT_COUNT] = L.SCALARS + len(tail), len(table)
+    tail.extend(value for pair in table for value in pair)
     return Row(np.concatenate([scalars, tail]), n, columns)
-
-
-def hinges(table, ratio=1.0):
-    """Value and slope at zero's left end, then (knot, change of slope) for each point.
-
-    Parameters
-    ----------
-    table : sequence of (v, f)
-        At least two points, v rising.
-    ratio : float
-        Motion ratio: the wheel moves `v / ratio` and feels `ratio * f`.
-
-    Returns
-    -------
-    list of float
-        f0, s0, v1, d1, v2, d2, ...
-    """
-    points = [(v / ratio, f * ratio) for v, f in table]
-    slopes = [(b[1] - a[1]) / (b[0] - a[0]) for a, b in pairwise(points)]
-    row = [points[0][1] - slopes[0] * points[0][0], slopes[0]]
-    for (v, _), before, after in zip(points[1:-1], slopes, slopes[1:], strict=True):
-        if after != before:
-            row += [v, after - before]
-    return row
 
 
 def _put(scalars, columns, where, path, value):
     scalars[where] = value
-    columns[path] = (where,)
+    columns[path] = (where, 1.0)
 
 
 def _put_body(scalars, columns, car):
@@ -92,9 +71,8 @@ def _put_body(scalars, columns, car):
     }
     for path, (where, value) in plain.items():
         _put(scalars, columns, where, path, value)
-    if rear.tyre.grip is not None:
-        _put(scalars, columns, L.GRIP, "rear.tyre.grip", rear.tyre.grip)
     scalars[L.DURATION], scalars[L.OUTPUT_STEP] = car.run.duration, car.run.output_step
+    scalars[L.ROLLOUT] = car.run.rollout
 
 
 def _put_linkage(scalars, n, columns, linkage):
@@ -110,7 +88,7 @@ def _put_linkage(scalars, n, columns, linkage):
 
 def _put_point(scalars, columns, at, path, point):
     scalars[at], scalars[at + 1] = point
-    columns[f"{path}.x"], columns[f"{path}.z"] = (at,), (at + 1,)
+    columns[f"{path}.x"], columns[f"{path}.z"] = (at, 1.0), (at + 1, 1.0)
 
 
 def _put_lines(scalars, n, columns, rear):
@@ -155,7 +133,7 @@ def _put_stops(scalars, columns, car):
             _put(scalars, columns, damping, f"{path}.damping", stop.damping)
 
 
-def _put_curves(n, tail, columns, car, lines):
+def _put_curves(adder, car, lines):
     front, rear = car.front, car.rear
     stops = (
         (L.FRONT_BUMP, "front.bump_stop", front.bump_stop),
@@ -163,7 +141,6 @@ def _put_curves(n, tail, columns, car, lines):
         (L.REAR_BUMP, "rear.bump_stop", rear.bump_stop),
         (L.REAR_DROOP, "rear.droop_stop", rear.droop_stop),
     )
-    adder = _Curves(n, tail, columns)
     adder.spring(L.FRONT_SPRING, "front.spring", front.spring)
     adder.damper(L.FRONT_DAMPER, "front.damper", front.damper)
     for which, path, stop in stops:
@@ -174,38 +151,38 @@ def _put_curves(n, tail, columns, car, lines):
         adder.damper(L.LINE_DAMPER + i, f"{path}.damper", getattr(entry, "damper", None))
 
 
-class _Curves:
+class Curves:
     """Lays curves down one after another and notes where each stands."""
 
     def __init__(self, n, tail, columns):
         self.n, self.tail, self.columns = n, tail, columns
 
-    def add(self, which, row, path=None):
+    def add(self, which, row, path=None, factor=1.0):
         at = L.SCALARS + len(self.tail)
         self.n[L.CURVES + 2 * which] = at
         self.n[L.CURVES + 2 * which + 1] = (len(row) - 2) // 2
         self.tail.extend(row)
         if path:
-            self.columns[path] = (at + 1,)
+            self.columns[path] = (at + 1, factor)
 
     def spring(self, which, path, spring):
         if spring is None:
             self.add(which, [0.0, 0.0])
         elif spring.rate is not None:
-            ratio = spring.motion_ratio
-            self.add(which, [0.0, spring.rate * ratio * ratio], f"{path}.rate")
+            at_wheel = spring.motion_ratio**2
+            self.add(which, [0.0, spring.rate * at_wheel], f"{path}.rate", at_wheel)
         else:
             row = hinges(spring.table, spring.motion_ratio)
             # Measured from ride height: the solved preload replaces the table's own.
-            row[0] -= _value(row, 0.0)
+            row[0] -= value_of(row, 0.0)
             self.add(which, row)
 
     def damper(self, which, path, damper):
         if damper is None:
             self.add(which, [0.0, 0.0])
         elif damper.rate is not None:
-            ratio = damper.motion_ratio
-            self.add(which, [0.0, damper.rate * ratio * ratio], f"{path}.rate")
+            at_wheel = damper.motion_ratio**2
+            self.add(which, [0.0, damper.rate * at_wheel], f"{path}.rate", at_wheel)
         else:
             self.add(which, hinges(damper_table(damper), damper.motion_ratio))
 
@@ -217,7 +194,3 @@ class _Curves:
         else:
             self.add(which, hinges(stop.table))
 
-
-def _value(row, v):
-    pairs = zip(row[2::2], row[3::2], strict=True)
-    return row[0] + row[1] * v + sum(change * max(0.0, v - knot) for knot, change in pairs)

@@ -9,6 +9,8 @@ UNITS = {
     "acceleration": "m/s^2",
     "time": "s",
     "angle": "rad",
+    "torque": "N m",
+    "spin": "rad/s",
     "percent": "%",
     "coefficient": "",
     "ratio": "",

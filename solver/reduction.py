@@ -2,6 +2,8 @@
 
 import numpy as np
 
+from solver.car import Hit, has_engine
+from solver.geometry import meeting, parallel
 from solver.kernel import layout as L
 from solver.statics import plan_angles
 
@@ -41,6 +43,9 @@ _PEAKS = {
     "peak_rear_droop_stop_force": (L.O_REAR_STOP, "least", -1.0),
     "peak_front_bump_stop_force": (L.O_FRONT_STOP, "greatest", 1.0),
     "peak_front_droop_stop_force": (L.O_FRONT_STOP, "least", -1.0),
+    "peak_slip": (L.O_SLIP, "greatest", 1.0),
+    "peak_wheel_torque": (L.O_WHEEL_TORQUE, "greatest", 1.0),
+    "least_engine_speed": (L.O_ENGINE, "least", 1.0),
 }
 
 _FIRST_TIMES = {
@@ -52,6 +57,8 @@ _FIRST_TIMES = {
     "front_bottoming_time": (L.GATE_FRONT_BUMP, 1),
     "front_topping_time": (L.GATE_FRONT_DROOP, 1),
     "wheelie_bar_time": (L.GATE_WHEELIE, 1),
+    "rollout_time": (L.GATE_ROLLOUT, 1),
+    "sixty_foot_time": (L.GATE_SIXTY_FOOT, 1),
 }
 
 # What a car may lack: (figures, whether the car has it).
@@ -62,6 +69,8 @@ _NEEDS = (
     (("peak_front_bump_stop_force", "front_bump_travel_left"), lambda car: car.front.bump_stop),
     (("peak_front_droop_stop_force", "front_droop_travel_left"), lambda car: car.front.droop_stop),
     (("peak_grip_used",), lambda car: car.rear.tyre.grip),
+    (("peak_slip", "peak_wheel_torque"), lambda car: not isinstance(car.hit, Hit)),
+    (("least_engine_speed",), has_engine),
 )
 
 
@@ -92,6 +101,9 @@ def reduce(car, p, kept, log, counts):
         figures[f"mean_rear_load_{name}"] = np.where(p[:, L.DURATION] >= window - 1e-9, held, np.nan)
     for name, (gate, state) in _FIRST_TIMES.items():
         figures[name] = first_time(log, counts, 2 * gate + state)
+    figures["sixty_foot_time"] = figures["sixty_foot_time"] - figures["rollout_time"]
+    figures["end_speed"] = kept[:, L.A_LAST + L.O_SPEED] + 0.0
+    figures["end_distance"] = kept[:, L.A_LAST + L.O_DISTANCE] + 0.0
     for side, plan in zip(("lower", "upper"), plan_angles(car), strict=True):
         for stress in ("tension", "compression"):
             figures[f"{side}_link_{stress}"] /= np.cos(plan)
@@ -103,6 +115,35 @@ def reduce(car, p, kept, log, counts):
                 figures[name] = np.full(len(p), np.nan)
     _forget_times(figures)
     return figures
+
+
+def reduce_statics(car, p):
+    """Ride height of settled lanes by the names of `STATIC_FIGURES`, arrays (lanes,)."""
+    lower = (p[:, L.LCX], p[:, L.LCZ]), (p[:, L.LHX], p[:, L.LHZ])
+    upper = (p[:, L.UCX], p[:, L.UCZ]), (p[:, L.UHX], p[:, L.UHZ])
+    x, z, w = meeting(*lower, *upper)
+    lower_plan, upper_plan = plan_angles(car)
+    with np.errstate(divide="ignore", invalid="ignore"):
+        centre_x = x / np.where(parallel(*lower, *upper, w), np.nan, w)
+        centre_z, slope = centre_x * z / x, z / x
+        neutral = p[:, L.CG_Z] / p[:, L.WHEELBASE]
+        rear = p[:, L.REAR_MASS]
+        axle = np.nan_to_num(rear * p[:, L.REAR_RADIUS] / centre_x)
+        dynamic = ((p[:, L.MASS] - rear) * slope + axle) / (p[:, L.MASS] * neutral)
+    return {
+        "rear_load": p[:, L.REAR_STATIC] + 0.0,
+        "front_load": p[:, L.FRONT_STATIC] + 0.0,
+        "rear_spring_force": p[:, L.REAR_SPRING_STATIC] + 0.0,
+        "upper_link_force": p[:, L.UPPER_STATIC] / np.cos(upper_plan),
+        "lower_link_force": p[:, L.LOWER_STATIC] / np.cos(lower_plan),
+        "instant_centre_x": centre_x,
+        "instant_centre_z": centre_z,
+        "instant_centre_slope": slope,
+        "anti_squat": 100.0 * slope / neutral,
+        "anti_squat_dynamic": 100.0 * dynamic,
+        "upper_bar_length": p[:, L.UPPER_LENGTH] / np.cos(upper_plan),
+        "lower_bar_length": p[:, L.LOWER_LENGTH] / np.cos(lower_plan),
+    }
 
 
 def first_time(log, counts, kind):

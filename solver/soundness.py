@@ -2,7 +2,7 @@
 
 import math
 
-from solver.car import FourLink
+from solver.car import FourLink, Hit
 from solver.faults import Fault
 
 GRAVITY = 9.80665
@@ -22,7 +22,7 @@ def faults_of(car):
     list of Fault
         Empty for a car that can be solved.
     """
-    faults = [*_weights(car), *_mounts(car)]
+    faults = [*_weights(car), *_mounts(car), *_drive(car)]
     linkage = car.rear.linkage
     faults += _four_link(linkage) if isinstance(linkage, FourLink) else _ladder_bar(linkage, car)
     if isinstance(car.rear.linkage, FourLink) and not faults:
@@ -70,6 +70,23 @@ def _mounts(car):
         if stop and stop.chassis and math.dist(stop.chassis, stop.housing) < 0.02:
             where = f"rear.{name}.chassis"
             yield Fault(where, stop.chassis, "must be at least 20 mm from the housing mount")
+
+
+def _drive(car):
+    if isinstance(car.hit, Hit):
+        return
+    tyre = car.rear.tyre
+    needed = {
+        "rear.wheel_inertia": car.rear.wheel_inertia,
+        "rear.tyre.grip": tyre.grip,
+        "rear.tyre.slip_stiffness": tyre.slip_stiffness,
+    }
+    for where, value in needed.items():
+        if value is None:
+            yield Fault(where, None, "is needed when the hit is a wheel torque or an engine")
+    if tyre.grip and tyre.sliding_grip and tyre.sliding_grip > tyre.grip:
+        most = f"must not be more than the peak grip ({tyre.grip:g})"
+        yield Fault("rear.tyre.sliding_grip", tyre.sliding_grip, most)
 
 
 def _four_link(linkage):

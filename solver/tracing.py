@@ -4,6 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from solver.car import Hit, has_engine
 from solver.geometry import meeting, parallel, turned
 from solver.kernel import layout as L
 from solver.statics import plan_angles
@@ -23,6 +24,10 @@ EVENT_WORDS = {
     (L.GATE_REAR_DROOP, 0): ("rear_off_droop", "Rear leaves its droop stop"),
     (L.GATE_WHEELIE, 1): ("wheelie_bar_touches", "Wheelie bar touches"),
     (L.GATE_WHEELIE, 0): ("wheelie_bar_lifts", "Wheelie bar lifts off"),
+    (L.GATE_ROLLOUT, 1): ("rollout", "Front tyres clear the starting beam"),
+    (L.GATE_ROLLOUT, 0): ("rolled_back", "Front tyres roll back into the starting beam"),
+    (L.GATE_SIXTY_FOOT, 1): ("sixty_foot", "60 ft past the beam"),
+    (L.GATE_SIXTY_FOOT, 0): ("sixty_foot_back", "Back over 60 ft"),
 }
 
 # Histories that are one output of the kernel as it stands.
@@ -48,6 +53,16 @@ _DIRECT = {
     "rear_stop_force": L.O_REAR_STOP,
     "front_stop_force": L.O_FRONT_STOP,
     "wheelie_bar_load": L.O_WHEELIE,
+    "speed": L.O_SPEED,
+    "distance": L.O_DISTANCE,
+}
+
+# Only with drive torque.
+_DRIVEN = {
+    "wheel_torque": L.O_WHEEL_TORQUE,
+    "wheel_speed": L.O_SPIN,
+    "slip": L.O_SLIP,
+    "engine_speed": L.O_ENGINE,
 }
 
 
@@ -90,9 +105,11 @@ def histories_of(car, p, states, outputs):
         "housing_angle": states[:, L.HOUSING],
         "upper_link_force": outputs[:, L.O_UPPER] / np.cos(upper_plan),
         "lower_link_force": outputs[:, L.O_LOWER] / np.cos(lower_plan),
-        "speed": states[:, 7 + L.X],
     }
     named.update({name: outputs[:, at] for name, at in _DIRECT.items()})
+    for name, at in _DRIVEN.items():
+        there = has_engine(car) if name == "engine_speed" else not isinstance(car.hit, Hit)
+        named[name] = outputs[:, at] if there else np.full(len(outputs), np.nan)
     named.update(_moving_centre(car, p, states))
     # Columns of the record would keep all of it alive and are slow to walk.
     return {name: np.ascontiguousarray(values) for name, values in named.items()}
@@ -127,5 +144,4 @@ def _moving_centre(car, p, states):
             "instant_centre_x": meet_x / w,
             "instant_centre_z": meet_z / w,
             "anti_squat": 100.0 * (meet_z / meet_x) * (front_x - axle_x) / height,
-            "distance": front_x - p[L.WHEELBASE],
         }

@@ -53,5 +53,8 @@ def warm():
     """
     from solver.carfile import car_from_dict
     from solver.launching import launch
+    from solver.sweeping import sweep
 
-    launch(car_from_dict(EXAMPLE))
+    car = car_from_dict(EXAMPLE)
+    launch(car)
+    sweep(car, {"hit.scale": [1.0]})

@@ -2,9 +2,13 @@
 
 import numpy as np
 
+from solver.kernel import layout as L
 from solver.kernel.jit import jit, parallel, prange
 from solver.kernel.march import march
 from solver.kernel.rest import settle
+from solver.kernel.soundness import unsound
+
+HALVINGS = 4
 
 
 @jit
@@ -14,18 +18,26 @@ def settle_one(p, n):
 
 
 @jit
-def run_one(p, n, longest, kept, log, y_record, out_record):
-    """Solve one settled lane with its histories."""
-    return march(p, n, longest, kept, log, True, y_record, out_record)
+def run_one(p, n, longest, kept, log, record, states, outputs):
+    """March one settled lane; where the accuracy is not held, again in shorter steps."""
+    code, time, _, count = march(p, n, longest, kept, log, record, states, outputs)
+    for _ in range(HALVINGS):
+        if code not in (L.NOT_FINITE, L.DRIFTED, L.INEXACT):
+            break
+        longest *= 0.5
+        code, time, _, count = march(p, n, longest, kept, log, record, states, outputs)
+    return code, time, count, longest
 
 
 @parallel
 def run_many(p, n, longest, kept, log, codes, times, counts):
-    """Settle and solve every row of `p` (lanes, width), figures only."""
+    """Settle and march every row of `p` (lanes, width) that can be, figures only."""
     for lane in prange(p.shape[0]):
         nothing = np.zeros((1, 1))
         settle(p[lane], n)
-        code, time, _, count = march(
-            p[lane], n, longest, kept[lane], log[lane], False, nothing, nothing
-        )
+        code, time, count = unsound(p[lane], n), 0.0, 0
+        if code == L.SOLVED:
+            code, time, count, _ = run_one(
+                p[lane], n, longest, kept[lane], log[lane], False, nothing, nothing
+            )
         codes[lane], times[lane], counts[lane] = code, time, count

@@ -51,10 +51,20 @@ MAX_LINES = 6  # four rear springs, and a line each for stops on mounts of their
     SLIDING_GRIP,
     SLIP_STIFFNESS,
     RELAXATION,
-) = range(42)
+    ROLLOUT,
+    ENGINE_INERTIA,
+    ENGINE_SPEED,
+    CREEP,
+    CONVERTER_SIZE,
+    FINAL_DRIVE,
+    SHIFT_SPEED,
+    EFFICIENCY,
+) = range(50)
+MAX_GEARS = 8
+GEARS = 50
 
 # Rear lines: four inputs each, then two derived each.
-LINES = 42
+LINES = GEARS + MAX_GEARS
 LINE_CX, LINE_CZ, LINE_HX, LINE_HZ, LINE_LENGTH, LINE_PRELOAD = range(6)
 LINE_WIDTH = 6
 
@@ -89,10 +99,10 @@ SCALARS = DERIVED + 22
 
 # Integers -------------------------------------------------------------------
 KIND, N_LINES, BUMP_LINE, DROOP_LINE, WHEELIE_ON, DRIVE, HIT_AT, HIT_COUNT = range(8)
-TRAVEL_LINE, SHOCK_LINE = 8, 9
+TRAVEL_LINE, SHOCK_LINE, N_STATES, N_GEARS = 8, 9, 10, 11
 FOUR_LINK, LADDER_BAR = 0, 1
 NO_WHEELIE, ON_CHASSIS, ON_HOUSING = 0, 1, 2
-FORCE_DRIVE, TORQUE_DRIVE = 0, 1
+FORCE_DRIVE, TORQUE_DRIVE, CLUTCH_DRIVE, CONVERTER_DRIVE = 0, 1, 2, 3
 
 # Curves: a pair (place, knots) each in `n`. At the place in `p`: value and slope
 # at zero's left end, then (knot, change of slope) for each knot.
@@ -100,14 +110,19 @@ CURVES = 12
 FRONT_SPRING, FRONT_DAMPER, FRONT_BUMP, FRONT_DROOP, REAR_BUMP, REAR_DROOP = range(6)
 LINE_SPRING = 6
 LINE_DAMPER = LINE_SPRING + MAX_LINES
-N_CURVES = LINE_DAMPER + MAX_LINES
+ENGINE, CONVERTER_CAPACITY, TORQUE_RATIO = range(LINE_DAMPER + MAX_LINES, LINE_DAMPER + MAX_LINES + 3)
+N_CURVES = TORQUE_RATIO + 1
 INTEGERS = CURVES + 2 * N_CURVES
 
 # State ----------------------------------------------------------------------
 # Displacements from ride height, then the velocities in the same order.
 X, Z, PITCH, HX, HZ, HOUSING, SLIDE = range(7)
 COORDINATES = 7
-STATES = 14
+# Drive torque only: rear wheels' spin (rad/s), their slip as the carcass lags it,
+# engine speed (rad/s), and the gear in, counted from nil.
+SPIN, SLIP, ENGINE_RATE, GEAR = 14, 15, 16, 17
+PLAIN_STATES = 14
+STATES = 18
 
 # Outputs of the right-hand side ----------------------------------------------
 (
@@ -139,17 +154,23 @@ STATES = 14
     # How far past its clearance each rear stop's line is; negative is travel left.
     O_REAR_BUMP_PAST,
     O_REAR_DROOP_PAST,
+    O_SPEED,
+    O_DISTANCE,
+    O_WHEEL_TORQUE,
+    O_SPIN,
+    O_SLIP,
+    O_ENGINE,
     O_DRIFT,
     O_LEVERAGE,
     # What is zero at an event: the contacts' forces before they are cut at nil.
     O_GATE,
-) = range(30)
-N_GATES = 7
+) = range(36)
+N_GATES = 9
 (GATE_FRONT_TYRE, GATE_REAR_TYRE, GATE_FRONT_BUMP, GATE_FRONT_DROOP) = range(4)
-(GATE_REAR_BUMP, GATE_REAR_DROOP, GATE_WHEELIE) = 4, 5, 6
+(GATE_REAR_BUMP, GATE_REAR_DROOP, GATE_WHEELIE, GATE_ROLLOUT, GATE_SIXTY_FOOT) = range(4, 9)
 OUTPUTS = O_GATE + N_GATES
 # Channels whose greatest and least values are kept at every step.
-WATCHED = O_REAR_DROOP_PAST + 1
+WATCHED = O_ENGINE + 1
 
 # Accumulators: (greatest, its time, least, its time) for each watched channel, then:
 A_WINDOWS = 4 * WATCHED
@@ -161,10 +182,13 @@ A_DIP_TIME = A_WINDOWS + 6
 A_DRIFT = A_WINDOWS + 7
 A_ERROR = A_WINDOWS + 8
 A_STEPS = A_WINDOWS + 9
-A_LOCKED = A_WINDOWS + 10
-ACCUMULATORS = A_WINDOWS + 11
+# Every watched channel as it stood at the end.
+A_LAST = A_WINDOWS + 10
+ACCUMULATORS = A_LAST + WATCHED
 
 EVENTS = 48
 
 # How a lane ended -------------------------------------------------------------
-SOLVED, NOT_FINITE, LOCKED, TURNED_OVER, DRIFTED, INEXACT, LEFT_RANGE = range(7)
+SOLVED, NOT_FINITE, LOCKED, TURNED_OVER, DRIFTED, INEXACT = range(6)
+# Refused before it began: the links, the weights, or no rest at ride height.
+BAD_LINKS, BAD_WEIGHTS, NO_REST, LINKS_LOCK, NOT_RUN = range(6, 11)

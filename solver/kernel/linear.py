@@ -56,6 +56,8 @@ def linearise(p, n, matrix):
     Five-point differences: exact to 1e-9 of each entry.
     """
     straighten(p, n)
+    n = n.copy()
+    n[L.DRIVE] = L.FORCE_DRIVE
     y, dy, out = np.zeros(L.STATES), np.zeros(L.STATES), np.zeros(L.OUTPUTS)
     matrix[:] = 0.0
     for i in range(5):

@@ -11,6 +11,7 @@ import math
 import numpy as np
 
 from solver.kernel import layout as L
+from solver.kernel.drivetrain import shift, start_up
 from solver.kernel.jit import jit
 from solver.kernel.physics import accelerate
 from solver.kernel.watch import begin, events, first_peak, peaks, windows
@@ -36,8 +37,8 @@ def drive(p, n, leg, t):
 
 
 @jit
-def stage(y, k, step, into):
-    for i in range(L.STATES):
+def stage(y, k, step, into, states):
+    for i in range(states):
         into[i] = y[i] + step * k[i]
 
 
@@ -88,8 +89,9 @@ def march(p, n, longest, kept, log, record, y_record, out_record):
     begin(kept)
     longest = min(longest, STABLE / p[L.LAMBDA])
     duration, report_step, static = p[L.DURATION], p[L.OUTPUT_STEP], p[L.REAR_STATIC]
-    hit_at, legs = n[L.HIT_AT], n[L.HIT_COUNT]
-    reports = int(math.floor(duration / report_step + 1e-9)) + 1
+    hit_at, legs, states = n[L.HIT_AT], n[L.HIT_COUNT], n[L.N_STATES]
+    start_up(p, y)
+    reports = math.floor(duration / report_step + 1e-9) + 1
     t, leg, report, count, code = 0.0, -1, 0, 0, L.SOLVED
     while leg + 1 < legs and p[hit_at + 2 * leg + 2] <= 0.0:
         leg += 1
@@ -105,22 +107,22 @@ def march(p, n, longest, kept, log, record, y_record, out_record):
         mark = min(report * report_step, duration)
         if leg + 1 < legs:
             mark = min(mark, p[hit_at + 2 * leg + 2])
-        steps = max(1, int(math.ceil((mark - t) / longest - 1e-9)))
+        steps = max(1, math.ceil((mark - t) / longest - 1e-9))
         start, h = t, (mark - t) / steps
         for i in range(steps):
             t = start + i * h
             end = mark if i == steps - 1 else start + (i + 1) * h
             middle = drive(p, n, leg, t + 0.5 * h)
-            stage(y, k1, 0.5 * h, trial)
+            stage(y, k1, 0.5 * h, trial, states)
             accelerate(p, n, middle, trial, k2, scrap)
-            stage(y, k2, 0.5 * h, trial)
+            stage(y, k2, 0.5 * h, trial, states)
             accelerate(p, n, middle, trial, k3, scrap)
-            stage(y, k3, h, trial)
+            stage(y, k3, h, trial, states)
             last = drive(p, n, leg, end)
             accelerate(p, n, last, trial, k4, scrap)
             peaks(kept, t, out)
             first_peak(kept, t, out[L.O_REAR_LOAD], static)
-            for j in range(L.STATES):
+            for j in range(states):
                 y[j] += h / 6.0 * (k1[j] + 2.0 * (k2[j] + k3[j]) + k4[j])
             accelerate(p, n, last, y, k1, after)
             code = check(kept, y, k4, k1, h, after)
@@ -130,10 +132,14 @@ def march(p, n, longest, kept, log, record, y_record, out_record):
             if code != L.SOLVED:
                 return code, end, report, count
             kept[L.A_STEPS] += 1.0
+            if n[L.DRIVE] >= L.CLUTCH_DRIVE and shift(p, n, y):
+                accelerate(p, n, last, y, k1, out)
         t = mark
         if leg + 1 < legs and t >= p[hit_at + 2 * leg + 2]:
             leg += 1
             # A table that begins above nil jumps: the new leg's slope counts from here.
             accelerate(p, n, drive(p, n, leg, t), y, k1, out)
     peaks(kept, t, out)
+    for i in range(L.WATCHED):
+        kept[L.A_LAST + i] = out[i]
     return code, t, report, count

@@ -13,16 +13,13 @@ import math
 
 from solver.kernel import layout as L
 from solver.kernel.curves import curve
+from solver.kernel.drivetrain import thrust
 from solver.kernel.jit import jit
 from solver.kernel.rest import GRAVITY
+from solver.kernel.tyre import push
 
+SIXTY_FEET = 18.288  # m
 FEEDBACK = 50.0  # rad/s, both roots of the drift's decay
-
-
-@jit
-def push(rate, damping, squash, speed):
-    """A contact that pushes only: not gated on `squash`, so that it never jumps."""
-    return rate * squash + damping * speed
 
 
 @jit
@@ -152,8 +149,9 @@ def accelerate(p, n, hit, y, dy, out):
     p, n : float64 and int64 rows
         One lane as `layout` describes it, after `rest.settle`.
     hit : float
-        Horizontal force at the rear patch, N.
-    y, dy : float64 (14,)
+        What the drive table says now: horizontal force at the rear patch (N), wheel
+        torque (N m), clutch capacity (N m) or throttle.
+    y, dy : float64 (STATES,)
         State and its rate.
     out : float64 (OUTPUTS,)
         Forces, travels and gates at this state.
@@ -189,8 +187,9 @@ def accelerate(p, n, hit, y, dy, out):
 
     # Everything that is not a constraint force.
     fx, fz, chassis_moment, housing_moment = rear_springs(p, n, y, co, si, ch, sh, out)
-    housing_fx, housing_fz = hit - fx, rear_load - mr * GRAVITY - fz
-    housing_moment += hit * (p[L.REAR_RADIUS] + y[L.HZ])
+    forward, torque = thrust(p, n, hit, y, rear_load, dy, out)
+    housing_fx, housing_fz = forward - fx, rear_load - mr * GRAVITY - fz
+    housing_moment += torque
     fx -= slide_force * si
     fz += slide_force * co - ms * GRAVITY
     chassis_moment += slide_force * (wx * co + wz * si)
@@ -252,16 +251,20 @@ def accelerate(p, n, hit, y, dy, out):
         - (wx * co + wz * si) * dy[7 + L.PITCH]
         + w * w * (wz * co - wx * si)
     )
-    report(p, y, hit, co, si, dy[7 + L.X], out)
+    report(p, y, forward, co, si, dy[7 + L.X], out)
+    out[L.O_DISTANCE] = y[L.X] + wx - rx
+    out[L.O_GATE + L.GATE_ROLLOUT] = out[L.O_DISTANCE] - p[L.ROLLOUT]
+    out[L.O_GATE + L.GATE_SIXTY_FOOT] = out[L.O_DISTANCE] - p[L.ROLLOUT] - SIXTY_FEET
 
 
 @jit
-def report(p, y, hit, co, si, forward, out):
+def report(p, y, thrust, co, si, acceleration, out):
     """Fill the outputs that follow from the state alone."""
     out[L.O_PITCH], out[L.O_HOUSING] = y[L.PITCH], y[L.HOUSING]
-    out[L.O_ACCELERATION], out[L.O_HIT] = forward, hit
+    out[L.O_ACCELERATION], out[L.O_HIT] = acceleration, thrust
+    out[L.O_SPEED] = y[7 + L.X]
     load = out[L.O_REAR_LOAD]
-    out[L.O_GRIP] = hit / load if load > 0.0 else (0.0 if hit == 0.0 else math.inf)
+    out[L.O_GRIP] = thrust / load if load > 0.0 else (0.0 if thrust == 0.0 else math.inf)
     rx, rz = p[L.WHEELBASE] - p[L.SPRUNG_X], p[L.FRONT_RADIUS] - p[L.SPRUNG_Z]
     out[L.O_RIDE_FRONT] = y[L.Z] + si * rx + (co - 1.0) * rz
     rx, rz = -p[L.SPRUNG_X], p[L.REAR_RADIUS] - p[L.SPRUNG_Z]

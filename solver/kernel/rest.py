@@ -8,6 +8,8 @@ from solver.kernel.jit import jit
 
 GRAVITY = 9.80665
 VIRTUAL_LINK = 0.3
+FASTEST_CAR = 50.0  # m/s within the seconds a launch is solved for
+FASTEST_ENGINE = 1200.0  # rad/s
 
 
 @jit
@@ -131,6 +133,31 @@ def bound_eigenvalues(p, n):
     rear = 1.0 / (1.0 / p[L.REAR_MASS] + give)
     rear = fastest(k + p[L.REAR_TYRE_RATE], c + p[L.REAR_TYRE_DAMPING], rear)
     p[L.LAMBDA] = max(front, rear)
+    if n[L.DRIVE] != L.FORCE_DRIVE:
+        p[L.LAMBDA] = max(p[L.LAMBDA], fastest_drive(p, n))
+
+
+@jit
+def fastest_drive(p, n):
+    """The same bound for wheel spin against the tyre's carcass, and for the coupling.
+
+    The carcass is a spring of slip stiffness over relaxation length; it also
+    forgets at road speed over relaxation length.
+    """
+    radius, spin = p[L.REAR_RADIUS], p[L.WHEEL_INERTIA]
+    rate = p[L.SLIP_STIFFNESS] / p[L.RELAXATION]
+    bound = math.sqrt(rate * (radius * radius / spin + 1.0 / p[L.REAR_MASS]))
+    bound = max(bound, FASTEST_CAR / p[L.RELAXATION])
+    if n[L.DRIVE] == L.CLUTCH_DRIVE:
+        gearing = p[L.GEARS] * p[L.FINAL_DRIVE]
+        strongest = 0.0
+        for i in range(n[L.HIT_COUNT]):
+            strongest = max(strongest, p[L.HIT_SCALE] * p[n[L.HIT_AT] + 2 * i + 1])
+        slope = strongest / p[L.CREEP]
+        bound = max(bound, slope * (1.0 / p[L.ENGINE_INERTIA] + gearing * gearing / spin))
+    elif n[L.DRIVE] == L.CONVERTER_DRIVE:
+        bound = max(bound, FASTEST_ENGINE * 4.0 * p[L.CONVERTER_SIZE] / p[L.ENGINE_INERTIA])
+    return bound
 
 
 @jit

@@ -1,0 +1,43 @@
+"""Whether a lane of a study can be solved at all; the same rules as `solver.soundness`."""
+
+import math
+
+from solver.kernel import layout as L
+from solver.kernel.jit import jit
+from solver.kernel.rest import GRAVITY
+
+SAME_PIN, SHORTEST_LINK, MOST_LOAD = 1e-3, 0.05, 50.0
+
+
+@jit
+def unsound(p, n):
+    """A refusal code of `layout`, or SOLVED, for a settled lane."""
+    spare = min(p[L.FRONT_SPRING_STATIC], p[L.REAR_STATIC] - p[L.REAR_MASS] * GRAVITY)
+    if not (min(p[L.SPRUNG_MASS], p[L.SPRUNG_Z], spare) > 0.0 and p[L.CG_Z] > axles(p)):
+        return L.BAD_WEIGHTS
+    if n[L.KIND] == L.FOUR_LINK and not links_stand(p):
+        return L.BAD_LINKS
+    spring = p[L.REAR_SPRING_STATIC]
+    most = max(spring, abs(p[L.LOWER_STATIC]), abs(p[L.UPPER_STATIC]))
+    if not (spring > 0.0 and most < MOST_LOAD * p[L.REAR_STATIC]):
+        return L.NO_REST
+    return L.SOLVED
+
+
+@jit
+def axles(p):
+    """The lower of the two axle heights."""
+    return min(p[L.FRONT_RADIUS], p[L.REAR_RADIUS])
+
+
+@jit
+def links_stand(p):
+    """No identical or crossed pins, and bars that run forward."""
+    lower = min(p[L.LOWER_LENGTH], p[L.UPPER_LENGTH])
+    forward = min(p[L.LCX] - p[L.LHX], p[L.UCX] - p[L.UHX])
+    chassis = math.hypot(p[L.UCX] - p[L.LCX], p[L.UCZ] - p[L.LCZ])
+    housing = math.hypot(p[L.UHX] - p[L.LHX], p[L.UHZ] - p[L.LHZ])
+    above = min(p[L.UCZ] - p[L.LCZ], p[L.UHZ] - p[L.LHZ])
+    return (
+        lower >= SHORTEST_LINK and forward > 0.0 and min(chassis, housing) >= SAME_PIN and above > 0.0
+    )
