@@ -1,9 +1,13 @@
-"""Every address of the application."""
+"""Every address of the application: each app brings its own."""
 
-from django.urls import path
+from django.urls import include, path
 
 from shop.config.pages import health
 
 urlpatterns = [
     path("healthz", health),
+    path("", include("shop.people.urls")),
+    path("", include("shop.garage.urls")),
+    path("", include("shop.setups.urls")),
+    path("", include("shop.api.urls")),
 ]
