@@ -19,12 +19,16 @@ os.environ["LEDGER_SECRET_KEY"] = "only-for-tests"
 # Compiled solver code outlives the run: compiling it anew each time is the slowest thing tests could do.
 os.environ.setdefault("NUMBA_CACHE_DIR", str(Path(__file__).parent / ".out" / "compiled"))
 
+from shop.config.environment import database  # noqa: E402
 from shop.config.settings import *  # noqa: E402, F403
 from shop.config.settings import DATABASES, STORAGES  # noqa: E402
 
-# A file, so that a worker process can be given the tests' own database by its name.
-DATABASES["default"]["TEST"] = {"NAME": str(KEPT / "tests.sqlite3")}
-DATABASES["default"]["OPTIONS"]["init_command"] += "; PRAGMA synchronous=OFF"
+if os.environ.get("TESTS_DATABASE_URL"):  # the same tests once more, on PostgreSQL (tests/services/test_on_postgres.py)
+    DATABASES["default"] = database("TESTS_DATABASE_URL", KEPT / "unused.sqlite3")
+else:
+    # A file, so that a worker process can be given the tests' own database by its name.
+    DATABASES["default"]["TEST"] = {"NAME": str(KEPT / "tests.sqlite3")}
+    DATABASES["default"]["OPTIONS"]["init_command"] += "; PRAGMA synchronous=OFF"
 STORAGES["staticfiles"] = {"BACKEND": "django.contrib.staticfiles.storage.StaticFilesStorage"}
 PASSWORD_HASHERS = ["django.contrib.auth.hashers.MD5PasswordHasher"]
 WHITENOISE_USE_FINDERS = True

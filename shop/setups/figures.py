@@ -62,7 +62,8 @@ def bar_slopes(inputs: car_file.Inputs) -> list[Row]:
     rows = []
     for link, (rear, front) in ends.items():
         slope = math.atan2(front[1] - rear[1], front[0] - rear[0])
-        rows.append(Row(f"{link}_slope", ANGLE_NAMES[link], show(slope, "angle", "°"), "positive: rises towards the front", slope))
+        text = show(slope, "angle", "°")
+        rows.append(Row(f"{link}_slope", ANGLE_NAMES[link], text, "positive: rises towards the front", slope))
     return rows
 
 
