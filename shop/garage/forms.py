@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 from django import forms
+from django_scopes.forms import SafeModelChoiceField
 
 from shop.garage.models import Car, Customer
 
@@ -23,6 +24,8 @@ class CarForm(forms.ModelForm):
     class Meta:
         model = Car
         fields = ["customer", "name", "racing_number", "race_class", "chassis", "notes"]
+        # The class is made when the module is read, before any shop is in scope.
+        field_classes = {"customer": SafeModelChoiceField}
 
     def __init__(self, *args: Any, **kwargs: Any) -> None:
         super().__init__(*args, **kwargs)
