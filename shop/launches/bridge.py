@@ -13,6 +13,7 @@ from typing import Any
 
 import solver
 from shop.drawing.scene import Scene, Strut
+from shop.garage.models import Survey
 from shop.garage.quantities import BRACKETS_OF
 from shop.garage.quantities import BY_KEY as SURVEY_KEYS
 from shop.quantities import Quantity
@@ -20,12 +21,14 @@ from shop.refusals import Refused
 from shop.setups import car_file
 from shop.setups.models import Revision
 from shop.units import default_unit, show, unit_of
-from solver import atmosphere, comparing, power, slip_check, timing, weather
+from solver import atmosphere, comparing, power, slip_check, timing, weather, weights
 from solver.statics import statics as solve_statics
 
 SOLVER_VERSION = solver.SOLVER_VERSION
 # Label, dimension and meaning of every figure of a launch, in the order in which pages show them.
 LAUNCH_FIGURES = solver.FIGURES
+# The same of every curve.
+LAUNCH_HISTORIES = solver.HISTORIES
 
 
 class CannotSolve(Exception):
@@ -344,15 +347,38 @@ def check_slip(times: Mapping[str, Any], speeds: Mapping[str, Any], speed_unit: 
     )
 
 
-def slip_of_run(histories: Mapping[str, Any]) -> dict[str, float]:
-    """Times by mark of a solved launch, as far as it runs; empty when it never leaves the beam."""
+@dataclass(frozen=True)
+class RunSlip:
+    """Times by mark of a solved launch; `continued_from` is how far the run itself went (m) where 60 ft lies beyond it."""
+
+    times: dict[str, float]
+    continued_from: float | None = None
+
+
+def slip_of_run(histories: Mapping[str, Any]) -> RunSlip:
+    """The slip of a solved launch. One that ends short of 60 ft is continued at its last acceleration:
+    the hit holds its last value, and the car has settled by then."""
     needed = [histories.get(name) for name in ("t", "distance", "speed")]
     if not all(needed):
-        return {}
+        return RunSlip({})
+    t, distance, speed = ([float(value) for value in series] for series in needed)
+    mark = timing.MARKS["60 ft"] + timing.TYPICAL_ROLLOUT
+    short = distance[-1] < mark
+    if short:
+        # Over the last tenth of a second, or what there is of it.
+        start = next(i for i, at in enumerate(t) if at >= t[-1] - 0.1)
+        pull = (speed[-1] - speed[start]) / (t[-1] - t[start]) if t[-1] > t[start] else 0.0
+        if distance[-1] < mark / 3 or pull <= 0.0:
+            return RunSlip({})
+        left = (math.sqrt(speed[-1] ** 2 + 2 * pull * (mark - distance[-1])) - speed[-1]) / pull
+        ran = distance[-1]
+        t, distance, speed = [*t, t[-1] + left], [*distance, mark], [*speed, speed[-1] + pull * left]
     try:
-        return dict(timing.slip_from_run(*needed).times)
+        # A hair's breadth short of its own mark would lose it.
+        times = timing.slip_from_run(t, [*distance[:-1], distance[-1] + 1e-9], speed).times
     except ValueError:
-        return {}
+        return RunSlip({})
+    return RunSlip(dict(times), ran if short else None)
 
 
 def compare_passes(
@@ -363,3 +389,33 @@ def compare_passes(
 
 def summarise_passes(values: list[float], *, lower_is_better: bool) -> comparing.Summary:
     return comparing.summarise_passes(values, lower_is_better)
+
+
+# --- what the solver calls its numbers: label, dimension, description ------------------------------------------------
+
+FIGURE_TABLE: dict[str, tuple[str, str, str]] = {name: tuple(row) for name, row in solver.FIGURES.items()}
+HISTORY_TABLE: dict[str, tuple[str, str, str]] = {name: tuple(row) for name, row in solver.HISTORIES.items()}
+
+
+def survey_figures(survey: Survey, units: str) -> list[Row]:
+    """Weights, percentages and where the CG is along the car, from the scales and the tape."""
+    values = car_file.survey_si(survey)
+    corners = [values.get(f"weight_{corner}") for corner in ("lf", "rf", "lr", "rr")]
+    if None in corners or "wheelbase" not in values:
+        return []
+    found = weights.weigh(weights.Corners(*corners))
+    mass = default_unit("mass", units)
+    ahead = values["wheelbase"] * found.front / found.total
+    rows = [
+        Row("total", "Total with driver", show(found.total, "mass", mass), si=found.total),
+        Row("front", "Front", f"{show(found.front, 'mass', mass)}, {_percent(found.front_percent)}", si=found.front),
+        Row("rear", "Rear", f"{show(found.rear, 'mass', mass)}, {_percent(found.rear_percent)}", si=found.rear),
+        Row("left", "Left", f"{show(found.left, 'mass', mass)}, {_percent(found.left_percent)}", si=found.left),
+        Row("cross", "Cross weight", f"{show(found.cross_weight, 'mass', mass)}, {_percent(found.cross_percent)}",
+            "right front and left rear", found.cross_weight),
+        Row("cg_x", "CG, ahead of rear axle", length_text(ahead, units), si=ahead),
+    ]
+    if all(f"empty_{corner}" in values for corner in ("lf", "rf", "lr", "rr")):
+        driver = found.total - sum(values[f"empty_{corner}"] for corner in ("lf", "rf", "lr", "rr"))
+        rows.append(Row("driver", "Driver", show(driver, "mass", mass), "with driver less driver out", driver))
+    return rows
