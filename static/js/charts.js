@@ -78,7 +78,7 @@
       xaxis: { ...axis, fixedrange: false, anchor: pair ? "y2" : "y", title: { text: `Time, ${chart.data.unit}`, standoff: 6 }, range: chart.span, hoverformat: ".3f", zeroline: false },
       yaxis: { ...axis, title: { text: units, standoff: 6 }, domain: pair ? [0.36, 1] : [0, 1] },
     };
-    if (pair) layout.yaxis2 = { ...axis, title: { text: `difference, ${units}`, standoff: 6 }, domain: [0, 0.26] };
+    if (pair) layout.yaxis2 = { ...axis, title: { text: "difference", standoff: 6 }, domain: [0, 0.26] };
     return { data: traces(chart, palette), layout };
   }
 

@@ -15,8 +15,20 @@
     }
   }
   let again = null;
+  // Holes stand an inch apart, closer than fingers are: whatever is touched, the nearest hole within reach is meant.
+  const REACH = 30; // CSS pixels about a hole
+  function nearest(drawing, x, y) {
+    let found = null, least = REACH;
+    for (const hole of drawing.querySelectorAll(".pick")) {
+      const box = hole.querySelector(".hole").getBoundingClientRect();
+      const away = Math.hypot(x - box.x - box.width / 2, y - box.y - box.height / 2);
+      if (away < least) [found, least] = [hole, away];
+    }
+    return found;
+  }
   document.addEventListener("click", function (event) {
-    const hole = event.target.closest(".pick");
+    const drawing = event.target.closest("svg.side-view");
+    const hole = drawing && nearest(drawing, event.clientX, event.clientY);
     if (hole) choose(hole);
   });
   document.addEventListener("keydown", function (event) {
