@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-import copy
-from collections.abc import Mapping
 from typing import Any
 
 from solver.checks import number
@@ -35,51 +33,6 @@ def number_at(document: dict[str, Any], path: str) -> float:
     if isinstance(place, bool) or not isinstance(place, int | float):
         raise ValueError(f"{path} is not a number of this car file.")
     return number(path, place)
-
-
-def with_numbers(document: dict[str, Any], values: Mapping[str, float]) -> dict[str, Any]:
-    """A copy of a car file with other numbers in some places.
-
-    Parameters
-    ----------
-    document : dict
-    values : dict of str to float
-        New numbers by path; each must stand in the car file already.
-
-    Returns
-    -------
-    dict
-        The document given is left as it was.
-
-    Raises
-    ------
-    ValueError
-        When the car file has no number at a path.
-    """
-    changed = copy.deepcopy(document)
-    for path, value in values.items():
-        number_at(changed, path)
-        *way, last = path.split(".")
-        place = changed
-        for step in way:
-            place = _inside(place, step, path)
-        place[_key(place, last)] = float(value)
-    return changed
-
-
-def number_paths(document: Any, prefix: str = "") -> list[str]:
-    """Every path of a car file at which a number stands, in the file's order."""
-    if isinstance(document, dict):
-        found = []
-        for key, value in document.items():
-            found += number_paths(value, f"{prefix}.{key}" if prefix else key)
-        return found
-    if isinstance(document, list):
-        return [
-            path for place, value in enumerate(document) for path in number_paths(value, f"{prefix}.{place}")
-        ]
-    is_number = isinstance(document, int | float) and not isinstance(document, bool)
-    return [prefix] if is_number else []
 
 
 def _inside(place: Any, step: str, path: str) -> Any:

@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 from typing import TYPE_CHECKING, Any
 
-from solver.car import Car
+from solver.car import Car, Hit
 from solver.cli_weights import Answer, plain
 from solver.faults import CarError, Fault
 from solver.loads import BarLoad, LoadReport, loads_of
@@ -50,7 +50,8 @@ def loads_answer(car: Car) -> Answer:
 def left_right_of(car: Car, run: Launch) -> LeftRight:
     """Left and right tyre loads of a car's launch.
 
-    The wheel torque is the hit times the rear tyre's radius at ride height.
+    The wheel torque is the run's own where torque drives it, else the hit times the
+    rear tyre's radius at ride height.
 
     Parameters
     ----------
@@ -69,7 +70,8 @@ def left_right_of(car: Car, run: Launch) -> LeftRight:
         When the section does not describe what the roll plane needs.
     """
     histories = run.histories
-    torque = histories["hit"] * car.rear.tyre_radius
+    by_force = isinstance(car.hit, Hit)
+    torque = histories["hit"] * car.rear.tyre_radius if by_force else histories["wheel_torque"]
     try:
         if car.corners is None:
             raise ValueError("the car file has no corners section.")

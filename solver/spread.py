@@ -7,26 +7,26 @@ takes go through the solver as lanes of one batch.
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Any
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from solver.car_paths import number_at, with_numbers
+from solver.car import Car
+from solver.car_paths import number_at
+from solver.carfile import car_to_dict
 from solver.checks import not_negative, positive
 from solver.measured import Input
 from solver.monte_carlo import Draws, draw_inputs, summarise
+from solver.spread_lanes import FiguresOf, LaneFigures, Lanes, launch_figures
 from solver.uncertainty import Propagation, from_sensitivities
-
-# Takes car files, one a lane, and gives each figure as an array over the lanes, NaN in a
-# lane that does not have it.
-FiguresOf = Callable[[list[dict[str, Any]]], Mapping[str, ArrayLike]]
 
 # A figure whose curvature over one standard uncertainty is more than this part of its
 # uncertainty is not well told by the first order.
 CURVED = 0.25
+# Of a study alone: the hit as a multiple of the car file's.
+HIT_SCALE = "hit.scale"
 
 
 @dataclass(frozen=True)
@@ -42,12 +42,13 @@ class Spread:
         Figures that some lane does not have (the front tyres lift with one set
         of numbers and not with another), so that no spread can be stated.
     curved : tuple of str
-        Figures for which the first order is doubtful.
+        Figures for which the first order is doubtful: bent within the tolerance, or
+        as coarse as the solver's step (times of peaks).
     """
 
     propagation: Propagation
-    left_out: tuple
-    curved: tuple
+    left_out: tuple[str, ...]
+    curved: tuple[str, ...]
 
     @property
     def figures(self) -> tuple[str, ...]:
@@ -69,11 +70,11 @@ class Purchase:
 
 
 def spread_of(
-    document: dict[str, Any],
+    car: Car,
     uncertainties: Mapping[str, float],
-    figures_of: FiguresOf,
     correlations: Mapping[tuple[str, str], float] | None = None,
     step: float = 1.0,
+    figures_of: FiguresOf | None = None,
 ) -> Spread:
     """Figures of a launch with standard uncertainties.
 
@@ -82,18 +83,16 @@ def spread_of(
 
     Parameters
     ----------
-    document : dict
-        The car file.
+    car : solver.Car
     uncertainties : dict of str to float
-        Standard uncertainty of the number at each path, in its own unit;
-        see `solver.measured.standard_uncertainty` for tolerances.
-    figures_of : callable
-        Takes a list of car files, one a lane, and returns a dict of figure to
-        array over the lanes, NaN where a lane does not have it;
-        `solver.spread_lanes.launch_figures`.
+        Standard uncertainty of the number at each path, in its own unit: any of
+        `solver.sweepable`; see `solver.measured.standard_uncertainty` for
+        tolerances.
     correlations : dict of (str, str) to float, optional
     step : float
         Half-width of the differences in standard uncertainties.
+    figures_of : callable, optional
+        Solves the lanes; None takes `launch_figures`.
 
     Returns
     -------
@@ -102,17 +101,15 @@ def spread_of(
     Raises
     ------
     ValueError
-        When a path is not in the car file or an uncertainty is below zero; and
-        what `figures_of` raises when a lane has no answer.
+        When a path cannot vary, an uncertainty is below zero, or a lane has no
+        answer: with the number at fault and the reason.
     """
-    inputs = _inputs(document, uncertainties)
+    inputs = _inputs(car, uncertainties)
     reach = positive("the step", step)
-    lanes = [document]
-    for path, item in inputs.items():
-        for side in (reach, -reach):
-            lanes.append(with_numbers(document, {path: item.value + side * item.uncertainty}))
-    found = figures_of(lanes)
-    names, table, left_out = _table(found)
+    lanes = _differences(inputs, reach)
+    found = (figures_of or launch_figures(car))(lanes)
+    _refuse_unsolved(found, lanes, inputs)
+    names, table, left_out = _table(found.figures)
     middle, above, below = table[:, :1], table[:, 1::2], table[:, 2::2]
     widths = np.array([2.0 * reach * item.uncertainty for item in inputs.values()])
     propagation = from_sensitivities(inputs, names, middle[:, 0], (above - below) / widths, correlations)
@@ -126,18 +123,18 @@ def spread_of(
 
 
 def spread_by_draws(
-    document: dict[str, Any],
+    car: Car,
     uncertainties: Mapping[str, float],
-    figures_of: FiguresOf,
     draws: int = 1000,
     seed: int = 1,
     correlations: Mapping[tuple[str, str], float] | None = None,
+    figures_of: FiguresOf | None = None,
 ) -> Draws:
     """The same by drawing whole cars at random (GUM Supplement 1), one a lane.
 
     Parameters
     ----------
-    document, uncertainties, figures_of, correlations
+    car, uncertainties, correlations, figures_of
         As `spread_of`; every number is drawn from a normal distribution.
     draws, seed : int
 
@@ -151,13 +148,15 @@ def spread_by_draws(
     ValueError
         As `spread_of`.
     """
-    inputs = _inputs(document, uncertainties)
-    drawn = draw_inputs(inputs, draws, seed, correlations)
-    lanes = [
-        with_numbers(document, {path: values[lane] for path, values in drawn.items()})
-        for lane in range(draws)
-    ]
-    names, table, _ = _table(figures_of(lanes))
+    inputs = _inputs(car, uncertainties)
+    lanes = draw_inputs(inputs, draws, seed, correlations)
+    found = (figures_of or launch_figures(car))(lanes)
+    if found.refused:
+        lane, reason = next(iter(found.refused.items()))
+        raise ValueError(
+            f"{len(found.refused)} of {draws} draws have no answer, the first of them (draw {lane}): {reason}"
+        )
+    names, table, _ = _table(found.figures)
     return summarise(names, table)
 
 
@@ -195,15 +194,33 @@ def best_purchases(spread: Spread, figure: str, part: float = 0.5) -> tuple[Purc
     return tuple(sorted(found, key=lambda purchase: purchase.then))
 
 
-def _inputs(document: dict[str, Any], uncertainties: Mapping[str, float]) -> dict[str, Input]:
+def _inputs(car: Car, uncertainties: Mapping[str, float]) -> dict[str, Input]:
     """Inputs that are uncertain at all: a zero adds two lanes and nothing else."""
-    inputs = {}
+    document, inputs = car_to_dict(car), {}
     for path, value in uncertainties.items():
         if not_negative(f"the uncertainty of {path}", value) > 0.0:
-            inputs[path] = Input(number_at(document, path), float(value))
+            centre = 1.0 if path == HIT_SCALE else number_at(document, path)
+            inputs[path] = Input(centre, float(value))
     if not inputs:
         raise ValueError("no number of the car file has an uncertainty: there is no spread to work out.")
     return inputs
+
+
+def _differences(inputs: Mapping[str, Input], reach: float) -> dict[str, NDArray[np.float64]]:
+    """The car itself, then each number above and below, one after the other."""
+    lanes = {path: np.full(2 * len(inputs) + 1, item.value) for path, item in inputs.items()}
+    for place, (path, item) in enumerate(inputs.items()):
+        lanes[path][2 * place + 1] += reach * item.uncertainty
+        lanes[path][2 * place + 2] -= reach * item.uncertainty
+    return lanes
+
+
+def _refuse_unsolved(found: LaneFigures, lanes: Lanes, inputs: Mapping[str, Input]) -> None:
+    for lane, reason in found.refused.items():
+        if lane == 0:
+            raise ValueError(f"the launch itself has no answer: {reason}")
+        path = list(inputs)[(lane - 1) // 2]
+        raise ValueError(f"with {path} at {lanes[path][lane]:g} the launch has no answer: {reason}")
 
 
 def _table(
@@ -214,4 +231,6 @@ def _table(
     whole = {name: values for name, values in arrays.items() if np.isfinite(values).all()}
     if not whole:
         raise ValueError("no figure is there in every lane: there is no spread to work out.")
-    return tuple(whole), np.stack(list(whole.values())), tuple(name for name in arrays if name not in whole)
+    # What no lane has (a wheelie bar the car lacks) is not worth telling.
+    some = {name for name, values in arrays.items() if np.isfinite(values).any()}
+    return tuple(whole), np.stack(list(whole.values())), tuple(sorted(some - set(whole)))

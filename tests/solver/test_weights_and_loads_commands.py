@@ -138,3 +138,14 @@ def test_rear_tyres_start_from_the_scales():
     sides = left_right_of(car, launch(car))
     assert sides.history.rear_left[0] == pytest.approx(315.0 * 9.80665, rel=1e-6)
     assert sides.history.rear_right[0] == pytest.approx(305.0 * 9.80665, rel=1e-6)
+
+
+def test_torque_drive_turns_the_driveshaft_by_its_own_torque():
+    content = document(corners=CORNERS)
+    content["hit"] = {"kind": "torque", "table": [[0.0, 0.0], [0.05, 4100.0]]}
+    tyre = {"grip": 1.6, "sliding_grip": 1.3, "slip_stiffness": 80000.0}
+    rear = {**EXAMPLE["rear"], "tyre": {**EXAMPLE["rear"]["tyre"], **tyre}, "wheel_inertia": 12.0}
+    car = car_from_dict({**content, "rear": rear})
+    sides = left_right_of(car, launch(car))
+    assert sides.history.driveshaft_torque[-1] == pytest.approx(1000.0)
+    assert sides.history.rear_difference[-1] > 100.0
