@@ -5,6 +5,8 @@
 """
 
 import importlib
+import sys
+import types
 
 from solver.version import SOLVER_VERSION
 
@@ -42,3 +44,18 @@ def __getattr__(name):
     if name not in _HOMES:
         raise AttributeError(f"module 'solver' has no attribute {name!r}")
     return getattr(importlib.import_module(f"solver.{_HOMES[name]}"), name)
+
+
+class _Package(types.ModuleType):
+    """Keeps a function from being hidden by the module of the same name it lives in.
+
+    Importing ``solver.statics`` would otherwise put that module where
+    ``solver.statics(car)`` looks for the function.
+    """
+
+    def __setattr__(self, name, value):
+        if not (name in _HOMES and isinstance(value, types.ModuleType)):
+            super().__setattr__(name, value)
+
+
+sys.modules[__name__].__class__ = _Package
