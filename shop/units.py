@@ -97,7 +97,7 @@ _NUMBER = re.compile(
       |(?P<fnum>\d+)\s*[/⁄]\s*(?P<fden>\d+)                     # 3/8
       |(?P<thousands>\d{1,3}(?:,\d{3})+(?:\.\d*)?)              # 3,200
       |(?P<plain>\d+(?:\.\d*)?(?:[eE][-+]?\d+)?|\.\d+(?:[eE][-+]?\d+)?))
-    \s*(?P<unit>[^\d\s].*)?$""",
+    \s*(?P<unit>[^\d\s,].*)?$""",
     re.VERBOSE,
 )
 

@@ -96,7 +96,7 @@ def summarise_passes(values: Iterable[float], lower_is_better: bool = True) -> S
         mean=float(data.mean()),
         worst=high if lower_is_better else low,
         spread=high - low,
-        deviation=float(data.std(ddof=1)) if data.size > 1 else math.nan,
+        deviation=_deviation(data),
     )
 
 
@@ -144,6 +144,13 @@ def compare_passes(
         permutation=shuffled,
         words=_words(left, right, interval, shuffled),
     )
+
+
+def _deviation(data):
+    if data.size < 2:
+        return math.nan
+    # Equal values have a mean that may differ from them in the last bit: that is no scatter.
+    return 0.0 if data.min() == data.max() else float(data.std(ddof=1))
 
 
 def _data(name: str, values: Iterable[float]) -> NDArray[np.float64]:

@@ -136,7 +136,7 @@ def bootstrap(a: NDArray[np.float64], b: NDArray[np.float64], level: float) -> I
     """
     from scipy import stats
 
-    if min(a.size, b.size) < BOOTSTRAP_LEAST or a.std() == 0.0 or b.std() == 0.0:
+    if min(a.size, b.size) < BOOTSTRAP_LEAST or np.ptp(a) == 0.0 or np.ptp(b) == 0.0:
         return None
     result = stats.bootstrap(
         (a, b),

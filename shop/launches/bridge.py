@@ -22,6 +22,7 @@ from shop.setups import car_file
 from shop.setups.models import Revision
 from shop.units import default_unit, show, unit_of
 from solver import atmosphere, comparing, power, slip_check, timing, weather, weights
+from solver.many import sweep_files
 from solver.statics import statics as solve_statics
 
 SOLVER_VERSION = solver.SOLVER_VERSION
@@ -291,6 +292,11 @@ def solve(input_file: Mapping[str, Any]) -> dict[str, Any]:
         "solver_version": SOLVER_VERSION,
         "seconds": time.perf_counter() - started,
     }
+
+
+def sweep(files: list[dict[str, Any] | None]) -> tuple[dict[str, Any], dict[int, str]]:
+    """Figures of many car files as columns over their order, and the words for those that cannot be solved."""
+    return sweep_files(files)
 
 
 # --- the track: plain numbers to the solver's weather, slip and comparison functions, and back ------------------------

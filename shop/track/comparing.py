@@ -13,11 +13,13 @@ CONFIDENCE = 0.95
 
 @dataclass(frozen=True)
 class Statement:
-    """`words` first; `how` says by which tests; `cautions` what else could explain it."""
+    """`words` first; `how` says how the interval was made, `chance` what the permutation test says;
+    `cautions` name what else could explain it."""
 
     words: str
     verdict: str  # "real", "likely", "not told apart" or "too few"
     how: tuple[str, ...]
+    chance: str
     cautions: tuple[str, ...]
 
 
@@ -38,7 +40,7 @@ def compare(first: Group, second: Group, question: Question, comparisons: int = 
     counts = f"{first.count_text} against {len(second.values)}"
     words = _words(first.label, second.label, gain, spread, verdict, question, counts)
     return Statement(
-        words, verdict, tuple(_how(result, interval, comparisons)),
+        words, verdict, tuple(_how(interval, comparisons)), _chance_words(result),
         # The solver's first words are the verdict itself, said above in the trade's words.
         (*(result.words[1:] if interval else result.words), *_cautions(first, second)),
     )
@@ -85,7 +87,7 @@ def _side(figure: Figure, gain: float, units: str) -> str:
     return f"{_size(figure, abs(gain), units)} {figure.better if gain >= 0 else figure.worse}"
 
 
-def _how(result: bridge.comparing.Comparison, interval: bridge.comparing.Interval | None, comparisons: int) -> list[str]:
+def _how(interval: bridge.comparing.Interval | None, comparisons: int) -> list[str]:
     how = []
     if interval:
         how.append(f"{interval.confidence * 100:.3g} % interval of the difference of the means, by {interval.method}.")
@@ -94,15 +96,15 @@ def _how(result: bridge.comparing.Comparison, interval: bridge.comparing.Interva
             f"{comparisons} comparisons stand on this page, so each interval is wide enough that all of them"
             f" hold together at {CONFIDENCE * 100:.0f} % (Bonferroni)."
         )
-    test = result.permutation
-    if test:
-        tried = f"all {test.arrangements} arrangements" if test.exact else f"{test.arrangements} random arrangements"
-        how.append(f"Permutation test over {tried}: p = {_chance(test.p)}.")
     return how
 
 
-def _chance(p: float) -> str:
-    return "less than 0.001" if p < 0.001 else f"{p:.3f}"
+def _chance_words(result: bridge.comparing.Comparison) -> str:
+    test = result.permutation
+    if test is None:
+        return ""
+    tried = f"all {test.arrangements} arrangements" if test.exact else f"{test.arrangements} random arrangements"
+    return f"Permutation test over {tried}: p {'is less than 0.001' if test.p < 0.001 else f'= {test.p:.3f}'}."
 
 
 def _cautions(first: Group, second: Group) -> list[str]:

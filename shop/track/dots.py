@@ -7,8 +7,8 @@ import statistics
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-WIDTH, LEFT, RIGHT, ROW, TOP, BOTTOM = 640, 130, 20, 34, 14, 40
-LABEL_LETTERS = 18
+WIDTH, LEFT, RIGHT, ROW, TOP, BOTTOM = 700, 190, 24, 34, 14, 40
+LABEL_LETTERS = 27
 
 
 @dataclass(frozen=True)

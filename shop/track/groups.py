@@ -3,12 +3,12 @@
 from __future__ import annotations
 
 from collections import Counter
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, field
 
 from shop.launches import bridge
 from shop.track.figures import Figure
-from shop.track.models import Pass, WeatherReading
+from shop.track.models import Pass, WeatherReading, Weekend
 from shop.track.weather import PassAir, air_of
 from shop.units import default_unit, show
 
@@ -72,6 +72,7 @@ class Question:
 def group(runs: Sequence[Pass], station: dict[int, list[WeatherReading]], question: Question) -> Grouped:
     """Group `runs` (with revision and weekend, in order of time); `station` holds readings by weekend id."""
     groups: dict[str, Group] = {}
+    names = weekend_names({run.weekend_id: run.weekend for run in runs}.values())
     left_out: Counter[str] = Counter()
     for run in runs:
         air = air_of(run, station.get(run.weekend_id, []))
@@ -79,7 +80,7 @@ def group(runs: Sequence[Pass], station: dict[int, list[WeatherReading]], questi
         if reason:
             left_out[reason] += 1
             continue
-        key, label = _place(run, question.by)
+        key, label = _place(run, question.by, names)
         found = groups.setdefault(key, Group(key, label))
         found.runs.append(run)
         factor = air.air.factor if question.corrected and air.air else None
@@ -109,11 +110,18 @@ def _why_not(run: Pass, air: PassAir, question: Question) -> str:
     return ""
 
 
-def _place(run: Pass, by: str) -> tuple[str, str]:
-    weekend = f"{run.weekend.place}, {run.weekend.days_text}"
+def weekend_names(weekends: Iterable[Weekend]) -> dict[int, str]:
+    """The shortest name that tells the weekends apart: the place, with its days where they came to it twice."""
+    chosen = list(weekends)
+    places = Counter(weekend.place for weekend in chosen)
+    return {w.pk: w.place if places[w.place] == 1 else f"{w.place}, {w.days_text}" for w in chosen}
+
+
+def _place(run: Pass, by: str, names: dict[int, str]) -> tuple[str, str]:
+    weekend = names[run.weekend_id]
     if by == BY_WEEKEND or run.revision is None:
         return f"w{run.weekend_id}", weekend
-    if by == BY_BOTH:
+    if by == BY_BOTH and len(names) > 1:
         return f"r{run.revision_id}w{run.weekend_id}", f"{run.revision.label} at {weekend}"
     return f"r{run.revision_id}", run.revision.label
 

@@ -16,22 +16,37 @@ from shop.track.figures import BY_KEY
 from shop.track.groups import BY_BOTH, Question, group
 from shop.track.models import Pass, WeatherReading, Weekend
 from shop.track.quantities import text_of
-from shop.track.slip import TIMES
-from shop.track.slip_rows import SlipRow, slip_row
+from shop.track.slip import COLUMNS, TIMES, Column
+from shop.track.slip_rows import SlipRow, slip_row, when_text
 from shop.units import default_unit, show
 
 COMPARED = ("time_60", "from_60_to_330", "time_1320")
 
 
 @dataclass(frozen=True)
+class PassLine:
+    """One pass as a line of the table: under each column its figure as run, and corrected."""
+
+    when: str
+    row: SlipRow
+    cells: list[tuple[str, str]]
+
+
+@dataclass(frozen=True)
 class WeekendPart:
-    """One weekend of one car: its conditions and passes."""
+    """One weekend of one car: its conditions and passes, with only the columns that some slip fills."""
 
     weekend: Weekend
     elevation: str
     air: str
     counts: str
-    rows: list[SlipRow]
+    columns: list[str]
+    lines: list[PassLine]
+
+    @property
+    def width(self) -> int:
+        """Columns a note under a pass may span."""
+        return len(self.columns) + 3
 
 
 @dataclass(frozen=True)
@@ -41,6 +56,7 @@ class Marked:
     label: str
     simulated: str
     measured: str
+    passes: str
     difference: str
 
 
@@ -54,6 +70,7 @@ class RevisionPart:
     launch: str
     foreseen: list[tuple[str, str]]
     marks: list[Marked]
+    reach: str
 
 
 @dataclass(frozen=True)
@@ -62,6 +79,11 @@ class Monday:
     revisions: list[RevisionPart]
     statements: list[Statement]
     left_out: list[str]
+
+    @property
+    def how(self) -> str:
+        """How the intervals were made: said once for all of them."""
+        return " ".join(max((statement.how for statement in self.statements), key=len, default=()))
 
 
 def monday(car: Car, weekends: Sequence[Weekend], station: dict[int, list[WeatherReading]], units: str) -> Monday:
@@ -80,12 +102,39 @@ def _weekend(weekend: Weekend, runs: list[Pass], station: dict[int, list[Weather
     rows = [slip_row(run, station.get(weekend.pk, []), units) for run in runs]
     aborted = sum(run.aborted for run in runs)
     counts = f"{len(runs)} pass{'' if len(runs) == 1 else 'es'}" + (f", {aborted} aborted" if aborted else "")
-    known = [row for row in rows if not row.air.missing]
-    air = "not known" if not known else (
-        known[0].air.density_altitude if len(known) == 1
-        else f"{known[0].air.density_altitude} on the first pass, {known[-1].air.density_altitude} on the last"
+    filled = [i for i, column in enumerate(COLUMNS) if any(getattr(run, column.field) is not None for run in runs)]
+    speeds = {run.speed_unit for run in runs}
+    lines = [
+        PassLine(when_text(row.run), row, [_cell(row, i, COLUMNS[i], len(speeds) > 1) for i in filled]) for row in rows
+    ]
+    return WeekendPart(
+        weekend, text_of(weekend.elevation), _air_words(rows), counts, [_header(COLUMNS[i], speeds) for i in filled], lines
     )
-    return WeekendPart(weekend, text_of(weekend.elevation), air, counts, rows)
+
+
+def _cell(row: SlipRow, i: int, column: Column, mixed: bool) -> tuple[str, str]:
+    cell = row.cells[i]
+    with_unit = column.kind == "speed" and mixed
+    return (cell.raw, cell.corrected) if with_unit else (cell.bare, cell.bare_corrected)
+
+
+def _header(column: Column, speeds: set[str]) -> str:
+    if column.kind != "speed":
+        return f"{column.label}, s"
+    return f"{column.mark}, {speeds.copy().pop()}" if len(speeds) == 1 else f"{column.mark}, speed"
+
+
+def _air_words(rows: list[SlipRow]) -> str:
+    known = [row.air for row in rows if not row.air.missing]
+    if not known:
+        return "not known"
+    if len(known) == 1:
+        return f"{known[0].density_altitude} ({known[0].conditions})"
+    first, last = known[0], known[-1]
+    return (
+        f"{first.density_altitude} on the first pass ({first.conditions}),"
+        f" {last.density_altitude} on the last ({last.conditions})"
+    )
 
 
 def _revisions(runs: Sequence[Pass], units: str) -> list[RevisionPart]:
@@ -105,9 +154,10 @@ def _revisions(runs: Sequence[Pass], units: str) -> list[RevisionPart]:
         job = revision.jobs.filter(kind="launch").select_related("result").order_by("-id").first()
         done = job is not None and job.state == Job.DONE
         histories, figures = (job.result.histories, job.result.figures) if done else ({}, {})
+        slip = bridge.slip_of_run(histories)
         parts.append(RevisionPart(
             revision, earlier, changes, _launch_words(job), _foreseen(job, figures, units) if done else [],
-            _marks(revision, runs, bridge.slip_of_run(histories)),
+            _marks(revision, runs, slip.times), _reach(slip, units),
         ))
         before = revision
     return parts
@@ -150,11 +200,21 @@ def _marks(revision: Revision, runs: Sequence[Pass], simulated: dict[str, float]
         middle = median(values) if values else None
         rows.append(Marked(
             column.label,
-            "the run ends before it" if foreseen is None else f"{foreseen:.3f} s",
-            "—" if middle is None else f"{middle:.3f} s ({len(values)}; best {min(values):.3f})",
+            "—" if foreseen is None else f"{foreseen:.3f} s",
+            "—" if middle is None else f"{middle:.3f} s",
+            f"{len(values)}, best {min(values):.3f}" if values else "",
             "—" if middle is None or foreseen is None else f"{middle - foreseen:+.3f} s".replace("-", "−"),
         ))
     return rows
+
+
+def _reach(slip: bridge.RunSlip, units: str) -> str:
+    """How far the launch itself went, where that is short of 60 ft."""
+    if slip.continued_from is None:
+        return ""
+    unit = default_unit("distance", units)
+    ran = show(slip.continued_from, "distance", unit, decimals=0)
+    return f"The launch ends at {ran}; to 60 ft it is continued at its last pull."
 
 
 def _statements(

@@ -20,15 +20,14 @@ class OnTheCar:
 
 
 def on_the_car(car: Car) -> OnTheCar:
-    """The revision of the last pass entered, unless a newer one was issued since; else the newest issued."""
+    """The revision of the last pass that names one, unless a newer one was issued since; else the newest issued."""
     issued = Revision.objects.filter(car=car, number__isnull=False).order_by("-number").first()
-    last = Pass.objects.filter(car=car).select_related("revision").order_by("-created_at", "-id").first()
+    named = Pass.objects.filter(car=car, revision__isnull=False)
+    last = named.select_related("revision").order_by("-created_at", "-id").first()
     if issued is None:
         return OnTheCar(None, f"{car} has no issued revision yet")
     if last is None:
-        return OnTheCar(issued, f"{issued.label}, the newest; no pass has been entered yet")
+        return OnTheCar(issued, f"{issued.label}, the newest; no pass names one yet")
     if issued.issued_at > last.created_at:
         return OnTheCar(issued, f"{issued.label}, issued since the last pass")
-    if last.revision is None:
-        return OnTheCar(None, "none: the last pass was entered without a revision")
     return OnTheCar(last.revision, f"{last.revision.label}, as on the last pass")

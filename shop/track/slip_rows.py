@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from dataclasses import dataclass
+from decimal import Decimal
 
 from shop.launches import bridge
 from shop.track.models import Pass, WeatherReading, Weekend
@@ -18,6 +19,8 @@ class Cell:
     label: str
     raw: str = ""
     corrected: str = ""
+    bare: str = ""  # as run, without its unit, for a column whose header has it
+    bare_corrected: str = ""
 
 
 @dataclass(frozen=True)
@@ -57,16 +60,23 @@ def _cell(run: Pass, column: Column, factor: float | None) -> Cell:
     value = getattr(run, column.field)
     if value is None:
         return Cell(column.label)
-    raw = figure_text(column, value, run.speed_unit)
+    raw = _both(column, value, run)
     if factor is None or column.kind == "reaction":
-        return Cell(column.label, raw)
-    standard = bridge.corrected(float(value), factor, speed=column.kind == "speed")
-    return Cell(column.label, raw, figure_text(column, standard, run.speed_unit))
+        return Cell(column.label, raw[0], "", raw[1])
+    standard = _both(column, bridge.corrected(float(value), factor, speed=column.kind == "speed"), run)
+    return Cell(column.label, raw[0], standard[0], raw[1], standard[1])
+
+
+def _both(column: Column, value: Decimal | float, run: Pass) -> tuple[str, str]:
+    return figure_text(column, value, run.speed_unit), figure_text(column, value, unit=False)
 
 
 def _title(run: Pass) -> str:
-    when = f"{run.day.day} {run.day:%b}" + (f", {run.clock:%H:%M}" if run.clock else "")
-    return f"Pass {run.number}, {when}"
+    return f"Pass {run.number}, {when_text(run)}"
+
+
+def when_text(run: Pass) -> str:
+    return f"{run.day.day} {run.day:%b}" + (f" {run.clock:%H:%M}" if run.clock else "")
 
 
 def _state(run: Pass) -> str:

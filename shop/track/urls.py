@@ -1,6 +1,6 @@
 from django.urls import path
 
-from shop.track.views import comparing, files, monday, passes, weekends
+from shop.track.views import comparing, files, monday, passes, quick_revision, weekends
 
 app_name = "track"
 
@@ -13,6 +13,7 @@ urlpatterns = [
     path("weekends/<int:weekend_id>/passes/quick", passes.quick, name="quick"),
     path("weekends/<int:weekend_id>/passes/new", passes.new, name="pass-new"),
     path("weekends/<int:weekend_id>/on-the-car", passes.revision_options, name="on-the-car"),
+    path("weekends/<int:weekend_id>/cars/<int:car_id>/revision", quick_revision.quick_revision, name="quick-revision"),
     path("weekends/<int:weekend_id>/passes.csv", files.download, name="download"),
     path("weekends/<int:weekend_id>/empty.csv", files.blank, name="blank"),
     path("weekends/<int:weekend_id>/import", files.import_passes, name="import"),

@@ -110,3 +110,9 @@ def test_bad_input_is_named():
         compare_passes(A, [float("nan")])
     with pytest.raises(ValueError, match="confidence is 2"):
         compare_passes(A, B, confidence=2)
+
+
+def test_equal_values_have_no_scatter():
+    # 1.3 three times over has a mean one bit off 1.3.
+    assert summarise_passes([1.3] * 3).deviation == 0.0
+    assert compare_passes([1.3] * 3, [1.4] * 3).welch is None

@@ -60,9 +60,9 @@ def _now(typed: dict[str, Any], weekend: Weekend) -> dict[str, str]:
 @shop_view()
 def revision_options(request: HttpRequest, weekend_id: int) -> HttpResponse:
     """The revision field of the quick entry, for the car just chosen."""
-    get_object_or_404(Weekend, pk=weekend_id)
+    weekend = get_object_or_404(Weekend, pk=weekend_id)
     car = get_object_or_404(Car, pk=_id(request.GET.get("car", "")))
-    return render(request, "track/_revision.html", revision_field(car, {}))
+    return render(request, "track/_revision.html", {"weekend": weekend, **revision_field(car, {})})
 
 
 @form_view(WRITE)
