@@ -75,7 +75,7 @@
       hovermode: "x unified", hoverlabel: { bgcolor: palette.sheet, bordercolor: palette.faint, font: { color: palette.ink } },
       dragmode: matchMedia("(pointer: coarse)").matches ? false : "zoom",
       showlegend: pair || chart.names.length > 1, legend: { orientation: "h", y: -0.22, yanchor: "top", x: 0 },
-      xaxis: { ...axis, fixedrange: false, anchor: pair ? "y2" : "y", title: { text: `Time, ${chart.data.unit}`, standoff: 6 }, range: chart.span, hoverformat: ".3f", zeroline: false },
+      xaxis: { ...axis, fixedrange: false, anchor: pair ? "y2" : "y", title: { text: `Time, ${chart.data.unit}`, standoff: 6 }, range: chart.span, hoverformat: ".3f", unifiedhovertitle: { text: `at %{x:.3f} ${chart.data.unit}` }, zeroline: false },
       yaxis: { ...axis, title: { text: units, standoff: 6 }, domain: pair ? [0.36, 1] : [0, 1] },
     };
     if (pair) layout.yaxis2 = { ...axis, title: { text: "difference", standoff: 6 }, domain: [0, 0.26] };
@@ -147,17 +147,13 @@
       if (change["xaxis.autorange"]) spanAll(undefined, chart);
       else if (change["xaxis.range[0]"] !== undefined) spanAll([change["xaxis.range[0]"], change["xaxis.range[1]"]], chart);
     });
+    const others = () => charts.filter((other) => other !== chart && other.plot.isConnected);
     chart.plot.on("plotly_hover", function (seen) {
-      if (passing || !seen.points.length) return;
-      passing = true;
-      const pointNumber = seen.points[0].pointNumber;
-      for (const other of charts) {
-        if (other !== chart && other.plot.isConnected && pointNumber < other.data.time.length) Plotly.Fx.hover(other.plot, [{ curveNumber: 0, pointNumber }]);
-      }
-      passing = false;
+      // The last argument: the chart that is told does not tell it back.
+      if (seen.points.length) for (const other of others()) Plotly.Fx.hover(other.plot, { xval: seen.points[0].x }, isPair(other) ? ["xy", "xy2"] : "xy", true);
     });
     chart.plot.on("plotly_unhover", function () {
-      for (const other of charts) if (other !== chart && other.plot.isConnected) Plotly.Fx.unhover(other.plot);
+      for (const other of others()) Plotly.Fx.unhover(other.plot);
     });
   }
 
@@ -228,15 +224,16 @@
     }
   }
 
-  function recolour() {
+  function redraw() {
     for (const chart of charts.filter((chart) => chart.plot.isConnected)) {
       const drawn = figure(chart, colours());
       Plotly.react(chart.plot, drawn.data, drawn.layout);
+      Plotly.Plots.resize(chart.plot);
     }
   }
 
   document.addEventListener("DOMContentLoaded", () => start(document));
   document.addEventListener("htmx:load", (event) => start(event.detail.elt));
-  document.addEventListener("themechange", recolour);
-  matchMedia("(prefers-color-scheme: dark)").addEventListener("change", recolour);
+  document.addEventListener("themechange", redraw);
+  for (const media of ["(prefers-color-scheme: dark)", "print"]) matchMedia(media).addEventListener("change", redraw);
 })();

@@ -1,48 +1,100 @@
-// Keeps what a person has typed: across an expired session, and against leaving by accident.
+// Keeps what a person has typed: across an expired sign-in, a broken connection, and against leaving by accident.
 (function () {
-  const key = (form) => "typed:" + location.pathname + ":" + (form.id || form.action);
+  const key = (form) => "typed:" + location.pathname + ":" + (form.id || form.getAttribute("action") || "");
+  const kept = (field) => field.name && !["hidden", "password", "file", "submit", "button"].includes(field.type);
+  const ticked = (field) => field.type === "checkbox" || field.type === "radio";
 
-  function remember(form) {
+  // Name of each field -> the values it holds; several for boxes that share a name, none for those all left empty.
+  function typedIn(form) {
     const typed = {};
     for (const field of form.elements) {
-      if (!field.name || field.type === "hidden" || field.type === "password" || field.type === "file") continue;
-      if ((field.type === "checkbox" || field.type === "radio") && !field.checked) continue;
-      typed[field.name] = field.value;
+      if (!kept(field)) continue;
+      const values = (typed[field.name] ??= []);
+      if (field.multiple && field.options) values.push(...Array.from(field.selectedOptions, (option) => option.value));
+      else if (!ticked(field) || field.checked) values.push(field.value);
     }
-    sessionStorage.setItem(key(form), JSON.stringify(typed));
+    return typed;
+  }
+
+  function putBack(form, typed) {
+    const used = {};
+    for (const field of form.elements) {
+      if (!kept(field) || !(field.name in typed)) continue;
+      const values = typed[field.name];
+      if (ticked(field)) field.checked = values.includes(field.value);
+      else if (field.multiple && field.options) for (const option of field.options) option.selected = values.includes(option.value);
+      else field.value = values[(used[field.name] = (used[field.name] ?? -1) + 1)] ?? field.value;
+    }
+    // What a page works out from its form is worked out anew.
+    form.dispatchEvent(new Event("change", { bubbles: true }));
+  }
+
+  function remember(form) {
+    try {
+      sessionStorage.setItem(key(form), JSON.stringify(typedIn(form)));
+    } catch {
+      // The browser keeps nothing here (full, or forbidden); the warning before leaving still stands.
+    }
+  }
+
+  function sayRestored(form) {
+    const button = document.createElement("button");
+    button.type = "button";
+    button.textContent = "Use what is stored instead";
+    button.addEventListener("click", function () {
+      sessionStorage.removeItem(key(form));
+      form.dataset.unsaved = "";
+      location.reload();
+    });
+    const notice = document.createElement("p");
+    notice.className = "notice restored";
+    notice.setAttribute("role", "status");
+    notice.append("What you had typed here was put back; it is not saved yet.", button);
+    form.before(notice);
   }
 
   function restore(form) {
-    const kept = sessionStorage.getItem(key(form));
-    if (!kept || form.dataset.fresh === "no") return;
-    const typed = JSON.parse(kept);
-    for (const field of form.elements) {
-      if (!(field.name in typed) || field.type === "hidden") continue;
-      if (field.type === "radio" || field.type === "checkbox") field.checked = field.value === typed[field.name];
-      else field.value = typed[field.name];
+    let typed = null;
+    try {
+      typed = JSON.parse(sessionStorage.getItem(key(form)));
+    } catch {
+      sessionStorage.removeItem(key(form));
     }
+    if (!typed) return;
     form.dataset.unsaved = "yes";
+    // The same where the server has refused the form and sent it back with all it held.
+    if (JSON.stringify(typed) === JSON.stringify(typedIn(form))) return;
+    putBack(form, typed);
+    sayRestored(form);
+  }
+
+  // A form that was sent is done with once a page without it is shown, or one that says it was taken.
+  function forgetTaken(forms) {
+    const sent = sessionStorage.getItem("sent");
+    if (!sent || document.querySelector("form[data-sign-in]")) return;
+    const here = forms.some((form) => key(form) === sent);
+    if (here && !document.querySelector(".messages .success")) return;
+    sessionStorage.removeItem(sent);
+    sessionStorage.removeItem("sent");
   }
 
   document.addEventListener("DOMContentLoaded", function () {
-    for (const form of document.querySelectorAll("form[data-keep]")) {
+    const forms = Array.from(document.querySelectorAll("form[data-keep]"));
+    forgetTaken(forms);
+    for (const form of forms) {
       restore(form);
-      form.addEventListener("input", function () {
-        form.dataset.unsaved = "yes";
-        remember(form);
-      });
+      for (const change of ["input", "change"]) {
+        form.addEventListener(change, function (event) {
+          if (event.target === form) return;
+          form.dataset.unsaved = "yes";
+          remember(form);
+        });
+      }
       form.addEventListener("submit", function () {
-        // What was typed stays until a page without this form shows that it was taken.
         form.dataset.unsaved = "";
+        remember(form);
         sessionStorage.setItem("sent", key(form));
       });
-    }
-    const sent = sessionStorage.getItem("sent");
-    if (sent && !Array.from(document.querySelectorAll("form[data-keep]")).some((form) => key(form) === sent)) {
-      if (!document.querySelector("form[data-sign-in]")) {
-        sessionStorage.removeItem(sent);
-        sessionStorage.removeItem("sent");
-      }
     }
   });
 
