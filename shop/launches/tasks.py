@@ -13,7 +13,7 @@ from django.db import close_old_connections
 from django_scopes import scope, scopes_disabled
 
 from shop.launches import services
-from shop.launches.kinds import KINDS
+from shop.launches.kinds import KINDS, SHARED
 from shop.launches.models import Job
 
 log = logging.getLogger(__name__)
@@ -39,7 +39,7 @@ def run_job(job_id: int) -> None:
     worker = f"{socket.gethostname()}:{os.getpid()}"
     # The message names a job of any shop; its row says which scope the work runs in.
     with scopes_disabled():
-        job = services.claim(job_id, worker)
+        job = services.claim(job_id, worker) or services.join(job_id, SHARED)
     if job is not None:
         with scope(shop=job.shop):
             work_on(job)

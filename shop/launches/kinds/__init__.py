@@ -11,3 +11,6 @@ from shop.launches.models import Job
 Run = Callable[[Job, Callable[[float], None]], dict[str, Any] | None]
 
 KINDS: dict[str, Run] = {"launch": launch.run}
+
+# Kinds that several workers work on at once: a message that finds such a job running joins in.
+SHARED: set[str] = set()
