@@ -9,5 +9,8 @@ urlpatterns = [
     path("", include("shop.people.urls")),
     path("", include("shop.garage.urls")),
     path("", include("shop.setups.urls")),
+    path("", include("shop.launches.urls")),
+    path("", include("shop.track.urls")),
+    path("", include("shop.sheets.urls")),
     path("", include("shop.api.urls")),
 ]

@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import hashlib
 import json
-from collections.abc import Mapping
+import logging
+from collections.abc import Collection, Mapping
 from datetime import datetime, timedelta
 from typing import Any
 
@@ -19,6 +20,8 @@ from shop.people.models import Membership
 from shop.refusals import Refused
 from shop.setups.models import Revision
 
+log = logging.getLogger(__name__)
+
 LEASE = timedelta(seconds=30)
 MOST_ATTEMPTS = 3
 __all__ = ["SOLVER_VERSION", "CannotSolve"]
@@ -26,8 +29,9 @@ RESULT_PARTS = ("statics", "modes", "figures", "events", "histories")
 
 
 def input_hash(data: Mapping[str, Any]) -> str:
-    """SHA-256 of the input's canonical JSON: equal inputs, equal hash."""
-    return hashlib.sha256(json.dumps(data, sort_keys=True, separators=(",", ":")).encode()).hexdigest()
+    """SHA-256 of the input's canonical JSON, its name left out: what solves alike has the same hash."""
+    named = {key: value for key, value in data.items() if key != "name"}
+    return hashlib.sha256(json.dumps(named, sort_keys=True, separators=(",", ":")).encode()).hexdigest()
 
 
 def send(job: Job) -> None:
@@ -36,7 +40,8 @@ def send(job: Job) -> None:
 
     try:
         run_job.delay(job.pk)
-    except Exception:  # any broker fault: connection refused, disk full, folder gone
+    except Exception as fault:  # any broker fault: connection refused, disk full, folder gone
+        log.warning("job %s could not be sent and waits for the sweep: %s", job.pk, fault)
         return
     Job.objects.filter(pk=job.pk).update(sent_at=timezone.now())
 
@@ -51,10 +56,34 @@ def queue(member: Membership, revision: Revision, kind: str, data: Mapping[str, 
 
 
 def request_launch(member: Membership, revision: Revision) -> Job:
-    """Queue the launch of an issued revision, from the car file frozen with it."""
+    """The launch of an issued revision, from the car file frozen with it: queued, or taken over where it was solved before."""
     if not revision.issued or revision.car_file is None:
         raise Refused(f"{revision} is a draft; its launch is solved once it is issued")
+    solved = solved_before(revision.car_file)
+    if solved is not None:
+        return take_over(member, revision, solved)
     return queue(member, revision, "launch", revision.car_file)
+
+
+def solved_before(data: Mapping[str, Any]) -> Job | None:
+    """A launch of this shop that was solved from the same input by the same solver: the answer is the same to the last bit."""
+    alike = Job.objects.filter(kind="launch", state=Job.DONE, input_hash=input_hash(data), solver_version=SOLVER_VERSION)
+    return alike.filter(result__isnull=False).select_related("result", "revision__car").order_by("id").first()
+
+
+def take_over(member: Membership, revision: Revision, solved: Job) -> Job:
+    """A job that is done from the start, with a copy of the result of one solved from the same input."""
+    now = timezone.now()
+    with transaction.atomic():
+        job = Job.objects.create(
+            shop=member.shop, kind="launch", revision=revision, requested_by=member.user, input=revision.car_file,
+            input_hash=solved.input_hash, state=Job.DONE, progress=1.0, started_at=now, finished_at=now,
+            solver_version=solved.solver_version,
+        )
+        parts = {name: getattr(solved.result, name) for name in RESULT_PARTS}
+        Result.objects.create(shop=member.shop, job=job, attempt=0, **parts)
+        record(member, "took over the result of", solved, job=job.pk, revision=str(revision))
+    return job
 
 
 def claim(job_id: int, worker: str, now: datetime | None = None) -> Job | None:
@@ -70,6 +99,12 @@ def claim(job_id: int, worker: str, now: datetime | None = None) -> Job | None:
         error="",
     )
     return Job.objects.select_related("shop", "revision__car").get(pk=job_id) if taken else None
+
+
+def join(job_id: int, shared: Collection[str]) -> Job | None:
+    """A running job that others may help with, under the attempt that is on it."""
+    helped = Job.objects.filter(pk=job_id, kind__in=list(shared), state=Job.RUNNING, cancel_requested=False)
+    return helped.select_related("shop", "revision__car").first()
 
 
 def _mine(job: Job):
@@ -134,10 +169,19 @@ def request_cancel(member: Membership, job: Job) -> Job:
 
 
 def retry(member: Membership, job: Job) -> Job:
-    """The same work again as a new job; the failed or cancelled one stays on record."""
+    """The same work again as a new job; the failed or cancelled one stays on record.
+
+    Work already under way for it is given instead of a second one: a button may be pressed twice.
+    """
+    if job.kind == "study":
+        raise Refused("a study is asked anew from its own page")
     if job.state not in (Job.FAILED, Job.CANCELLED):
         raise Refused(f"this job is {job.state}; only failed or cancelled work is tried again")
     with transaction.atomic():
+        alike = Job.objects.filter(revision_id=job.revision_id, kind=job.kind, input_hash=job.input_hash)
+        under_way = alike.filter(state__in=[Job.WAITING, Job.RUNNING]).order_by("id").first()
+        if under_way is not None:
+            return under_way
         again = queue(member, job.revision, job.kind, job.input)
         record(member, "tried again", again, after=job.pk)
     return again

@@ -30,6 +30,8 @@ def return_strays() -> int:
             error=f"the worker died {services.MOST_ATTEMPTS} times on this job; it is not tried again by itself",
         )
         expired.update(state=Job.WAITING, lease_until=None, sent_at=None)
+        # Cancelled in the very moment in which it was returned: no worker would ever claim it.
+        Job.objects.filter(state=Job.WAITING, cancel_requested=True).update(state=Job.CANCELLED, finished_at=now)
         lost = Job.objects.filter(state=Job.WAITING).filter(
             Q(sent_at__isnull=True, created_at__lt=now - UNSENT)
             | Q(sent_at__lt=now - SENT_LONG_AGO)
