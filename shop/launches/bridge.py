@@ -397,12 +397,6 @@ def summarise_passes(values: list[float], *, lower_is_better: bool) -> comparing
     return comparing.summarise_passes(values, lower_is_better)
 
 
-# --- what the solver calls its numbers: label, dimension, description ------------------------------------------------
-
-FIGURE_TABLE: dict[str, tuple[str, str, str]] = {name: tuple(row) for name, row in solver.FIGURES.items()}
-HISTORY_TABLE: dict[str, tuple[str, str, str]] = {name: tuple(row) for name, row in solver.HISTORIES.items()}
-
-
 def survey_figures(survey: Survey, units: str) -> list[Row]:
     """Weights, percentages and where the CG is along the car, from the scales and the tape."""
     values = car_file.survey_si(survey)
