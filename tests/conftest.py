@@ -22,7 +22,7 @@ from tests.services.chromium import Complaints, Pages, running_chromium
 from tests.services.own_worker import OwnWorker
 from tests.services.postgres import Postgres, running_postgres
 from tests.services.redis_server import Redis, running_redis
-from tests.services.stack import KINDS, Stack, running_stack
+from tests.services.stack import KINDS, Stack, running_stack, servers_for
 
 BROWSER = {"chromium", "pages", "page"}
 SERVICES = {"stack", "worker", "redis_server", "postgres_server"}
@@ -52,10 +52,7 @@ def postgres_server() -> Iterator[Postgres]:
 @pytest.fixture(scope="module", params=KINDS)
 def stack(request: pytest.FixtureRequest) -> Iterator[Stack]:
     """The whole application, once on SQLite and a folder, once on PostgreSQL and Redis; one of each for a module."""
-    servers = []
-    if request.param == "hosted":
-        servers = [request.getfixturevalue("postgres_server"), request.getfixturevalue("redis_server")]
-    with running_stack(request.param, *servers) as running:
+    with running_stack(request.param, *servers_for(request.param, request)) as running:
         yield running
 
 

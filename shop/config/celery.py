@@ -8,6 +8,8 @@ from __future__ import annotations
 
 import logging
 import os
+import threading
+import time
 import warnings
 from typing import Any
 
@@ -47,6 +49,8 @@ app.conf.update(
     broker_url=settings.BROKER_URL,
     broker_transport_options=broker_options(settings.BROKER_URL),
     broker_connection_retry_on_startup=True,
+    broker_connection_max_retries=None,  # a broker may be away for a night; its workers wait
+    broker_channel_error_retry=True,
     task_ignore_result=True,
     task_serializer="json",
     accept_content=["json"],
@@ -73,9 +77,15 @@ def prepare(**_: Any) -> None:
 
 
 @signals.worker_ready.connect
-def begin_sweeping(sender: Any, **_: Any) -> None:
-    sweep()
-    sender.timer.call_repeatedly(SWEEP_EVERY, sweep)
+def begin_sweeping(**_: Any) -> None:
+    """Sweep now and then for good, on a thread of its own: a worker's timer is emptied when it loses its broker."""
+
+    def keep_sweeping() -> None:
+        while True:
+            sweep()
+            time.sleep(SWEEP_EVERY)
+
+    threading.Thread(target=keep_sweeping, name="sweeping", daemon=True).start()
 
 
 def sweep() -> None:

@@ -80,6 +80,8 @@ def database(name: str, default: Path) -> dict[str, Any]:
             f"{name} begins with {parts.scheme!r}; allowed are sqlite:////folder/file and postgresql://host/name."
         )
     options = {key: values[-1] for key, values in parse_qs(parts.query).items()}
+    # A worker that freezes inside a transaction must not hold its job's row, and with it the sweep, for ever.
+    options.setdefault("options", "-c idle_in_transaction_session_timeout=60s -c lock_timeout=20s")
     try:
         port = str(parts.port or "")
     except ValueError as fault:

@@ -31,8 +31,11 @@ FORGOTTEN_AFTER = 24 * 3600  # seconds; a taken message that old belongs to a pr
 def options(folder: Path) -> dict[str, Any]:
     """The transport's options for a queue in `folder`, whose parts are made here."""
     parts = {name: folder / name for name in ("messages", "taken", "bindings")}
-    for part in parts.values():
-        part.mkdir(mode=0o700, parents=True, exist_ok=True)
+    try:
+        for part in parts.values():
+            part.mkdir(mode=0o700, parents=True, exist_ok=True)
+    except OSError as fault:  # jobs are rows: they are kept all the same, and sent once the folder is back
+        log.error("the queue's folder %s cannot be made: %s", folder, fault.strerror)
     return {
         "data_folder_in": str(parts["messages"]),
         "data_folder_out": str(parts["messages"]),
@@ -53,6 +56,17 @@ def write_whole(file: Path, text: str) -> None:
         raise ChannelError(f"the queue cannot be written in {file.parent}: {fault.strerror}") from fault
 
 
+def names_in(folder: Path) -> list[str]:
+    """The names in `folder`, oldest first. A folder that is gone is made again, with those beside it."""
+    try:
+        return sorted(os.listdir(folder))
+    except FileNotFoundError:  # somebody cleared the data folder under a running worker
+        options(folder.parent)
+        return []
+    except OSError as fault:  # a lost connection is what a worker knows how to wait out
+        raise ConnectionError(f"the queue's folder {folder} cannot be read: {fault.strerror}") from fault
+
+
 class Channel(filesystem.Channel):
     """A channel whose every write is whole and whose every take is one rename."""
 
@@ -66,7 +80,7 @@ class Channel(filesystem.Channel):
 
     def _get(self, queue: str) -> Any:
         folder = Path(self.data_folder_in)
-        for name in sorted(os.listdir(folder)):
+        for name in names_in(folder):
             if name.partition(".")[2] != f"{queue}.msg":
                 continue
             taken = Path(self.processed_folder) / name
@@ -81,6 +95,9 @@ class Channel(filesystem.Channel):
             except ValueError:  # a damaged disk; the job row behind it is returned by the sweep
                 log.error("the queue held a message that cannot be read, %s; it was dropped", name)
         raise Empty
+
+    def _size(self, queue: str) -> int:
+        return sum(name.partition(".")[2] == f"{queue}.msg" for name in names_in(Path(self.data_folder_in)))
 
     def _queue_bind(self, exchange: str, routing_key: str, pattern: str, queue: str) -> None:
         binding = (routing_key or "", pattern or "", queue or "")
@@ -105,3 +122,8 @@ class Transport(filesystem.Transport):
     """`folder://`: the queue in a folder."""
 
     Channel = Channel
+    connection_errors = (*filesystem.Transport.connection_errors, ConnectionError)
+
+    def establish_connection(self) -> Any:
+        names_in(Path(self.client.transport_options["data_folder_in"]))
+        return super().establish_connection()

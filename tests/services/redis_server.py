@@ -16,9 +16,14 @@ import redis
 from tests.services.programs import needed
 
 
-@dataclass(frozen=True)
+@dataclass
 class Redis:
-    socket: Path
+    folder: Path
+    process: subprocess.Popen[bytes] | None = None
+
+    @property
+    def socket(self) -> Path:
+        return self.folder / "socket"
 
     @property
     def url(self) -> str:
@@ -31,41 +36,36 @@ class Redis:
         with self.client() as client:
             client.flushall()
 
-
-@contextmanager
-def running_redis() -> Iterator[Redis]:
-    folder = Path(tempfile.mkdtemp(prefix="redis-", dir="/tmp"))
-    found = Redis(folder / "socket")
-    process = subprocess.Popen(
-        [
-            needed("redis-server"),
-            "--port",
-            "0",
-            "--unixsocket",
-            found.socket,
-            "--save",
-            "",
-            "--appendonly",
-            "no",
-            "--dir",
-            folder,
-        ],
-        stdout=(folder / "log").open("w"),
-        stderr=subprocess.STDOUT,
-    )
-    try:
+    def start(self) -> None:
+        command = [needed("redis-server"), "--port", "0", "--unixsocket", self.socket, "--dir", self.folder]
+        with (self.folder / "log").open("ab") as log:
+            self.process = subprocess.Popen(
+                [*command, "--save", "", "--appendonly", "no"], stdout=log, stderr=subprocess.STDOUT
+            )
         last = time.monotonic() + 20
         while True:
             try:
-                with found.client() as client:
+                with self.client() as client:
                     client.ping()
-                break
+                return
             except redis.ConnectionError:
-                if process.poll() is not None or time.monotonic() > last:
-                    raise RuntimeError(f"Redis did not start:\n{(folder / 'log').read_text()}") from None
+                if self.process.poll() is not None or time.monotonic() > last:
+                    raise RuntimeError(f"Redis did not start:\n{(self.folder / 'log').read_text()}") from None
                 time.sleep(0.01)
-        yield found
+
+    def kill(self) -> None:
+        """At once, with all it held: nothing of it is on a disk."""
+        if self.process is not None:
+            self.process.kill()
+            self.process.wait(10)
+
+
+@contextmanager
+def running_redis() -> Iterator[Redis]:
+    server = Redis(Path(tempfile.mkdtemp(prefix="redis-", dir="/tmp")))
+    try:
+        server.start()
+        yield server
     finally:
-        process.terminate()
-        process.wait(10)
-        shutil.rmtree(folder, ignore_errors=True)
+        server.kill()
+        shutil.rmtree(server.folder, ignore_errors=True)

@@ -24,6 +24,7 @@ from contextlib import contextmanager
 from pathlib import Path
 from typing import Any
 
+import pytest
 import yaml
 
 from shop.config import web
@@ -94,7 +95,7 @@ class Stack:
         assert done.returncode == 0 or not check, f"manage.py {' '.join(arguments)}:\n{done.stdout}{done.stderr}"
         return done
 
-    def python(self, source: str) -> Any:
+    def python(self, source: str, **extra: str) -> Any:
         """Run `source` inside the application, every shop's rows in reach; give what it assigns to `answer`."""
         program = (
             "import json, django; django.setup()\n"
@@ -103,7 +104,7 @@ class Stack:
             + "".join(f"    {line}\n" for line in source.strip().splitlines())
             + "print('\\x1e' + json.dumps(answer, default=str))\n"
         )
-        environment = {**self.environment, "DJANGO_SETTINGS_MODULE": "shop.config.settings"}
+        environment = {**self.environment, "DJANGO_SETTINGS_MODULE": "shop.config.settings", **extra}
         done = subprocess.run([sys.executable, "-c", program], cwd=ROOT, env=environment, capture_output=True, text=True)
         assert done.returncode == 0, done.stderr
         return json.loads(done.stdout.rpartition("\x1e")[2])
@@ -133,23 +134,26 @@ class Stack:
         else:
             module = [part.replace("0.0.0.0:8000", f"fd://{fd}") for part in compose()["services"]["web"]["command"][2:]]
             self.web = self.spawn("web", module, (fd,))
-        until(self.answers, f"the web server; its log: {self.log('web')}")
+        until(self.answers, "the web server")
 
     def answers(self) -> bool:
         assert self.web is not None
         assert self.web.poll() is None, self.log("web").read_text()
         try:
-            return self.get("/healthz")[0] == 200
+            status, words = self.get("/healthz")
         except OSError:
             return False
+        assert status == 200, f"{status}: {words}\n{self.log('web').read_text()}"
+        return True
 
-    def start_worker(self) -> None:
-        """Start a worker and wait until it takes work."""
+    def start_worker(self, wait: bool = True) -> None:
+        """Start a worker and, unless told otherwise, wait until it takes work."""
         command = list(WORKER) if self.kind == "embedded" else compose()["services"]["worker"]["command"][2:]
         command[command.index("WARNING")] = "INFO"
         before = self.log("worker").stat().st_size if self.log("worker").exists() else 0
         self.worker = self.spawn("worker", command)
-        until(lambda: self.worker_ready(before), "the worker", 90)
+        if wait:
+            until(lambda: self.worker_ready(before), "the worker", 90)
 
     def worker_ready(self, since: int) -> bool:
         assert self.worker is not None
@@ -185,9 +189,16 @@ class Stack:
             return fault.code, fault.read().decode()
 
 
+def servers_for(kind: str, request: pytest.FixtureRequest) -> list[Any]:
+    """The servers that a stack of this kind needs, started if they are not."""
+    return [request.getfixturevalue(name) for name in ("postgres_server", "redis_server")] if kind == "hosted" else []
+
+
 @contextmanager
-def prepared_stack(kind: str, postgres: Postgres | None = None, redis: Redis | None = None) -> Iterator[Stack]:
-    """A stack with its database migrated and nothing running yet."""
+def prepared_stack(
+    kind: str, postgres: Postgres | None = None, redis: Redis | None = None, *, pages: bool = False
+) -> Iterator[Stack]:
+    """A stack with its database migrated, its files collected if it shows pages, and nothing running yet."""
     folder = Path(tempfile.mkdtemp(prefix="stack-", dir="/tmp"))
     settings = {
         "LEDGER_DATA_DIR": str(folder / "var"),
@@ -202,7 +213,8 @@ def prepared_stack(kind: str, postgres: Postgres | None = None, redis: Redis | N
     stack = Stack(kind, settings, folder)
     try:
         stack.python("from shop.config import preparing\nwith preparing.alone():\n    preparing.migrate(str)\n")
-        collect_once(stack)
+        if pages:
+            collect_once(stack)
         yield stack
     finally:
         stack.stop()
@@ -218,7 +230,7 @@ def collect_once(stack: Stack) -> None:
 
 @contextmanager
 def running_stack(kind: str, postgres: Postgres | None = None, redis: Redis | None = None) -> Iterator[Stack]:
-    with prepared_stack(kind, postgres, redis) as stack:
+    with prepared_stack(kind, postgres, redis, pages=True) as stack:
         stack.start_web()
         stack.start_worker()
         yield stack

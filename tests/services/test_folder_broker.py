@@ -6,6 +6,7 @@ import base64
 import json
 import multiprocessing
 import os
+import shutil
 import time
 from pathlib import Path
 from queue import Empty
@@ -138,3 +139,19 @@ def test_a_queue_that_cannot_be_written_says_so(tmp_path: Path, channel: Any) ->
     (tmp_path / "q" / "messages").rmdir()
     with pytest.raises(ChannelError, match="the queue cannot be written"):
         channel._put("work", {})
+
+
+def test_a_folder_cleared_under_a_running_worker_is_made_again(tmp_path: Path, channel: Any) -> None:
+    shutil.rmtree(tmp_path / "q")
+    with pytest.raises(Empty):
+        channel._get("work")
+    channel._put("work", {"n": 1})
+    assert channel._get("work") == {"n": 1}
+
+
+def test_a_folder_that_cannot_be_read_counts_as_a_lost_connection(tmp_path: Path, channel: Any) -> None:
+    messages = tmp_path / "q" / "messages"
+    messages.rmdir()
+    messages.write_text("")
+    with pytest.raises(ConnectionError, match="cannot be read"):
+        channel._get("work")
