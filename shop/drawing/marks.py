@@ -39,12 +39,12 @@ def link_names(canvas: Canvas, scene: Scene) -> None:
         canvas.text(middle, _SHORT[name], "label", dy=-10 - min(40 * steep, 60), anchor="middle")
 
 
-def hole(canvas: Canvas, place: str, number: int, point: Point, chosen: bool, choosing: bool) -> None:
-    """One hole of a bracket; a button where one is choosing."""
+def hole(canvas: Canvas, place: str, number: int, point: Point, chosen: bool, reach: float | None) -> None:
+    """One hole of a bracket; a button that answers within `reach` where one is choosing."""
     x, y = canvas.at(point)
     css = "hole chosen" if chosen else "hole"
     dot = f'<circle class="{css}" cx="{x:.1f}" cy="{y:.1f}" r="{9 if chosen else 7}"/>'
-    if not choosing:
+    if reach is None:
         canvas.add(dot)
         return
     name = quoteattr(f"{BRACKETS[place]}, hole {number}" + (", chosen" if chosen else ""))
@@ -52,7 +52,7 @@ def hole(canvas: Canvas, place: str, number: int, point: Point, chosen: bool, ch
     canvas.add(
         f'<g class="pick" data-bracket="{place}" data-hole="{number}" tabindex="0" role="button" '
         f'aria-pressed="{"true" if chosen else "false"}" aria-label={name}>'
-        f'<circle class="reach" cx="{x:.1f}" cy="{y:.1f}" r="26"/>{dot}'
+        f'<circle class="reach" cx="{x:.1f}" cy="{y:.1f}" r="{reach:.1f}"/>{dot}'
         f'<text class="number" x="{x + dx:.1f}" y="{y + 5:.1f}" text-anchor="{"start" if dx > 0 else "end"}">'
         f"{number}</text></g>"
     )

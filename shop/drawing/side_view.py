@@ -6,11 +6,15 @@ a wrong entry looks wrong. Colours and line widths are the stylesheet's (static/
 
 from __future__ import annotations
 
+import math
+
 from django.utils.safestring import SafeString, mark_safe
 
 from shop.drawing import marks
-from shop.drawing.canvas import Canvas
+from shop.drawing.canvas import Canvas, Point
 from shop.drawing.scene import Scene
+
+REACH = 26.0
 
 
 def side_view(scene: Scene, *, mode: str = "read") -> SafeString:
@@ -86,9 +90,17 @@ def _rear(scene: Scene, choosing: bool) -> str:
     # The chosen holes last: a spare one never lies over the pin.
     every = [(place, number, hole) for place, holes in scene.brackets.items() for number, hole in enumerate(holes, 1)]
     for place, number, hole in every if choosing else sorted(every, key=lambda one: scene.chosen.get(one[0]) == one[1]):
-        marks.hole(canvas, place, number, hole, scene.chosen.get(place) == number, choosing)
+        reach = _reach(canvas, hole, every) if choosing else None
+        marks.hole(canvas, place, number, hole, scene.chosen.get(place) == number, reach)
     title = "Rear suspension enlarged" + (": choose a hole" if choosing else "")
     return canvas.svg(title, "side-view rear", "group" if choosing else "img")
+
+
+def _reach(canvas: Canvas, hole: Point, every: list[tuple[str, int, Point]]) -> float:
+    """Half way to the nearest other hole: what one touches is what one gets (js/holes.js fills the gaps)."""
+    here = canvas.at(hole)
+    others = [math.dist(here, canvas.at(other)) for _, _, other in every if other != hole]
+    return max(min([REACH, *(0.5 * gap for gap in others)]), 4.0)
 
 
 def _in_words(scene: Scene) -> str:
