@@ -30,6 +30,8 @@ SOLVER_VERSION = solver.SOLVER_VERSION
 LAUNCH_FIGURES = solver.FIGURES
 # The same of every curve.
 LAUNCH_HISTORIES = solver.HISTORIES
+# The same of the car at rest.
+LAUNCH_STATICS = solver.STATIC_FIGURES
 
 
 class CannotSolve(Exception):

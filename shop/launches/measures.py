@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass
 from typing import Any
 
-from shop.launches.bridge import LAUNCH_FIGURES, LAUNCH_HISTORIES
+from shop.launches.bridge import LAUNCH_FIGURES, LAUNCH_HISTORIES, LAUNCH_STATICS
 from shop.setups.differences import signed
 from shop.units import default_unit, show, unit_of
 
@@ -41,7 +41,7 @@ class Measure:
 
 def measure(key: str, units: str, linkage: str = "four-link") -> Measure:
     """The measure of a figure or a curve of the registries; KeyError for another name."""
-    known = LAUNCH_FIGURES.get(key) or LAUNCH_HISTORIES[key]
+    known = LAUNCH_FIGURES.get(key) or LAUNCH_HISTORIES.get(key) or LAUNCH_STATICS[key]
     label, description = known.label, known.description
     if linkage == "ladder-bar":
         for words, own in LADDER_WORDS.items():

@@ -56,7 +56,7 @@ def queue(member: Membership, revision: Revision, kind: str, data: Mapping[str, 
 
 
 def request_launch(member: Membership, revision: Revision) -> Job:
-    """The launch of an issued revision, from the car file frozen with it: queued, or taken over where it was solved before."""
+    """The launch of an issued revision, from the car file frozen with it: queued, or taken over where solved before."""
     if not revision.issued or revision.car_file is None:
         raise Refused(f"{revision} is a draft; its launch is solved once it is issued")
     solved = solved_before(revision.car_file)
@@ -66,7 +66,7 @@ def request_launch(member: Membership, revision: Revision) -> Job:
 
 
 def solved_before(data: Mapping[str, Any]) -> Job | None:
-    """A launch of this shop that was solved from the same input by the same solver: the answer is the same to the last bit."""
+    """A launch of this shop that was solved from the same input by the same solver: its answer is the same to the bit."""
     alike = Job.objects.filter(kind="launch", state=Job.DONE, input_hash=input_hash(data), solver_version=SOLVER_VERSION)
     return alike.filter(result__isnull=False).select_related("result", "revision__car").order_by("id").first()
 
