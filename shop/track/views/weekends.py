@@ -30,7 +30,8 @@ REFUSED, CONFLICT = 422, 409
 
 @shop_view()
 def weekends(request: HttpRequest) -> HttpResponse:
-    every = Weekend.objects.annotate(pass_count=Count("passes"), car_count=Count("passes__car", distinct=True))
+    counted = Weekend.objects.annotate(pass_count=Count("passes"), car_count=Count("passes__car", distinct=True))
+    every = counted.order_by("-starts_on", "-id")
     page = Paginator(every, 40).get_page(request.GET.get("page"))
     return render(request, "track/weekends.html", {"page": page, "may_write": request.member.may(WRITE)})
 
