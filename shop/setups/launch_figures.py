@@ -4,25 +4,16 @@ from __future__ import annotations
 
 from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Any
 
-from shop.launches.bridge import LAUNCH_FIGURES
-from shop.setups.differences import signed
-from shop.units import default_unit, show
+from shop.launches.figures import GROUPS, REST, WHEN, figure_row, happened
+from shop.launches.measures import LAUNCH_FIGURES, measure
 
-# What one looks at first; the rest unfolds below it.
-FIRST = (
-    "peak_rear_load", "first_peak_rear_load", "rear_load_dip", "mean_rear_load_250ms", "least_front_load", "front_lift_time",
-    "front_lift_height", "peak_pitch", "peak_housing_angle", "rear_squat", "rear_separation", "peak_rear_spring_force",
-    "upper_link_tension", "upper_link_compression", "lower_link_tension", "lower_link_compression", "peak_acceleration",
-    "peak_grip_needed", "peak_grip_used", "peak_wheelie_bar_load",
-)
-_WHEN = "_time"
+Solved = Mapping[str, float | None]
 
 
 @dataclass(frozen=True)
 class Pair:
-    """One figure of launch a and launch b; a dash where it did not happen."""
+    """One figure of launch a and launch b; "did not happen" where it did not."""
 
     key: str
     label: str
@@ -32,50 +23,31 @@ class Pair:
     difference: str = ""
 
 
-def pairs_of(a: Mapping[str, Any], b: Mapping[str, Any], units: str) -> tuple[list[Pair], list[Pair]]:
-    """(the first figures, the others); one that happened in neither launch is left out."""
-    found = [
-        _pair(key, a, b, units)
-        for key in LAUNCH_FIGURES
-        if not _is_when(key) and (a.get(key) is not None or b.get(key) is not None)
-    ]
-    first = sorted((pair for pair in found if pair.key in FIRST), key=lambda pair: FIRST.index(pair.key))
-    return first, [pair for pair in found if pair.key not in FIRST]
+def pairs_of(a: Solved, b: Solved, units: str, linkage: str) -> list[tuple[str, list[Pair]]]:
+    """Under each of the launch page's headings, every figure that happened in one launch or the other."""
+    placed = {key for keys in GROUPS.values() for key in keys}
+    others = [key for key in LAUNCH_FIGURES if key not in placed and not _is_when(key)]
+    groups = []
+    for title, keys in {**GROUPS, REST: others}.items():
+        pairs = [_pair(key, a, b, units, linkage) for key in keys if happened(key, a) or happened(key, b)]
+        if pairs:
+            groups.append((title, pairs))
+    return groups
 
 
 def _is_when(key: str) -> bool:
     # A peak's time is shown with the peak.
-    return key.endswith(_WHEN) and key.removesuffix(_WHEN) in LAUNCH_FIGURES
+    return key.endswith(WHEN) and key.removesuffix(WHEN) in LAUNCH_FIGURES
 
 
-def _pair(key: str, a: Mapping[str, Any], b: Mapping[str, Any], units: str) -> Pair:
-    quantity = LAUNCH_FIGURES[key]
-    dimension, unit, decimals = _unit_of(key, quantity.dimension, units)
+def _pair(key: str, a: Solved, b: Solved, units: str, linkage: str) -> Pair:
+    rows = [figure_row(key, figures, units, linkage) for figures in (a, b)]
+    texts = [
+        f"{row.text} {row.when}".strip() if happened(key, figures) else "did not happen"
+        for row, figures in zip(rows, (a, b), strict=True)
+    ]
     difference = ""
-    if a.get(key) is not None and b.get(key) is not None:
-        texts = [show(values[key], dimension, unit, decimals=decimals) for values in (a, b)]
-        if texts[0] != texts[1]:
-            difference = signed(b[key] - a[key], dimension, unit, decimals=decimals)
-    text_a, text_b = (_text(key, values, dimension, unit, decimals) for values in (a, b))
-    return Pair(key, quantity.label, quantity.description, text_a, text_b, difference)
-
-
-def _text(key: str, values: Mapping[str, Any], dimension: str, unit: str, decimals: int | None) -> str:
-    text = show(values.get(key), dimension, unit, decimals=decimals)
-    when = values.get(f"{key}{_WHEN}")
-    if values.get(key) is None or when is None:
-        return text
-    return f"{text} at {show(when, 'time', 's')}"
-
-
-def _unit_of(key: str, dimension: str, units: str) -> tuple[str, str, int | None]:
-    """The house's dimension, the shop's unit and the decimals for one of the solver's dimensions."""
-    if dimension == "coefficient":
-        return "ratio", "", 2
-    if dimension == "percent":  # the solver gives whole percents
-        return "ratio", "", 1
-    if dimension == "spin":
-        return "rotation", "rpm", None
-    if dimension == "speed" and "shock" in key:
-        dimension = "shaft_speed"
-    return dimension, default_unit(dimension, units), None
+    before, after = a.get(key), b.get(key)
+    if before is not None and after is not None and rows[0].text != rows[1].text:
+        difference = measure(key, units, linkage).difference(after - before)
+    return Pair(key, rows[1].label, rows[1].description, *texts, difference)

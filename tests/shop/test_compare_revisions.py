@@ -79,7 +79,7 @@ def test_solved_launches_stand_beside_each_other(client, world, pair):
             results.append(Job.objects.get(pk=job.pk).result.figures)
     response = signed_in(client, world.owner).get(url(world))
     page = response.content.decode()
-    shown = {figure.key: figure for figure in response.context["first_figures"]}
+    shown = {pair.key: pair for _, pairs in response.context["figure_pairs"] for pair in pairs}
     peaks = [figures["peak_rear_load"] / POUND_FORCE for figures in results]
     assert shown["peak_rear_load"].a.startswith(f"{peaks[0]:,.0f} lbf at ")
     assert shown["peak_rear_load"].difference == f"{peaks[1] - peaks[0]:+,.0f} lbf".replace("-", "−")

@@ -6,10 +6,12 @@ from typing import Any
 
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, render
+from django.urls import reverse
 
 from shop.drawing.side_view import side_view
 from shop.garage.models import Car
 from shop.launches import bridge
+from shop.launches.figures import lifts
 from shop.launches.models import Job
 from shop.people.access import shop_view
 from shop.refusals import Refused
@@ -80,6 +82,10 @@ def _launches(a: Revision, b: Revision, units: str) -> dict[str, Any]:
     jobs = [revision.jobs.filter(kind="launch").select_related("result").order_by("-id").first() for revision in (a, b)]
     if not all(job is not None and job.state == Job.DONE for job in jobs):
         return {"jobs": jobs, "both_done": False}
-    first, others = pairs_of(jobs[0].result.figures, jobs[1].result.figures, units)
-    return {"jobs": jobs, "both_done": True, "first_figures": first, "other_figures": others, "charts": CHARTS,
-            "histories": f"/launches/{jobs[1].pk}/histories.json?compare={jobs[0].pk}"}
+    solved = [job.result.figures for job in jobs]
+    histories = f"{reverse('launches:histories', args=[jobs[1].pk])}?compare={jobs[0].pk}"
+    return {
+        "jobs": jobs, "both_done": True, "charts": CHARTS, "histories": histories,
+        "figure_pairs": pairs_of(*solved, units, b.survey.linkage),
+        "lifts": any(lifts(figures) for figures in solved),
+    }
