@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import hashlib
-from collections.abc import Iterable, Mapping
+from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import Any
 
@@ -11,17 +11,15 @@ from shop.garage.models import Car
 from shop.people.models import Shop
 from shop.track.csv_table import Row, Table, guarded, read_table, written
 from shop.track.forms import PassForm
+from shop.track.known_passes import DUPLICATE, FILLS, NEW, REFUSED, KnownPasses
 from shop.track.models import Pass, Weekend
 from shop.track.pass_csv import HEADERS, NAMES, Reader
 from shop.track.slip import COLUMNS, figure_text
 
-NEW, DUPLICATE, REFUSED = "new", "duplicate", "refused"
-Key = tuple[object, ...]
-
 
 @dataclass(frozen=True)
 class Fate:
-    """One row: what becomes of it, why, and how it reads."""
+    """One row: what becomes of it, why, and how it reads. One that fills in `run` has only what it adds as `values`."""
 
     line: int
     fate: str
@@ -30,6 +28,7 @@ class Fate:
     figures: str = ""
     values: Mapping[str, Any] = field(default_factory=dict)
     raw: tuple[str, ...] = ()
+    run: Pass | None = None
 
 
 @dataclass(frozen=True)
@@ -46,6 +45,14 @@ class Plan:
     @property
     def new(self) -> list[Fate]:
         return self.of(NEW)
+
+    @property
+    def fills(self) -> list[Fate]:
+        return self.of(FILLS)
+
+    @property
+    def to_write(self) -> int:
+        return len(self.new) + len(self.fills)
 
     @property
     def duplicates(self) -> list[Fate]:
@@ -71,12 +78,12 @@ def plan_passes(text: str, weekend: Weekend, shop: Shop, car: Car | None = None)
     """Each row's fate. Refused when the file as a whole cannot be read."""
     table = read_table(text, NAMES)
     reader = Reader(shop, table.units, car)
-    known = Known(weekend.passes.select_related("car"))
+    known = KnownPasses(weekend.passes.select_related("car", "revision"))
     fates = [_fate(row, table, weekend, shop, reader, known) for row in table.rows]
     return Plan(fates, table.notes, table.header)
 
 
-def _fate(row: Row, table: Table, weekend: Weekend, shop: Shop, reader: Reader, known: Known) -> Fate:
+def _fate(row: Row, table: Table, weekend: Weekend, shop: Shop, reader: Reader, known: KnownPasses) -> Fate:
     if row.fault:
         return Fate(row.line, REFUSED, row.fault, raw=row.raw)
     data, faults = reader.data(row.cells)
@@ -91,11 +98,11 @@ def _fate(row: Row, table: Table, weekend: Weekend, shop: Shop, reader: Reader, 
     values = form.values
     figures = _figures(values)
     title = str(values["car"]) + (f", {values['clock']:%H:%M}" if values["clock"] else "")
-    fate, words = known.look_up(values, row.line)
-    if fate == NEW:
-        missing = "no revision: not counted in comparisons" if values["revision"] is None else ""
-        words = " ".join([*([missing + "."] if missing else []), *form.doubts])
-    return Fate(row.line, fate, words, title, figures, values, row.raw)
+    match = known.look_up(values, row.line)
+    if match.fate != NEW:
+        return Fate(row.line, match.fate, match.words, title, figures, match.fields, row.raw, match.run)
+    missing = ["no revision: not counted in comparisons."] if values["revision"] is None else []
+    return Fate(row.line, NEW, " ".join([*missing, *form.doubts]), title, figures, values, row.raw)
 
 
 def _figures(values: Mapping[str, Any]) -> str:
@@ -104,52 +111,3 @@ def _figures(values: Mapping[str, Any]) -> str:
         for column in COLUMNS if values[column.field] is not None
     ]
     return ", ".join(shown) or "no figures"
-
-
-class Known:
-    """The passes a row may repeat: those entered, and the rows above it."""
-
-    def __init__(self, entered: Iterable[Pass]) -> None:
-        self.slips: dict[Key, tuple[Key, str]] = {}
-        for run in entered:
-            values = {column.field: getattr(run, column.field) for column in COLUMNS}
-            values |= {"car": run.car, "number": run.number, "day": run.day, "clock": run.clock}
-            self._note(values, f"pass {run.number}, entered before")
-
-    def look_up(self, values: Mapping[str, Any], line: int) -> tuple[str, str]:
-        """The row's fate and why; a new one is remembered for the rows below it."""
-        slip = _slip(values)
-        for key in _keys(values):
-            if key not in self.slips:
-                continue
-            theirs, where = self.slips[key]
-            if theirs == slip:
-                return DUPLICATE, f"the same as {where}"
-            what = "pass number" if key[0] == "number" else "time of day"
-            return REFUSED, f"the {what} is that of {where}, with other figures; correct it there, or change it here"
-        self._note(values, f"line {line}")
-        return NEW, ""
-
-    def _note(self, values: Mapping[str, Any], where: str) -> None:
-        for key in _keys(values):
-            self.slips.setdefault(key, (_slip(values), where))
-
-
-def _slip(values: Mapping[str, Any]) -> Key:
-    return tuple(values[column.field] for column in COLUMNS)
-
-
-def _keys(values: Mapping[str, Any]) -> list[Key]:
-    """What tells that two rows are of one pass: number, time of day, or a whole slip that agrees."""
-    car, slip = values["car"].pk, _slip(values)
-    keys: list[Key] = []
-    if values["number"]:
-        keys.append(("number", car, values["number"]))
-    if values["clock"]:
-        keys.append(("clock", car, values["day"], values["clock"]))
-    if sum(value is not None for value in slip) >= 3:
-        keys.append(("slip", car, *slip))
-    elif not keys:
-        # Nothing else names this pass, and the same time on the same day is more likely the same line.
-        keys.append(("slip", car, values["day"], *slip))
-    return keys

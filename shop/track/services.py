@@ -107,16 +107,23 @@ def remove_pass(member: Membership, run: Pass, version: int) -> None:
             raise Stale(run)
 
 
-def import_passes(member: Membership, weekend: Weekend, rows: Iterable[Values], file_name: str) -> int:
-    """Enter the passes of a file, all or none."""
+def import_passes(
+    member: Membership, weekend: Weekend, rows: Iterable[Values], fills: Iterable[tuple[Pass, Values]], file_name: str
+) -> int:
+    """Enter the passes of a file and what it adds to passes already here, all or none."""
     with transaction.atomic():
-        count = 0
+        entered = filled = 0
         for values in rows:
             _one_at_a_time(values["car"])
             _create(member, weekend, values)
-            count += 1
-        record(member, "imported passes", weekend, passes=count, file=file_name[:120])
-    return count
+            entered += 1
+        for run, values in fills:
+            changed = Pass.objects.filter(pk=run.pk, version=run.version).update(**values, version=run.version + 1)
+            if not changed:
+                raise Refused(f"{run} was changed by somebody else just now; nothing has been written, look once more")
+            filled += 1
+        record(member, "imported passes", weekend, passes=entered, filled_in=filled, file=file_name[:120])
+    return entered + filled
 
 
 def import_weather(member: Membership, weekend: Weekend, rows: Iterable[Values], file_name: str) -> int:

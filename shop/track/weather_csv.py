@@ -9,7 +9,8 @@ from typing import Any
 from shop.people.models import Shop
 from shop.refusals import Refused
 from shop.track.csv_table import Row, read_table, unit_symbol
-from shop.track.import_passes import DUPLICATE, NEW, REFUSED, Fate, Plan
+from shop.track.import_passes import Fate, Plan
+from shop.track.known_passes import DUPLICATE, NEW, REFUSED
 from shop.track.models import Weekend
 from shop.track.quantities import AIR, ALTIMETER, BY_KEY, STATION
 from shop.units import Reading, ReadingError, default_unit, show

@@ -50,7 +50,7 @@ def confirm(client, weekend, preview, do="write"):
 
 def fates(response):
     page = response.content.decode()
-    return re.findall(r'<tr class="fate-(\w+)">\s*<td class="number">(\d+)</td>', page)
+    return re.findall(r'<tr class="fate-([\w-]+)">\s*<td class="number">(\d+)</td>', page)
 
 
 def words(response):
@@ -67,7 +67,9 @@ def test_it_works(client, world, weekend):
     assert (str(first.time_60), first.lane, first.revision.number, str(first.speed_1320)) == ("1.3120", "left", 1, "157.02")
     assert (second.clock.hour, second.number) == (15, 2)
     with scope(shop=world.shop):
-        assert LogEntry.objects.get(action="imported passes").detail == {"passes": 2, "file": "passes.csv"}
+        assert LogEntry.objects.get(action="imported passes").detail == {
+            "passes": 2, "filled_in": 0, "file": "passes.csv",
+        }
 
 
 def test_a_team_mate_may(client, world, weekend):
@@ -147,6 +149,45 @@ def test_another_slip_for_a_time_already_taken(client, world, weekend):
     preview = upload(signed_in(client, world.owner), weekend, GOOD + ROWS)
     assert [fate for fate, _ in fates(preview)] == ["refused", "new"]
     assert "the time of day is that of pass 1, entered before, with other figures" in words(preview)
+
+
+def test_a_row_that_knows_more_fills_in_what_is_missing(client, world, weekend):
+    # Entered by phone two minutes after the slip was printed, 60 ft only.
+    enter(world, weekend, time_60="1.312", clock="14:07", lane="right", temperature="84")
+    client = signed_in(client, world.owner)
+    rows = ROWS.replace(",left,", ",,")
+    preview = upload(client, weekend, GOOD + rows)
+    assert fates(preview) == [("fills-in", "2"), ("new", "3")]
+    assert "adds to pass 1, entered before: 330 ft, 1320 ft, speed at 1320 ft, revision" in words(preview)
+    confirm(client, weekend, preview)
+    first, second = passes_of(weekend)
+    assert (str(first.time_330), first.lane, first.revision.number, first.clock.minute) == ("3.6100", "right", 1, 7)
+    assert (first.version, list(first.readings), second.number) == (2, ["temperature"], 2)
+    assert [fate for fate, _ in fates(upload(client, weekend, GOOD + rows))] == ["duplicate", "duplicate"]
+
+
+def test_two_rows_cannot_fill_in_the_same_pass(client, world, weekend):
+    enter(world, weekend, time_60="1.312", clock="14:07")
+    text = "car,time,60 ft,330 ft\r\n218,14:05,1.312,3.610\r\n218,14:06,1.312,3.611\r\n"
+    preview = upload(signed_in(client, world.owner), weekend, text)
+    assert [fate for fate, _ in fates(preview)] == ["fills-in", "refused"] and "line 2 fills in pass 1" in words(preview)
+
+
+@pytest.mark.parametrize(("clock", "time", "fate"), [
+    ("14:35", "1.312", "fills-in"),  # half an hour is the most
+    ("14:36", "1.312", "new"),
+    ("14:07", "1.313", "new"),
+])
+def test_another_pass_is_not_taken_for_the_same(client, world, weekend, clock, time, fate):
+    enter(world, weekend, time_60=time, clock=clock)
+    assert fates(upload(signed_in(client, world.owner), weekend, GOOD + ROWS))[0] == (fate, "2")
+
+
+def test_what_would_come_out_of_order_together_is_refused(client, world, weekend):
+    enter(world, weekend, time_330="3.300", clock="14:05")
+    preview = upload(signed_in(client, world.owner), weekend, "car,time,60 ft\r\n218,14:05,3.312\r\n")
+    assert fates(preview) == [("refused", "2")]
+    assert "together with pass 1, entered before: 3.300 s to 330 ft cannot be" in words(preview)
 
 
 def test_a_fate_that_changed_meanwhile_is_shown_again(client, world, weekend):

@@ -66,8 +66,8 @@ def test_a_stranger_does_not_find_it(client, world, weekend):
 
 def test_an_id_of_nothing(client, world, weekend):
     client = signed_in(client, world.owner)
-    assert client.get(f"/weekends/{weekend.pk}/cars/987654/revision").status_code == 404
-    assert client.get(f"/weekends/987654/cars/{world.car.pk}/revision").status_code == 404
+    assert client.get(f"/weekends/{weekend.pk}/revision/987654").status_code == 404
+    assert client.get(f"/weekends/987654/revision/{world.car.pk}").status_code == 404
 
 
 @pytest.mark.parametrize(("typed", "said"), [

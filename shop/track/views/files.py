@@ -13,6 +13,7 @@ from django.shortcuts import get_object_or_404, redirect, render
 
 from shop.garage.models import Car
 from shop.people.access import action_view, form_view, shop_view
+from shop.people.models import Membership
 from shop.people.permissions import WRITE
 from shop.refusals import Refused
 from shop.track import services
@@ -24,20 +25,26 @@ from shop.track.quantities import ALTIMETER, PRESSURE_KINDS, STATION
 from shop.track.views.weekends import REFUSED
 from shop.track.weather_csv import default_units, plan_weather
 
-Write = Callable[..., int]
-
 
 @dataclass(frozen=True)
 class Kind:
     """What differs between a file of passes and one of weather."""
 
     what: str
-    url: str
-    write: Write
+    write: Callable[[Membership, Weekend, Plan, str], int]
 
 
-PASSES = Kind("passes", "track:import", services.import_passes)
-WEATHER = Kind("readings", "track:weather", services.import_weather)
+def _write_passes(member: Membership, weekend: Weekend, plan: Plan, name: str) -> int:
+    fills = [(row.run, row.values) for row in plan.fills if row.run]
+    return services.import_passes(member, weekend, [row.values for row in plan.new], fills, name)
+
+
+def _write_weather(member: Membership, weekend: Weekend, plan: Plan, name: str) -> int:
+    return services.import_weather(member, weekend, [row.values for row in plan.new], name)
+
+
+PASSES = Kind("passes", _write_passes)
+WEATHER = Kind("readings", _write_weather)
 
 
 @shop_view()
@@ -108,7 +115,7 @@ def _import(
     if request.POST.get("seal") != plan.seal:
         return render(request, "track/import.html", {**context, "changed": True}, status=409)
     try:
-        count = kind.write(request.member, weekend, [row.values for row in plan.new], name)
+        count = kind.write(request.member, weekend, plan, name)
     except Refused as refused:
         return render(request, "track/import.html", {**context, "fault": str(refused)}, status=REFUSED)
     messages.success(request, f"{count} {kind.what} from {name or 'the file'} are entered.")
