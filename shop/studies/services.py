@@ -120,5 +120,15 @@ def keep_yardstick(member: Membership, name: str, limits: Mapping[str, Any], wei
     return kept
 
 
-def is_study(job: Job) -> bool:
-    return job.kind == "study"
+def resume(member: Membership, study: Study) -> None:
+    """Put a cancelled or failed study back in the queue; its solved chunks stay."""
+    with transaction.atomic():
+        back = Job.objects.filter(pk=study.job_id, state__in=[Job.CANCELLED, Job.FAILED]).update(
+            state=Job.WAITING, cancel_requested=False, error="", lease_until=None, finished_at=None, sent_at=None
+        )
+        if not back:
+            raise Refused(f"this study is {study.job.state}; there is nothing to take up again")
+        study.chunks.filter(done_at__isnull=True).update(lease_until=None)
+        record(member, "took up again", study)
+        for _ in range(HELPERS):
+            transaction.on_commit(lambda: send(study.job))

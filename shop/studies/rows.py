@@ -1,0 +1,121 @@
+"""A study's choices as a person reads them: what is changed, what it reaches, which are worth a look."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+
+import numpy as np
+
+from shop.garage.quantities import BRACKETS
+from shop.launches.measures import Measure
+from shop.setups.quantities import BY_KEY
+from shop.studies.models import Study
+from shop.studies.plan import Choice, read_plan
+from shop.studies.ranking import Miss, nearest_misses, order, scores, within
+from shop.studies.services import columns_so_far
+from shop.studies.work import Columns
+from shop.studies.yardsticks import FIGURES, USUAL, limits_of, study_measure
+from shop.units import default_unit, show
+
+SHORT = {
+    "lower_chassis": "lower chassis", "lower_housing": "lower housing", "upper_chassis": "upper chassis",
+    "upper_housing": "upper housing", "ladder_chassis": "ladder front",
+}
+
+
+@dataclass(frozen=True)
+class RankedRow:
+    """One choice in the table."""
+
+    number: int
+    place: int
+    changes: list[str]
+    score: str
+    texts: list[str]
+    is_base: bool
+
+
+@dataclass(frozen=True)
+class Standing:
+    """A study as it stands: what is solved, what meets the limits, the best of it."""
+
+    solved: int
+    refused: dict[str, str]
+    meeting: int
+    rows: list[RankedRow]
+    misses: list[str]
+    columns: Columns
+    score: np.ndarray
+    among: np.ndarray
+
+
+def change_words(key: str, value: float, units: str) -> str:
+    if key in BRACKETS:
+        return f"{SHORT[key]} hole {value:g}"
+    quantity = BY_KEY[key]
+    return f"{quantity.label.lower()} {show(value, quantity.dimension, default_unit(quantity.dimension, units))}"
+
+
+def changes_of(choice: Choice, base: Mapping[str, float], units: str) -> list[str]:
+    """What a choice changes on the revision, in words; empty for the revision itself."""
+    return [
+        change_words(key, value, units)
+        for key, value in choice.items()
+        if key not in base or not np.isclose(value, base[key], rtol=1e-9)
+    ]
+
+
+def standing(study: Study, units: str, shown: list[str], most: int = 60) -> Standing:
+    """Rank what there is so far. `shown` are the figures the table has columns for."""
+    columns, refused = columns_so_far(study)
+    count, linkage = study.choices, study.revision.survey.linkage
+    known = {name: columns.get(name, np.full(count, np.nan)) for name in {*FIGURES, *shown}}
+    solved = np.isfinite(columns["peak_rear_load"]) if columns else np.zeros(count, dtype=bool)
+    limits = limits_of(study.limits)
+    among = within(known, limits, count) & solved
+    weights = {key: weight for key, weight in (study.weights or USUAL).items() if key in known}
+    score = scores(known, weights, among)
+    if not any(weights.values()):
+        score = np.where(among, 0.0, np.nan)
+    misses = []
+    if limits and solved.any() and not among.any():
+        only = {name: values[solved] for name, values in known.items()}
+        places = np.flatnonzero(solved)
+        misses = [_miss_words(miss, places, units, linkage) for miss in nearest_misses(only, limits, int(solved.sum()))]
+        misses = misses or ["No choice comes near: the limits contradict each other."]
+    ranked = order(score)[:most]
+    measures = [study_measure(key, units, linkage) for key in shown]
+    return Standing(
+        int(solved.sum()), refused, int(among.sum()), _rows(study, ranked, score, known, measures, units), misses, known,
+        score, among,
+    )
+
+
+def _rows(study: Study, ranked, score, known: Columns, measures: list[Measure], units: str) -> list[RankedRow]:
+    plan = read_plan(study.plan)
+    rows = []
+    for place, number in enumerate(ranked.tolist(), 1):
+        choice = choice_of(plan, number)
+        changes = changes_of(choice, plan.base, units)
+        texts = [measure.text(_plain(known[measure.key][number])) for measure in measures]
+        rows.append(RankedRow(number, place, changes, f"{100 * score[number]:.0f}", texts, not changes))
+    return rows
+
+
+def choice_of(plan, number: int) -> Choice:
+    return next(plan.between(number, number + 1))
+
+
+def _plain(value: float) -> float | None:
+    return float(value) if np.isfinite(value) else None
+
+
+def _miss_words(miss: Miss, places, units: str, linkage: str) -> str:
+    known = study_measure(miss.limit.figure, units, linkage)
+    side = "most" if miss.limit.most is not None and miss.value > miss.limit.most else "least"
+    bound = miss.limit.most if side == "most" else miss.limit.least
+    return (
+        f"{known.label}: the nearest is choice {places[miss.choice] + 1} with {known.text(miss.value)}; "
+        f"the limit is {'at most' if side == 'most' else 'at least'} {known.text(bound)}, missed by {known.text(miss.by)}"
+    )
