@@ -9,6 +9,7 @@ from solver.carfile import ensure_sound
 from solver.faults import LaunchFailed
 from solver.kernel import layout as L
 from solver.kernel.lanes import run_one, settle_one
+from solver.kernel.march import STABLE
 from solver.modes import Mode, modes_of_row
 from solver.packing import pack
 from solver.reduction import reduce
@@ -16,7 +17,7 @@ from solver.statics import Statics, statics_of_row
 from solver.tracing import event_list, histories_of
 from solver.version import SOLVER_VERSION
 
-LONGEST_STEP = 1.25e-3
+LONGEST_STEP = 2.5e-3
 
 REASONS = {
     L.NOT_FINITE: "the forces ran out of all bounds; the stiffest spring, shock or stop is too "
@@ -114,7 +115,7 @@ def launch(car, longest_step=LONGEST_STEP):
         settled=bool(np.abs(states[-1, [7 + L.Z, 7 + L.PITCH, 7 + L.SLIDE]]).max() < 0.02),
         quality={
             "steps": float(kept[L.A_STEPS]),
-            "longest_step": step,
+            "longest_step": float(min(step, STABLE / row.p[L.LAMBDA])),
             "link_drift": float(kept[L.A_DRIFT]),
             "step_error": float(kept[L.A_ERROR]),
         },

@@ -36,8 +36,9 @@ def pack(car):
     lines = _put_lines(scalars, n, columns, car.rear)
     _put_wheelie_bar(scalars, n, columns, car.wheelie_bar)
     _put_stops(scalars, columns, car)
+    n[L.FRONT_STOPS] = car.front.bump_stop is not None or car.front.droop_stop is not None
     tail = []
-    adder = Curves(n, tail, columns)
+    adder = Curves(scalars, n, tail, columns)
     _put_curves(adder, car, lines)
     table = put_drive(scalars, n, adder, car)
     n[L.HIT_AT], n[L.HIT_COUNT] = L.SCALARS + len(tail), len(table)
@@ -154,16 +155,18 @@ def _put_curves(adder, car, lines):
 class Curves:
     """Lays curves down one after another and notes where each stands."""
 
-    def __init__(self, n, tail, columns):
-        self.n, self.tail, self.columns = n, tail, columns
+    def __init__(self, scalars, n, tail, columns):
+        self.scalars, self.n, self.tail, self.columns = scalars, n, tail, columns
 
     def add(self, which, row, path=None, factor=1.0):
-        at = L.SCALARS + len(self.tail)
-        self.n[L.CURVES + 2 * which] = at
+        """Lay down (value, slope, knot, change, ...), noting the slope's column under `path`."""
+        leg = L.LEGS + 2 * which
+        self.scalars[leg], self.scalars[leg + 1] = row[:2]
+        self.n[L.CURVES + 2 * which] = L.SCALARS + len(self.tail)
         self.n[L.CURVES + 2 * which + 1] = (len(row) - 2) // 2
-        self.tail.extend(row)
+        self.tail.extend(row[2:])
         if path:
-            self.columns[path] = (at + 1, factor)
+            self.columns[path] = (leg + 1, factor)
 
     def spring(self, which, path, spring):
         if spring is None:

@@ -3,9 +3,8 @@
 import numpy as np
 
 from solver.car import Hit, has_engine
-from solver.geometry import meeting, parallel
 from solver.kernel import layout as L
-from solver.statics import plan_angles
+from solver.rest_figures import plan_angles
 
 # name: (output, greatest or least, factor)
 _PEAKS = {
@@ -115,35 +114,6 @@ def reduce(car, p, kept, log, counts):
                 figures[name] = np.full(len(p), np.nan)
     _forget_times(figures)
     return figures
-
-
-def reduce_statics(car, p):
-    """Ride height of settled lanes by the names of `STATIC_FIGURES`, arrays (lanes,)."""
-    lower = (p[:, L.LCX], p[:, L.LCZ]), (p[:, L.LHX], p[:, L.LHZ])
-    upper = (p[:, L.UCX], p[:, L.UCZ]), (p[:, L.UHX], p[:, L.UHZ])
-    x, z, w = meeting(*lower, *upper)
-    lower_plan, upper_plan = plan_angles(car)
-    with np.errstate(divide="ignore", invalid="ignore"):
-        centre_x = x / np.where(parallel(*lower, *upper, w), np.nan, w)
-        centre_z, slope = centre_x * z / x, z / x
-        neutral = p[:, L.CG_Z] / p[:, L.WHEELBASE]
-        rear = p[:, L.REAR_MASS]
-        axle = np.nan_to_num(rear * p[:, L.REAR_RADIUS] / centre_x)
-        dynamic = ((p[:, L.MASS] - rear) * slope + axle) / (p[:, L.MASS] * neutral)
-    return {
-        "rear_load": p[:, L.REAR_STATIC] + 0.0,
-        "front_load": p[:, L.FRONT_STATIC] + 0.0,
-        "rear_spring_force": p[:, L.REAR_SPRING_STATIC] + 0.0,
-        "upper_link_force": p[:, L.UPPER_STATIC] / np.cos(upper_plan),
-        "lower_link_force": p[:, L.LOWER_STATIC] / np.cos(lower_plan),
-        "instant_centre_x": centre_x,
-        "instant_centre_z": centre_z,
-        "instant_centre_slope": slope,
-        "anti_squat": 100.0 * slope / neutral,
-        "anti_squat_dynamic": 100.0 * dynamic,
-        "upper_bar_length": p[:, L.UPPER_LENGTH] / np.cos(upper_plan),
-        "lower_bar_length": p[:, L.LOWER_LENGTH] / np.cos(lower_plan),
-    }
 
 
 def first_time(log, counts, kind):

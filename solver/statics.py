@@ -6,10 +6,10 @@ from dataclasses import dataclass
 from solver.car import FourLink
 from solver.carfile import ensure_sound
 from solver.faults import CarError, Fault
-from solver.geometry import meeting, parallel
 from solver.kernel import layout as L
 from solver.kernel.lanes import settle_one
 from solver.packing import pack
+from solver.rest_figures import plan_angles, rest_figures
 
 
 @dataclass(frozen=True)
@@ -112,14 +112,13 @@ def statics_of_row(car, row):
     faults = rest_faults(p)
     if faults:
         raise CarError(faults)
-    centre = instant_centre_of(p)
+    rest = {name: float(values[0]) for name, values in rest_figures(car, p[None]).items()}
+    centre = _instant_centre(rest)
     neutral = car.cg[1] / car.wheelbase
+    rear, sprung = car.rear.unsprung_mass, car.mass - car.rear.unsprung_mass
     lower_plan, upper_plan = plan_angles(car)
     lower = _bar(p, L.LCX, L.LOWER_LENGTH, L.LOWER_STATIC, lower_plan)
     upper = _bar(p, L.UCX, L.UPPER_LENGTH, L.UPPER_STATIC, upper_plan)
-    rear, sprung = car.rear.unsprung_mass, car.mass - car.rear.unsprung_mass
-    # With parallel links the instant centre is so far off that the axle's part is nil.
-    axle_part = 0.0 if centre.x is None else rear * car.rear.tyre_radius / centre.x
     share = [float(v) for v in p[L.LINES : L.LINES + L.LINE_WIDTH * len(car.rear.springs)]]
     return Statics(
         rear_load=float(p[L.REAR_STATIC]),
@@ -129,8 +128,8 @@ def statics_of_row(car, row):
         upper_link_force=upper.force,
         lower_link_force=lower.force,
         instant_centre=centre,
-        anti_squat=100.0 * centre.slope / neutral,
-        anti_squat_dynamic=100.0 * (sprung * centre.slope + axle_part) / (car.mass * neutral),
+        anti_squat=rest["anti_squat"],
+        anti_squat_dynamic=rest["anti_squat_dynamic"],
         neutral_slope=neutral,
         sprung_neutral_line=(
             -rear * car.rear.tyre_radius / sprung,
@@ -174,24 +173,14 @@ def rest_faults(p):
     return []
 
 
-def instant_centre_of(p):
-    """`InstantCentre` of a settled row; refuses one straight above the rear patch."""
-    lower = (p[L.LCX], p[L.LCZ]), (p[L.LHX], p[L.LHZ])
-    upper = (p[L.UCX], p[L.UCZ]), (p[L.UHX], p[L.UHZ])
-    x, z, w = meeting(*lower, *upper)
-    if abs(x) <= 1e-9 * abs(z):
-        raise CarError([Fault("rear.linkage", None, "the bars' lines meet straight above the rear tyres")])
-    if parallel(*lower, *upper, w):
-        return InstantCentre(None, None, float(z / x))
-    return InstantCentre(float(x / w), float(z / w), float(z / x))
-
-
-def plan_angles(car):
-    """Plan angles of the lower and the upper bars, rad; nil for a ladder bar."""
-    linkage = car.rear.linkage
-    if isinstance(linkage, FourLink):
-        return linkage.lower.plan_angle, linkage.upper.plan_angle
-    return 0.0, 0.0
+def _instant_centre(rest):
+    """`InstantCentre` from ride height's figures; refuses one straight above the rear patch."""
+    x, z, slope = (rest[f"instant_centre_{part}"] for part in ("x", "z", "slope"))
+    if not abs(slope) < 1e9:
+        raise CarError(
+            [Fault("rear.linkage", None, "the bars' lines meet straight above the rear tyres")]
+        )
+    return InstantCentre(None, None, slope) if math.isnan(x) else InstantCentre(x, z, slope)
 
 
 def _bar(p, at, length, force, plan):

@@ -10,7 +10,8 @@ from solver.kernel import layout as L
 from solver.kernel.lanes import run_many
 from solver.launching import LONGEST_STEP, REASONS
 from solver.packing import pack
-from solver.reduction import reduce, reduce_statics
+from solver.reduction import reduce
+from solver.rest_figures import rest_figures
 
 CHUNK = 500
 
@@ -175,7 +176,7 @@ def _solve(car, p, n, longest_step):
     codes, counts = np.zeros(lanes, dtype=np.int64), np.zeros(lanes, dtype=np.int64)
     times = np.zeros(lanes)
     run_many(p, n, longest_step, kept, log, codes, times, counts)
-    figures, statics = reduce(car, p, kept, log, counts), reduce_statics(car, p)
+    figures, statics = reduce(car, p, kept, log, counts), rest_figures(car, p)
     failed = codes != L.SOLVED
     for values in figures.values():
         values[failed] = np.nan

@@ -7,7 +7,7 @@ import numpy as np
 from solver.car import Hit, has_engine
 from solver.geometry import meeting, parallel, turned
 from solver.kernel import layout as L
-from solver.statics import plan_angles
+from solver.rest_figures import plan_angles
 
 EVENT_WORDS = {
     (L.GATE_FRONT_TYRE, 0): ("front_tyres_leave", "Front tyres leave the ground"),
@@ -24,6 +24,8 @@ EVENT_WORDS = {
     (L.GATE_REAR_DROOP, 0): ("rear_off_droop", "Rear leaves its droop stop"),
     (L.GATE_WHEELIE, 1): ("wheelie_bar_touches", "Wheelie bar touches"),
     (L.GATE_WHEELIE, 0): ("wheelie_bar_lifts", "Wheelie bar lifts off"),
+    (L.GATE_SHIFT, 1): ("shift", "Shift to the next gear"),
+    (L.GATE_SHIFT, 0): ("below_shift", "Back below the shift speed"),
     (L.GATE_ROLLOUT, 1): ("rollout", "Front tyres clear the starting beam"),
     (L.GATE_ROLLOUT, 0): ("rolled_back", "Front tyres roll back into the starting beam"),
     (L.GATE_SIXTY_FOOT, 1): ("sixty_foot", "60 ft past the beam"),

@@ -5,43 +5,44 @@ goes on with the end slopes, costs two multiplications a knot.
 """
 
 from solver.kernel import layout as L
-from solver.kernel.jit import jit
+from solver.kernel.jit import inlined
 
 
-@jit
+@inlined
 def curve(p, n, which, v):
     """Value of curve `which` at `v`."""
-    at = n[L.CURVES + 2 * which]
+    value = p[L.LEGS + 2 * which] + p[L.LEGS + 2 * which + 1] * v
     count = n[L.CURVES + 2 * which + 1]
-    value = p[at] + p[at + 1] * v
-    for i in range(count):
-        past = v - p[at + 2 + 2 * i]
-        if past > 0.0:
-            value += p[at + 3 + 2 * i] * past
+    if count > 0:
+        at = n[L.CURVES + 2 * which]
+        for i in range(count):
+            past = v - p[at + 2 * i]
+            if past > 0.0:
+                value += p[at + 2 * i + 1] * past
     return value
 
 
-@jit
+@inlined
 def slope_at_rest(p, n, which):
     """Slope at zero; the mean of the two sides when a knot stands there."""
     at = n[L.CURVES + 2 * which]
-    slope = p[at + 1]
+    slope = p[L.LEGS + 2 * which + 1]
     for i in range(n[L.CURVES + 2 * which + 1]):
-        knot = p[at + 2 + 2 * i]
+        knot = p[at + 2 * i]
         if knot < 0.0:
-            slope += p[at + 3 + 2 * i]
+            slope += p[at + 2 * i + 1]
         elif knot == 0.0:
-            slope += 0.5 * p[at + 3 + 2 * i]
+            slope += 0.5 * p[at + 2 * i + 1]
     return slope
 
 
-@jit
+@inlined
 def steepest(p, n, which):
     """The greatest slope anywhere on the curve."""
     at = n[L.CURVES + 2 * which]
-    slope = p[at + 1]
+    slope = p[L.LEGS + 2 * which + 1]
     greatest = slope
     for i in range(n[L.CURVES + 2 * which + 1]):
-        slope += p[at + 3 + 2 * i]
+        slope += p[at + 2 * i + 1]
         greatest = max(greatest, slope)
     return greatest

@@ -8,18 +8,18 @@ also makes it a plain spring at standstill.
 
 from solver.kernel import layout as L
 from solver.kernel.curves import curve
-from solver.kernel.jit import jit
+from solver.kernel.jit import inlined
 from solver.kernel.tyre import fiala
 
 
-@jit
+@inlined
 def start_up(p, y):
     """State at the start: everything at rest, the engine at its launch speed."""
     y[:] = 0.0
     y[L.ENGINE_RATE] = p[L.ENGINE_SPEED]
 
 
-@jit
+@inlined
 def thrust(p, n, drive, y, load, dy, out):
     """Forward force on the axle and torque reaction on the housing (nose up positive).
 
@@ -33,17 +33,19 @@ def thrust(p, n, drive, y, load, dy, out):
     speed = y[7 + L.HX]
     dy[L.SPIN] = (torque - force * height) / p[L.WHEEL_INERTIA]
     slip_rate = y[L.SPIN] * p[L.REAR_RADIUS] - speed - abs(speed) * y[L.SLIP]
-    # A tyre that slides all over lags no further behind.
-    if abs(y[L.SLIP]) >= 1.0 and slip_rate * y[L.SLIP] > 0.0:
-        slip_rate = 0.0
+    # Slip is told up to 1, where the whole patch slides; the carcass then lags no further.
+    if slip_rate * y[L.SLIP] > 0.0:
+        slip_rate *= min(1.0, max(0.0, 10.0 * (1.0 - abs(y[L.SLIP]))))
     dy[L.SLIP] = slip_rate / p[L.RELAXATION]
     dy[L.GEAR] = 0.0
     out[L.O_WHEEL_TORQUE], out[L.O_SPIN] = torque, y[L.SPIN]
     out[L.O_SLIP], out[L.O_ENGINE] = y[L.SLIP], y[L.ENGINE_RATE]
+    if n[L.DRIVE] >= L.CLUTCH_DRIVE:
+        out[L.O_GATE + L.GATE_SHIFT] = past_shift(p, n, y)
     return force, torque
 
 
-@jit
+@inlined
 def wheel_torque(p, n, drive, y, dy):
     """Torque at both rear wheels, N m; fills the engine's rate."""
     if n[L.DRIVE] == L.TORQUE_DRIVE:
@@ -65,14 +67,21 @@ def wheel_torque(p, n, drive, y, dy):
     return passed * gearing * p[L.EFFICIENCY]
 
 
-@jit
+@inlined
+def past_shift(p, n, y):
+    """How far the gearbox's input is past the shift speed, rad/s; negative in the last gear."""
+    if y[L.GEAR] >= n[L.N_GEARS] - 1:
+        return -1.0
+    return y[L.SPIN] * p[L.GEARS + int(y[L.GEAR])] * p[L.FINAL_DRIVE] - p[L.SHIFT_SPEED]
+
+
+@inlined
 def shift(p, n, y):
-    """Take the next gear when the gearbox's input has reached the shift speed.
+    """Take the next gear when its time has come.
 
     At once; the engine then has to be pulled down through the coupling.
     """
-    driven = y[L.SPIN] * p[L.GEARS + int(y[L.GEAR])] * p[L.FINAL_DRIVE]
-    if driven < p[L.SHIFT_SPEED] or y[L.GEAR] >= n[L.N_GEARS] - 1:
+    if past_shift(p, n, y) <= 0.0:
         return False
     y[L.GEAR] += 1.0
     return True

@@ -7,7 +7,9 @@ kernel: change any line and nothing stale is loaded.
 
 import hashlib
 import os
+import shutil
 import tempfile
+import time
 from pathlib import Path
 
 import numba
@@ -44,7 +46,16 @@ def _cache_folder():
     return None
 
 
+def _forget_old(folder, days=14):
+    """Remove what earlier kernels left beside this one."""
+    for other in folder.parent.glob("kernel-*"):
+        if other != folder and time.time() - other.stat().st_mtime > days * 86400:
+            shutil.rmtree(other, ignore_errors=True)
+
+
 CACHE_FOLDER = _cache_folder()
+if CACHE_FOLDER:
+    _forget_old(Path(CACHE_FOLDER))
 
 
 def _options():
@@ -64,6 +75,20 @@ def _compiled(function, **more):
 def jit(function):
     """Compile at first call, keep on disk; `function.py_func` stays plain Python."""
     return _compiled(function)
+
+
+def inlined(function):
+    """The same for what allocates nothing, laid into its caller.
+
+    Without numba's reference counting: it would touch shared counters for every
+    array at every call, which costs more than the physics and more so over threads.
+    """
+    return _compiled(function, forceinline=True, _nrt=False)
+
+
+def lean(function):
+    """The same, but called rather than laid in."""
+    return _compiled(function, _nrt=False)
 
 
 def parallel(function):

@@ -20,12 +20,14 @@ def settle_one(p, n):
 @jit
 def run_one(p, n, longest, kept, log, record, states, outputs):
     """March one settled lane; where the accuracy is not held, again in shorter steps."""
-    code, time, _, count = march(p, n, longest, kept, log, record, states, outputs)
+    work = np.zeros((L.WORK_ROWS, L.WORK_WIDTH))
+    code, time, count = march(p, n, longest, kept, log, record, states, outputs, work)
     for _ in range(HALVINGS):
         if code not in (L.NOT_FINITE, L.DRIFTED, L.INEXACT):
             break
         longest *= 0.5
-        code, time, _, count = march(p, n, longest, kept, log, record, states, outputs)
+        work[:] = 0.0
+        code, time, count = march(p, n, longest, kept, log, record, states, outputs, work)
     return code, time, count, longest
 
 

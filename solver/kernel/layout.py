@@ -85,6 +85,12 @@ DERIVED = LINES + MAX_LINES * LINE_WIDTH
     FRONT_SQUASH,
     REAR_SQUASH,
     LAMBDA,
+    # One over each mass and inertia: the right-hand side multiplies.
+    PER_SPRUNG_MASS,
+    PER_REAR_MASS,
+    PER_FRONT_MASS,
+    PER_CHASSIS_INERTIA,
+    PER_HOUSING_INERTIA,
     # The links as solved: a ladder bar becomes two links from one pin.
     LCX,
     LCZ,
@@ -94,8 +100,10 @@ DERIVED = LINES + MAX_LINES * LINE_WIDTH
     UCZ,
     UHX,
     UHZ,
-) = range(DERIVED, DERIVED + 22)
-SCALARS = DERIVED + 22
+) = range(DERIVED, DERIVED + 27)
+# Curves' value and slope at zero as their first leg has them, a pair each.
+LEGS = DERIVED + 27
+
 
 # Integers -------------------------------------------------------------------
 KIND, N_LINES, BUMP_LINE, DROOP_LINE, WHEELIE_ON, DRIVE, HIT_AT, HIT_COUNT = range(8)
@@ -104,15 +112,17 @@ FOUR_LINK, LADDER_BAR = 0, 1
 NO_WHEELIE, ON_CHASSIS, ON_HOUSING = 0, 1, 2
 FORCE_DRIVE, TORQUE_DRIVE, CLUTCH_DRIVE, CONVERTER_DRIVE = 0, 1, 2, 3
 
-# Curves: a pair (place, knots) each in `n`. At the place in `p`: value and slope
-# at zero's left end, then (knot, change of slope) for each knot.
-CURVES = 12
+FRONT_STOPS = 12
+# Curves: a pair (place, knots) each in `n`. At the place in `p`: (knot, change of
+# slope) for each knot.
+CURVES = 13
 FRONT_SPRING, FRONT_DAMPER, FRONT_BUMP, FRONT_DROOP, REAR_BUMP, REAR_DROOP = range(6)
 LINE_SPRING = 6
 LINE_DAMPER = LINE_SPRING + MAX_LINES
 ENGINE, CONVERTER_CAPACITY, TORQUE_RATIO = range(LINE_DAMPER + MAX_LINES, LINE_DAMPER + MAX_LINES + 3)
 N_CURVES = TORQUE_RATIO + 1
 INTEGERS = CURVES + 2 * N_CURVES
+SCALARS = LEGS + 2 * N_CURVES
 
 # State ----------------------------------------------------------------------
 # Displacements from ride height, then the velocities in the same order.
@@ -165,9 +175,12 @@ STATES = 18
     # What is zero at an event: the contacts' forces before they are cut at nil.
     O_GATE,
 ) = range(36)
-N_GATES = 9
+N_GATES = 10
 (GATE_FRONT_TYRE, GATE_REAR_TYRE, GATE_FRONT_BUMP, GATE_FRONT_DROOP) = range(4)
-(GATE_REAR_BUMP, GATE_REAR_DROOP, GATE_WHEELIE, GATE_ROLLOUT, GATE_SIXTY_FOOT) = range(4, 9)
+(GATE_REAR_BUMP, GATE_REAR_DROOP, GATE_WHEELIE, GATE_SHIFT) = range(4, 8)
+# Contacts and shifts, where the model's slopes change; after them what is only dated.
+N_KINKS = 8
+GATE_ROLLOUT, GATE_SIXTY_FOOT = 8, 9
 OUTPUTS = O_GATE + N_GATES
 # Channels whose greatest and least values are kept at every step.
 WATCHED = O_ENGINE + 1
@@ -187,6 +200,9 @@ A_LAST = A_WINDOWS + 10
 ACCUMULATORS = A_LAST + WATCHED
 
 EVENTS = 48
+
+# Rows of a lane's work space.
+WORK_ROWS, WORK_WIDTH = 12, OUTPUTS
 
 # How a lane ended -------------------------------------------------------------
 SOLVED, NOT_FINITE, LOCKED, TURNED_OVER, DRIFTED, INEXACT = range(6)

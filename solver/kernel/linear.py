@@ -18,9 +18,9 @@ def straighten(p, n):
     for which in range(L.N_CURVES):
         at = n[L.CURVES + 2 * which]
         value, slope = curve(p, n, which, 0.0), slope_at_rest(p, n, which)
-        p[at], p[at + 1] = value, slope
+        p[L.LEGS + 2 * which], p[L.LEGS + 2 * which + 1] = value, slope
         for i in range(n[L.CURVES + 2 * which + 1]):
-            p[at + 3 + 2 * i] = 0.0
+            p[at + 2 * i + 1] = 0.0
 
 
 @jit

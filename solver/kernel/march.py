@@ -1,29 +1,29 @@
 """The integrator: fixed steps of the classical Runge-Kutta method, and no physics.
 
 Steps end exactly at the drive table's knots and at every report, so that no step
-spans a kink that is known beforehand. The length is bounded by stability.
-Embedded error estimate: the last slope of a step against the first of the next
-(their difference times h/6 is the method's third-order companion).
+spans a kink that is known beforehand; a step in which a contact began or ended is
+taken again in `SPLIT` parts. The length is bounded by stability. Embedded error
+estimate: the last slope of a step against the first of the next (their difference
+times h/6 is the method's third-order companion).
 """
 
 import math
 
-import numpy as np
-
 from solver.kernel import layout as L
 from solver.kernel.drivetrain import shift, start_up
-from solver.kernel.jit import jit
+from solver.kernel.jit import inlined, lean
 from solver.kernel.physics import accelerate
-from solver.kernel.watch import begin, events, first_peak, peaks, windows
+from solver.kernel.watch import begin, events, first_peak, kinked, peaks, turns, windows
 
 STABLE = 1.5  # share of 1/|eigenvalue| that a step may take
+SPLIT = 8
 FURTHEST_DRIFT = 1e-5  # m of link length
 LARGEST_ERROR = 0.02  # m/s or rad/s, of one step's embedded estimate
 UPRIGHT = 1.2  # rad
 LEAST_LEVERAGE = 1e-4
 
 
-@jit
+@inlined
 def drive(p, n, leg, t):
     """The drive table on its straight leg `leg`; -1 is before its first point."""
     at, count = n[L.HIT_AT], n[L.HIT_COUNT]
@@ -36,34 +36,57 @@ def drive(p, n, leg, t):
     return p[L.HIT_SCALE] * (f0 + (f1 - f0) * (t - t0) / (t1 - t0))
 
 
-@jit
-def stage(y, k, step, into, states):
+@inlined
+def weigh_slopes(y, h, k1, k2, k3, k4, into, states):
+    for i in range(states):
+        into[i] = y[i] + h / 6.0 * (k1[i] + 2.0 * (k2[i] + k3[i]) + k4[i])
+
+
+@inlined
+def ahead(y, step, k, into, states):
     for i in range(states):
         into[i] = y[i] + step * k[i]
 
 
-@jit
-def check(kept, y, k4, after_k, h, out):
+@lean
+def take_step(p, n, leg, t, h, y, k1, work, after):
+    """One step from `y`: rows 3 and 4 of `work` get the new state and its slope."""
+    states = n[L.N_STATES]
+    k2, k3, k4, trial, scrap = work[5], work[6], work[7], work[8], work[9]
+    middle, last = drive(p, n, leg, t + 0.5 * h), drive(p, n, leg, t + h)
+    ahead(y, 0.5 * h, k1, trial, states)
+    accelerate(p, n, middle, trial, k2, scrap)
+    ahead(y, 0.5 * h, k2, trial, states)
+    accelerate(p, n, middle, trial, k3, scrap)
+    ahead(y, h, k3, trial, states)
+    accelerate(p, n, last, trial, k4, scrap)
+    weigh_slopes(y, h, k1, k2, k3, k4, work[3], states)
+    accelerate(p, n, last, work[3], work[4], after)
+
+
+@inlined
+def check(kept, y, k4, slope, h, out):
     """How the step went: a code of `layout`."""
-    if not math.isfinite(y[L.Z] + y[L.PITCH] + y[L.HOUSING] + out[L.O_LOWER] + out[L.O_SHOCK_SPEED]):
+    total = y[L.Z] + y[L.PITCH] + y[L.HOUSING] + out[L.O_LOWER] + out[L.O_SHOCK_SPEED]
+    if not math.isfinite(total):
         return L.NOT_FINITE
     if abs(y[L.PITCH]) > UPRIGHT or abs(y[L.HOUSING]) > UPRIGHT:
         return L.TURNED_OVER
     if out[L.O_LEVERAGE] < LEAST_LEVERAGE:
         return L.LOCKED
+    kept[L.A_DRIFT] = max(kept[L.A_DRIFT], out[L.O_DRIFT])
     if out[L.O_DRIFT] > FURTHEST_DRIFT:
         return L.DRIFTED
     worst = 0.0
-    for i in range(L.COORDINATES, L.STATES):
-        worst = max(worst, abs(k4[i] - after_k[i]))
+    for i in range(L.COORDINATES, 2 * L.COORDINATES):
+        worst = max(worst, abs(k4[i] - slope[i]))
     worst *= h / 6.0
-    if worst > kept[L.A_ERROR]:
-        kept[L.A_ERROR] = worst
+    kept[L.A_ERROR] = max(kept[L.A_ERROR], worst)
     return L.INEXACT if worst > LARGEST_ERROR else L.SOLVED
 
 
-@jit
-def march(p, n, longest, kept, log, record, y_record, out_record):
+@lean
+def march(p, n, longest, kept, log, record, states_record, outputs_record, work):
     """Run one lane from rest to its end.
 
     Parameters
@@ -78,62 +101,67 @@ def march(p, n, longest, kept, log, record, y_record, out_record):
         Filled with (kind, time).
     record : bool
         Whether to fill the two records, one row a report.
+    work : float64 (WORK_ROWS, WORK_WIDTH)
+        Zeros.
 
     Returns
     -------
-    code, time, reports, events : int, float, int, int
+    code, time, events : int, float, int
     """
-    y, trial = np.zeros(L.STATES), np.zeros(L.STATES)
-    k1, k2, k3, k4 = (np.zeros(L.STATES), np.zeros(L.STATES), np.zeros(L.STATES), np.zeros(L.STATES))
-    out, after, scrap = np.zeros(L.OUTPUTS), np.zeros(L.OUTPUTS), np.zeros(L.OUTPUTS)
+    y, k1 = work[0], work[1]
+    before, out, after = work[2], work[10], work[11]
     begin(kept)
-    longest = min(longest, STABLE / p[L.LAMBDA])
-    duration, report_step, static = p[L.DURATION], p[L.OUTPUT_STEP], p[L.REAR_STATIC]
-    hit_at, legs, states = n[L.HIT_AT], n[L.HIT_COUNT], n[L.N_STATES]
     start_up(p, y)
-    reports = math.floor(duration / report_step + 1e-9) + 1
-    t, leg, report, count, code = 0.0, -1, 0, 0, L.SOLVED
+    longest = min(longest, STABLE / p[L.LAMBDA])
+    report_step, static = p[L.OUTPUT_STEP], p[L.REAR_STATIC]
+    hit_at, legs, states = n[L.HIT_AT], n[L.HIT_COUNT], n[L.N_STATES]
+    reports = math.floor(p[L.DURATION] / report_step + 1e-9) + 1
+    t, leg, report, count = 0.0, -1, 0, 0
     while leg + 1 < legs and p[hit_at + 2 * leg + 2] <= 0.0:
         leg += 1
     accelerate(p, n, drive(p, n, leg, t), y, k1, out)
     while True:
-        if report < reports and t >= report * report_step - 1e-12:
+        if t >= report * report_step - 1e-12:
             if record:
-                y_record[report, :] = y
-                out_record[report, :] = out
+                for i in range(L.STATES):
+                    states_record[report, i] = y[i]
+                for i in range(L.OUTPUTS):
+                    outputs_record[report, i] = out[i]
             report += 1
-        if report == reports:
-            break
-        mark = min(report * report_step, duration)
+            if report == reports:
+                break
+        mark = report * report_step
         if leg + 1 < legs:
             mark = min(mark, p[hit_at + 2 * leg + 2])
         steps = max(1, math.ceil((mark - t) / longest - 1e-9))
-        start, h = t, (mark - t) / steps
-        for i in range(steps):
-            t = start + i * h
-            end = mark if i == steps - 1 else start + (i + 1) * h
-            middle = drive(p, n, leg, t + 0.5 * h)
-            stage(y, k1, 0.5 * h, trial, states)
-            accelerate(p, n, middle, trial, k2, scrap)
-            stage(y, k2, 0.5 * h, trial, states)
-            accelerate(p, n, middle, trial, k3, scrap)
-            stage(y, k3, h, trial, states)
-            last = drive(p, n, leg, end)
-            accelerate(p, n, last, trial, k4, scrap)
+        start, part, place, fine = t, (mark - t) / (steps * SPLIT), 0, False
+        h_before = 0.0
+        while place < steps * SPLIT:
+            size = 1 if fine else SPLIT
+            t, h = start + place * part, size * part
+            take_step(p, n, leg, t, h, y, k1, work, after)
+            if not fine and kinked(out, after):
+                fine = True
+                continue
             peaks(kept, t, out)
+            if h_before > 0.0:
+                turns(kept, t, h_before, h, before, out, after)
             first_peak(kept, t, out[L.O_REAR_LOAD], static)
-            for j in range(states):
-                y[j] += h / 6.0 * (k1[j] + 2.0 * (k2[j] + k3[j]) + k4[j])
-            accelerate(p, n, last, y, k1, after)
-            code = check(kept, y, k4, k1, h, after)
             windows(kept, t, h, out[L.O_REAR_LOAD], after[L.O_REAR_LOAD])
+            kink = kinked(out, after)
             count = events(log, count, t, h, out, after)
-            out, after = after, out
+            code = check(kept, work[3], work[7], work[4], h, after)
             if code != L.SOLVED:
-                return code, end, report, count
+                return code, t + h, count
             kept[L.A_STEPS] += 1.0
+            for i in range(states):
+                y[i], k1[i] = work[3, i], work[4, i]
+            before, out, after = out, after, before
             if n[L.DRIVE] >= L.CLUTCH_DRIVE and shift(p, n, y):
-                accelerate(p, n, last, y, k1, out)
+                accelerate(p, n, drive(p, n, leg, t + h), y, k1, out)
+            h_before = 0.0 if kink else h
+            place += size
+            fine = fine and place % SPLIT != 0
         t = mark
         if leg + 1 < legs and t >= p[hit_at + 2 * leg + 2]:
             leg += 1
@@ -142,4 +170,4 @@ def march(p, n, longest, kept, log, record, y_record, out_record):
     peaks(kept, t, out)
     for i in range(L.WATCHED):
         kept[L.A_LAST + i] = out[i]
-    return code, t, report, count
+    return L.SOLVED, t, count

@@ -14,15 +14,38 @@ import math
 from solver.kernel import layout as L
 from solver.kernel.curves import curve
 from solver.kernel.drivetrain import thrust
-from solver.kernel.jit import jit
+from solver.kernel.jit import inlined, lean
 from solver.kernel.rest import GRAVITY
 from solver.kernel.tyre import push
 
 SIXTY_FEET = 18.288  # m
 FEEDBACK = 50.0  # rad/s, both roots of the drift's decay
 
+# Coefficients of the sine's and the cosine's series.
+S3, S5, S7, S9, S11, S13, S15, S17 = (
+    (-1.0) ** k / math.factorial(2 * k + 1) for k in range(1, 9)
+)
+C2, C4, C6, C8, C10, C12, C14, C16, C18 = ((-1.0) ** k / math.factorial(2 * k) for k in range(1, 10))
 
-@jit
+
+@inlined
+def turn(angle):
+    """Cosine and sine, by their series to the last bit below 1.3 rad.
+
+    A car beyond that has turned over and its run ends; the library's own
+    functions, made for any angle, take a fifth of the whole right-hand side.
+    """
+    q = angle * angle
+    sine = S13 + q * (S15 + q * S17)
+    sine = S5 + q * (S7 + q * (S9 + q * (S11 + q * sine)))
+    sine = 1.0 + q * (S3 + q * sine)
+    cosine = C12 + q * (C14 + q * (C16 + q * C18))
+    cosine = C4 + q * (C6 + q * (C8 + q * (C10 + q * cosine)))
+    cosine = 1.0 + q * (C2 + q * cosine)
+    return cosine, angle * sine
+
+
+@inlined
 def link(p, y, co, si, ch, sh, chassis_x, chassis_z, housing_x, housing_z, length):
     """One link: direction, moment arms, and the acceleration its motion asks for."""
     ax = co * (p[chassis_x] - p[L.SPRUNG_X]) - si * (p[chassis_z] - p[L.SPRUNG_Z])
@@ -32,7 +55,8 @@ def link(p, y, co, si, ch, sh, chassis_x, chassis_z, housing_x, housing_z, lengt
     ex = y[L.HX] + bx - p[L.SPRUNG_X] - y[L.X] - ax
     ez = y[L.HZ] + p[L.REAR_RADIUS] + bz - p[L.SPRUNG_Z] - y[L.Z] - az
     actual = math.sqrt(ex * ex + ez * ez)
-    ux, uz = ex / actual, ez / actual
+    per_length = 1.0 / actual
+    ux, uz = ex * per_length, ez * per_length
     w, v = y[7 + L.PITCH], y[7 + L.HOUSING]
     speed_x = y[7 + L.HX] - v * bz - y[7 + L.X] + w * az
     speed_z = y[7 + L.HZ] + v * bx - y[7 + L.Z] - w * ax
@@ -40,7 +64,7 @@ def link(p, y, co, si, ch, sh, chassis_x, chassis_z, housing_x, housing_z, lengt
     across = ux * speed_z - uz * speed_x
     stretch = actual - p[length]
     wanted = (
-        -across * across / actual
+        -across * across * per_length
         - FEEDBACK * (2.0 * along + FEEDBACK * stretch)
         + v * v * (ux * bx + uz * bz)
         - w * w * (ux * ax + uz * az)
@@ -48,7 +72,7 @@ def link(p, y, co, si, ch, sh, chassis_x, chassis_z, housing_x, housing_z, lengt
     return ux, uz, ax * uz - az * ux, bx * uz - bz * ux, wanted, stretch
 
 
-@jit
+@inlined
 def rear_line(p, y, co, si, ch, sh, at):
     """One rear spring line: direction from housing to chassis, arms, squeeze and its speed."""
     ax = co * (p[at + L.LINE_CX] - p[L.SPRUNG_X]) - si * (p[at + L.LINE_CZ] - p[L.SPRUNG_Z])
@@ -58,14 +82,15 @@ def rear_line(p, y, co, si, ch, sh, at):
     ex = p[L.SPRUNG_X] + y[L.X] + ax - y[L.HX] - bx
     ez = p[L.SPRUNG_Z] + y[L.Z] + az - y[L.HZ] - p[L.REAR_RADIUS] - bz
     length = math.sqrt(ex * ex + ez * ez)
-    ux, uz = ex / length, ez / length
+    per_length = 1.0 / length
+    ux, uz = ex * per_length, ez * per_length
     speed_x = y[7 + L.X] - y[7 + L.PITCH] * az - y[7 + L.HX] + y[7 + L.HOUSING] * bz
     speed_z = y[7 + L.Z] + y[7 + L.PITCH] * ax - y[7 + L.HZ] - y[7 + L.HOUSING] * bx
     squeeze = p[at + L.LINE_LENGTH] - length
     return ux, uz, ax * uz - az * ux, bx * uz - bz * ux, squeeze, -ux * speed_x - uz * speed_z
 
 
-@jit
+@inlined
 def rear_springs(p, n, y, co, si, ch, sh, out):
     """All rear springs, shocks and stops: their force and moments on chassis and housing."""
     fx, fz, chassis_moment, housing_moment = 0.0, 0.0, 0.0, 0.0
@@ -103,24 +128,27 @@ def rear_springs(p, n, y, co, si, ch, sh, out):
     return fx, fz, chassis_moment, housing_moment
 
 
-@jit
+@inlined
 def front_spring(p, n, y, out):
     """Force along the front slide, spring and shock and stops, pushing the chassis up."""
     travel, speed = y[L.SLIDE], y[7 + L.SLIDE]
     spring = p[L.FRONT_SPRING_STATIC] + curve(p, n, L.FRONT_SPRING, travel)
     force = spring + curve(p, n, L.FRONT_DAMPER, speed)
+    out[L.O_FRONT_SPRING] = force
+    out[L.O_FRONT_TRAVEL], out[L.O_FRONT_SPEED] = travel, speed
+    if n[L.FRONT_STOPS] == 0:
+        return force
     past = travel - p[L.FRONT_BUMP_CLEARANCE]
     bump = curve(p, n, L.FRONT_BUMP, past) + p[L.FRONT_BUMP_DAMPING] * speed
     past = -travel - p[L.FRONT_DROOP_CLEARANCE]
     droop = curve(p, n, L.FRONT_DROOP, past) - p[L.FRONT_DROOP_DAMPING] * speed
     stops = max(0.0, bump) - max(0.0, droop)
     out[L.O_GATE + L.GATE_FRONT_BUMP], out[L.O_GATE + L.GATE_FRONT_DROOP] = bump, droop
-    out[L.O_FRONT_SPRING], out[L.O_FRONT_STOP] = force, stops
-    out[L.O_FRONT_TRAVEL], out[L.O_FRONT_SPEED] = travel, speed
+    out[L.O_FRONT_STOP] = stops
     return force + stops
 
 
-@jit
+@inlined
 def wheelie_bar(p, n, y, co, si, ch, sh, out):
     """Upward force of the wheelie bar's wheels and its moment about the body it is bolted to."""
     if n[L.WHEELIE_ON] == L.ON_CHASSIS:
@@ -140,7 +168,7 @@ def wheelie_bar(p, n, y, co, si, ch, sh, out):
     return force, force * arm
 
 
-@jit
+@lean
 def accelerate(p, n, hit, y, dy, out):
     """The right-hand side.
 
@@ -156,10 +184,10 @@ def accelerate(p, n, hit, y, dy, out):
     out : float64 (OUTPUTS,)
         Forces, travels and gates at this state.
     """
-    ms, mr, mf = p[L.SPRUNG_MASS], p[L.REAR_MASS], p[L.FRONT_MASS]
-    inertia, housing_inertia = p[L.CHASSIS_INERTIA], p[L.HOUSING_INERTIA]
-    co, si = math.cos(y[L.PITCH]), math.sin(y[L.PITCH])
-    ch, sh = math.cos(y[L.HOUSING]), math.sin(y[L.HOUSING])
+    per_s, per_r, per_f = p[L.PER_SPRUNG_MASS], p[L.PER_REAR_MASS], p[L.PER_FRONT_MASS]
+    per_i, per_h = p[L.PER_CHASSIS_INERTIA], p[L.PER_HOUSING_INERTIA]
+    co, si = turn(y[L.PITCH])
+    ch, sh = turn(y[L.HOUSING])
     w, slide_speed = y[7 + L.PITCH], y[7 + L.SLIDE]
 
     # Front wheels: where they are from the sprung CG, the tyre, the slide.
@@ -174,7 +202,7 @@ def accelerate(p, n, hit, y, dy, out):
     front_load = max(0.0, gate)
     out[L.O_FRONT_LOAD] = front_load
     out[L.O_FRONT_CLEARANCE] = max(0.0, rise - p[L.FRONT_SQUASH])
-    front_pull = front_load - mf * GRAVITY
+    front_pull = front_load - p[L.FRONT_MASS] * GRAVITY
     slide_force = front_spring(p, n, y, out)
 
     # Rear tyre.
@@ -188,10 +216,10 @@ def accelerate(p, n, hit, y, dy, out):
     # Everything that is not a constraint force.
     fx, fz, chassis_moment, housing_moment = rear_springs(p, n, y, co, si, ch, sh, out)
     forward, torque = thrust(p, n, hit, y, rear_load, dy, out)
-    housing_fx, housing_fz = forward - fx, rear_load - mr * GRAVITY - fz
+    housing_fx, housing_fz = forward - fx, rear_load - p[L.REAR_MASS] * GRAVITY - fz
     housing_moment += torque
     fx -= slide_force * si
-    fz += slide_force * co - ms * GRAVITY
+    fz += slide_force * co - p[L.SPRUNG_MASS] * GRAVITY
     chassis_moment += slide_force * (wx * co + wz * si)
     if n[L.WHEELIE_ON] != L.NO_WHEELIE:
         force, moment = wheelie_bar(p, n, y, co, si, ch, sh, out)
@@ -210,42 +238,45 @@ def accelerate(p, n, hit, y, dy, out):
         p, y, co, si, ch, sh, L.UCX, L.UCZ, L.UHX, L.UHZ, L.UPPER_LENGTH
     )
     js = wx * si - wz * co
-    side_wanted = w * w * (co * wx + si * wz) + 2.0 * w * slide_speed + front_pull * si / mf
-    free = fx / ms, fz / ms, chassis_moment / inertia
-    housing_free = housing_fx / mr, housing_fz / mr, housing_moment / housing_inertia
-    masses = 1.0 / ms + 1.0 / mr
-    s11 = masses + la * la / inertia + lb * lb / housing_inertia
-    s22 = masses + ua * ua / inertia + ub * ub / housing_inertia
-    s12 = masses * (lx * ux + lz * uz) + la * ua / inertia + lb * ub / housing_inertia
-    s13 = (lx * co + lz * si) / ms + la * js / inertia
-    s23 = (ux * co + uz * si) / ms + ua * js / inertia
-    s33 = 1.0 / ms + js * js / inertia + 1.0 / mf
+    side_wanted = w * w * (co * wx + si * wz) + 2.0 * w * slide_speed + front_pull * si * per_f
+    free = fx * per_s, fz * per_s, chassis_moment * per_i
+    housing_free = housing_fx * per_r, housing_fz * per_r, housing_moment * per_h
+    masses = per_s + per_r
+    s11 = masses + la * la * per_i + lb * lb * per_h
+    s22 = masses + ua * ua * per_i + ub * ub * per_h
+    s12 = masses * (lx * ux + lz * uz) + la * ua * per_i + lb * ub * per_h
+    s13 = (lx * co + lz * si) * per_s + la * js * per_i
+    s23 = (ux * co + uz * si) * per_s + ua * js * per_i
+    s33 = per_s + js * js * per_i + per_f
     r1 = lx * (housing_free[0] - free[0]) + lz * (housing_free[1] - free[1]) - wanted
     r1 += lb * housing_free[2] - la * free[2]
     r2 = ux * (housing_free[0] - free[0]) + uz * (housing_free[1] - free[1]) - upper_wanted
     r2 += ub * housing_free[2] - ua * free[2]
     r3 = co * free[0] + si * free[1] + js * free[2] - side_wanted
     # The side load first: s33 side = r3 + s13 lower + s23 upper.
-    a11, a12, a22 = s11 - s13 * s13 / s33, s12 - s13 * s23 / s33, s22 - s23 * s23 / s33
-    b1, b2 = r1 + s13 * r3 / s33, r2 + s23 * r3 / s33
+    per_s33 = 1.0 / s33
+    a11, a22 = s11 - s13 * s13 * per_s33, s22 - s23 * s23 * per_s33
+    a12 = s12 - s13 * s23 * per_s33
+    b1, b2 = r1 + s13 * r3 * per_s33, r2 + s23 * r3 * per_s33
     determinant = a11 * a22 - a12 * a12
-    lower = (b1 * a22 - b2 * a12) / determinant
-    upper = (b2 * a11 - b1 * a12) / determinant
-    side = (r3 + s13 * lower + s23 * upper) / s33
+    per_determinant = 1.0 / determinant
+    lower = (b1 * a22 - b2 * a12) * per_determinant
+    upper = (b2 * a11 - b1 * a12) * per_determinant
+    side = (r3 + s13 * lower + s23 * upper) * per_s33
     out[L.O_LOWER], out[L.O_UPPER] = lower, upper
     out[L.O_DRIFT] = max(abs(drift), abs(upper_drift))
     out[L.O_LEVERAGE] = determinant / (a11 * a22)
 
     for i in range(L.COORDINATES):
         dy[i] = y[L.COORDINATES + i]
-    dy[7 + L.X] = free[0] + (lower * lx + upper * ux - side * co) / ms
-    dy[7 + L.Z] = free[1] + (lower * lz + upper * uz - side * si) / ms
-    dy[7 + L.PITCH] = free[2] + (lower * la + upper * ua - side * js) / inertia
-    dy[7 + L.HX] = housing_free[0] - (lower * lx + upper * ux) / mr
-    dy[7 + L.HZ] = housing_free[1] - (lower * lz + upper * uz) / mr
-    dy[7 + L.HOUSING] = housing_free[2] - (lower * lb + upper * ub) / housing_inertia
+    dy[7 + L.X] = free[0] + (lower * lx + upper * ux - side * co) * per_s
+    dy[7 + L.Z] = free[1] + (lower * lz + upper * uz - side * si) * per_s
+    dy[7 + L.PITCH] = free[2] + (lower * la + upper * ua - side * js) * per_i
+    dy[7 + L.HX] = housing_free[0] - (lower * lx + upper * ux) * per_r
+    dy[7 + L.HZ] = housing_free[1] - (lower * lz + upper * uz) * per_r
+    dy[7 + L.HOUSING] = housing_free[2] - (lower * lb + upper * ub) * per_h
     dy[7 + L.SLIDE] = (
-        (front_pull * co - slide_force) / mf
+        (front_pull * co - slide_force) * per_f
         + si * dy[7 + L.X]
         - co * dy[7 + L.Z]
         - (wx * co + wz * si) * dy[7 + L.PITCH]
@@ -257,7 +288,7 @@ def accelerate(p, n, hit, y, dy, out):
     out[L.O_GATE + L.GATE_SIXTY_FOOT] = out[L.O_DISTANCE] - p[L.ROLLOUT] - SIXTY_FEET
 
 
-@jit
+@inlined
 def report(p, y, thrust, co, si, acceleration, out):
     """Fill the outputs that follow from the state alone."""
     out[L.O_PITCH], out[L.O_HOUSING] = y[L.PITCH], y[L.HOUSING]

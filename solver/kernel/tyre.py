@@ -1,15 +1,15 @@
 """Tyres: a contact that pushes only, and what it holds along the track."""
 
-from solver.kernel.jit import jit
+from solver.kernel.jit import inlined
 
 
-@jit
+@inlined
 def push(rate, damping, squash, speed):
     """A contact before it is cut at nil: not gated on `squash`, so that it never jumps."""
     return rate * squash + damping * speed
 
 
-@jit
+@inlined
 def fiala(slip, load, stiffness, grip, sliding_grip):
     """Longitudinal force of the Fiala tyre, N.
 

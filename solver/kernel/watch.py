@@ -3,10 +3,10 @@
 import math
 
 from solver.kernel import layout as L
-from solver.kernel.jit import jit
+from solver.kernel.jit import inlined
 
 
-@jit
+@inlined
 def begin(kept):
     """Empty accumulators."""
     for i in range(L.WATCHED):
@@ -19,22 +19,50 @@ def begin(kept):
     kept[L.A_DIP_TIME] = -1.0
 
 
-@jit
+@inlined
 def peaks(kept, t, out):
-    """Note the outputs at a step's start."""
+    """Note the outputs at one instant as they stand."""
     for i in range(L.WATCHED):
         value = out[i]
         if value > kept[4 * i]:
             kept[4 * i], kept[4 * i + 1] = value, t
         if value < kept[4 * i + 2]:
             kept[4 * i + 2], kept[4 * i + 3] = value, t
-    if out[L.O_DRIFT] > kept[L.A_DRIFT]:
-        kept[L.A_DRIFT] = out[L.O_DRIFT]
 
 
-@jit
+@inlined
+def turns(kept, t, h_before, h_after, before, out, after):
+    """Note where an output turned between steps: the top of the parabola through three instants.
+
+    Only where it would be a new extreme. At a kink the three are not on one curve;
+    the caller leaves those out.
+    """
+    for i in range(L.WATCHED):
+        rise, fall = out[i] - before[i], after[i] - out[i]
+        if rise * fall < 0.0 and (out[i] >= kept[4 * i] or out[i] <= kept[4 * i + 2]):
+            first, second = rise / h_before, fall / h_after
+            bend = (second - first) / (h_before + h_after)
+            slope = first + bend * h_before
+            shift = -0.5 * slope / bend
+            value = out[i] + 0.5 * slope * shift
+            if value > kept[4 * i]:
+                kept[4 * i], kept[4 * i + 1] = value, t + shift
+            if value < kept[4 * i + 2]:
+                kept[4 * i + 2], kept[4 * i + 3] = value, t + shift
+
+
+@inlined
+def kinked(out, after):
+    """Whether a contact began or ended, or a gear changed, within the step."""
+    for i in range(L.N_KINKS):
+        if (out[L.O_GATE + i] > 0.0) != (after[L.O_GATE + i] > 0.0):
+            return True
+    return False
+
+
+@inlined
 def first_peak(kept, t, load, static):
-    """The rear tyres' first peak, and the lowest load after it.
+    """The rear tyres' first peak, and the lowest load after it, to the step.
 
     A fall of half a percent of the static load ends the first peak, so that
     a ripple on the way up is not taken for it.
@@ -48,7 +76,7 @@ def first_peak(kept, t, load, static):
         kept[L.A_DIP], kept[L.A_DIP_TIME] = load, t
 
 
-@jit
+@inlined
 def windows(kept, t, h, load, next_load):
     """Add a step to the time integrals of the rear load over the first instants."""
     for i in range(3):
@@ -59,7 +87,7 @@ def windows(kept, t, h, load, next_load):
             kept[L.A_WINDOWS + i] += 0.5 * part * h * (load + at_end)
 
 
-@jit
+@inlined
 def events(log, count, t, h, out, after):
     """Date every contact that began or ended within the step; returns the new count."""
     for i in range(L.N_GATES):
