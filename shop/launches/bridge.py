@@ -21,7 +21,7 @@ from shop.refusals import Refused
 from shop.setups import car_file
 from shop.setups.models import Revision
 from shop.units import default_unit, show, unit_of
-from solver import atmosphere, comparing, power, slip_check, timing, weather, weights
+from solver import atmosphere, comparing, power, significance, slip_check, timing, weather, weights
 from solver.many import sweep_files
 from solver.statics import statics as solve_statics
 
@@ -303,6 +303,8 @@ def sweep(files: list[dict[str, Any] | None]) -> tuple[dict[str, Any], dict[int,
 
 # --- the track: plain numbers to the solver's weather, slip and comparison functions, and back ------------------------
 
+Summary, Comparison, Interval = comparing.Summary, comparing.Comparison, significance.Interval
+
 
 @dataclass(frozen=True)
 class Air:
@@ -391,11 +393,11 @@ def slip_of_run(histories: Mapping[str, Any]) -> RunSlip:
 
 def compare_passes(
     first: list[float], second: list[float], *, lower_is_better: bool, confidence: float
-) -> comparing.Comparison:
+) -> Comparison:
     return comparing.compare_passes(first, second, lower_is_better, confidence)
 
 
-def summarise_passes(values: list[float], *, lower_is_better: bool) -> comparing.Summary:
+def summarise_passes(values: list[float], *, lower_is_better: bool) -> Summary:
     return comparing.summarise_passes(values, lower_is_better)
 
 

@@ -87,7 +87,7 @@ def _side(figure: Figure, gain: float, units: str) -> str:
     return f"{_size(figure, abs(gain), units)} {figure.better if gain >= 0 else figure.worse}"
 
 
-def _how(interval: bridge.comparing.Interval | None, comparisons: int) -> list[str]:
+def _how(interval: bridge.Interval | None, comparisons: int) -> list[str]:
     how = []
     if interval:
         how.append(f"{interval.confidence * 100:.3g} % interval of the difference of the means, by {interval.method}.")
@@ -99,7 +99,7 @@ def _how(interval: bridge.comparing.Interval | None, comparisons: int) -> list[s
     return how
 
 
-def _chance_words(result: bridge.comparing.Comparison) -> str:
+def _chance_words(result: bridge.Comparison) -> str:
     test = result.permutation
     if test is None:
         return ""

@@ -80,7 +80,7 @@ def read_table(text: str, names: Mapping[str, str]) -> Table:
     columns, units, notes = _columns(header, names)
     if not columns:
         raise Refused({"file": f"no header is known here; the first line says “{text.splitlines()[0][:120]}”"})
-    rows = []
+    rows: list[Row] = []
     for line, record in records:
         if isinstance(record, list) and not any(cell.strip() for cell in record):
             continue

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 import statistics
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
 
 WIDTH, LEFT, RIGHT, ROW, TOP, BOTTOM = 700, 190, 24, 34, 14, 40
@@ -58,7 +58,7 @@ def dot_chart(groups: Sequence[tuple[str, Sequence[float]]], title: str, places:
     )
 
 
-def _row(label: str, values: Sequence[float], y: float, x) -> DotRow:
+def _row(label: str, values: Sequence[float], y: float, x: Callable[[float], float]) -> DotRow:
     dots: list[tuple[float, float]] = []
     for value in values:
         at = x(value)

@@ -43,7 +43,7 @@ def _value(form: forms.Form, name: str) -> str:
 
 
 def _fault(form: forms.Form, name: str) -> str:
-    return " ".join(form.errors.get(name, [])) if form.is_bound else ""
+    return " ".join(map(str, form.errors.get(name, []))) if form.is_bound else ""
 
 
 def _field(form: forms.Form, name: str, label: str, kind: str, **more: Any) -> Field:

@@ -126,5 +126,5 @@ def _place(run: Pass, by: str, names: dict[int, str]) -> tuple[str, str]:
     return f"r{run.revision_id}", run.revision.label
 
 
-def summary(group: Group, figure: Figure) -> bridge.comparing.Summary:
+def summary(group: Group, figure: Figure) -> bridge.Summary:
     return bridge.summarise_passes(group.values, lower_is_better=not figure.speed)

@@ -90,7 +90,7 @@ def _fate(row: Row, table: Table, weekend: Weekend, shop: Shop, reader: Reader, 
     form = PassForm(data, weekend=weekend, shop=shop)
     form.is_valid()
     for name, errors in form.errors.items():
-        faults.setdefault(name, " ".join(errors))
+        faults.setdefault(name, " ".join(map(str, errors)))
     title = f"{row.cells.get('car', '') or reader.car or ''} {row.cells.get('clock', '')}".strip()
     if faults:
         words = "; ".join(f"{HEADERS.get(name, '')}: {text}".lstrip(": ") for name, text in faults.items())

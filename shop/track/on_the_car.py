@@ -28,6 +28,7 @@ def on_the_car(car: Car) -> OnTheCar:
         return OnTheCar(None, f"{car} has no issued revision yet")
     if last is None:
         return OnTheCar(issued, f"{issued.label}, the newest; no pass names one yet")
-    if issued.issued_at > last.created_at:
+    if issued.issued_at and issued.issued_at > last.created_at:
         return OnTheCar(issued, f"{issued.label}, issued since the last pass")
-    return OnTheCar(last.revision, f"{last.revision.label}, as on the last pass")
+    standing = last.revision or issued
+    return OnTheCar(standing, f"{standing.label}, as on the last pass")

@@ -53,10 +53,9 @@ def air_of(run: Pass, station: Sequence[WeatherReading]) -> PassAir:
 
 
 def _at_the_car(run: Pass) -> Weather | None:
-    values = [si_of(BY_KEY[key], run.readings.get(key)) for key in AIR]
-    if any(value is None for value in values):
+    temperature, pressure, humidity = (si_of(BY_KEY[key], run.readings.get(key)) for key in AIR)
+    if temperature is None or pressure is None or humidity is None:
         return None
-    temperature, pressure, humidity = values
     return Weather(temperature, _station(pressure, run.pressure_kind, run.weekend), humidity, "read at the car")
 
 
@@ -87,9 +86,9 @@ def _matched(at: datetime, station: Sequence[WeatherReading], weekend: Weekend) 
     if before and after and after.at - before.at <= BETWEEN:
         share = (at - before.at) / (after.at - before.at)
         low, high = _si(before, weekend), _si(after, weekend)
-        mixed = [a + share * (b - a) for a, b in zip(low, high, strict=True)]
+        temperature, pressure, humidity = (a + share * (b - a) for a, b in zip(low, high, strict=True))
         words = f"station, between {before.clock:%H:%M} and {after.clock:%H:%M}"
-        return Weather(*mixed, words if share < 1 else f"station, {after.clock:%H:%M}")
+        return Weather(temperature, pressure, humidity, words if share < 1 else f"station, {after.clock:%H:%M}")
     nearest = min((r for r in (before, after) if r), key=lambda reading: abs(reading.at - at))
     if abs(nearest.at - at) > NEAR:
         return None

@@ -37,7 +37,7 @@ def quick(request: HttpRequest, weekend_id: int) -> HttpResponse:
     data = {name: typed[name] for name in ("car", "revision", "entry_key")}
     form = PassForm({**data, typed["mark"]: typed["time"], **_now(typed, weekend)}, weekend=weekend, shop=request.shop)
     if not form.is_valid():
-        faults = {name: " ".join(words) for name, words in form.errors.items()}
+        faults = {name: " ".join(map(str, words)) for name, words in form.errors.items()}
         faults["time"] = faults.pop(typed["mark"], "") or faults.pop("time_60", "")
         return weekend_page(request, weekend, typed, faults)
     run = services.add_pass(request.member, weekend, form.values)
@@ -160,7 +160,8 @@ def _page(
 
 
 def _revisions(car: Car | None, saved: Pass | None) -> list[tuple[str, str]]:
-    return revision_choices(saved.car if saved else car) if saved or car else [("none", "choose the car first")]
+    whose = saved.car if saved else car
+    return revision_choices(whose) if whose else [("none", "choose the car first")]
 
 
 def _differences(sections: list[tuple[str, str, list[Field]]], theirs: Pass, form: PassForm) -> list[tuple[str, str, str]]:
@@ -173,6 +174,6 @@ def _differences(sections: list[tuple[str, str, list[Field]]], theirs: Pass, for
             saved = "" if saved in (None, False) else str(saved)
             if saved != field.value:
                 words = {str(value): text for value, text in field.choices}
-                shown = [words.get(value, value) or "empty" for value in (saved, field.value)]
-                found.append((field.label, *shown))
+                theirs_text, mine_text = (words.get(value, value) or "empty" for value in (saved, field.value))
+                found.append((field.label, theirs_text, mine_text))
     return found
