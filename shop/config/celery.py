@@ -71,8 +71,17 @@ app.autodiscover_tasks()
 
 @signals.worker_init.connect
 def prepare(**_: Any) -> None:
-    """Compile the solver before the pool forks, so that no launch waits for it and both processes share it."""
+    """Have the solver compiled on disk before the pool forks. It must not run in here: GNU OpenMP, which numba's
+    parallel loops stand on, ends every child of a process that has used it."""
     lifeline.hold()
+    if not warming.is_compiled():
+        warming.compile_once()
+
+
+@signals.worker_process_init.connect
+def prepare_child(**_: Any) -> None:
+    """Load the compiled solver, so that no launch waits for it. The pool's processes share the cores among them."""
+    os.environ.setdefault("NUMBA_NUM_THREADS", "1")
     warming.warm()
 
 
