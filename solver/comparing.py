@@ -146,7 +146,7 @@ def compare_passes(
     )
 
 
-def _deviation(data):
+def _deviation(data: NDArray[np.float64]) -> float:
     if data.size < 2:
         return math.nan
     # Equal values have a mean that may differ from them in the last bit: that is no scatter.

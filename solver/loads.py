@@ -7,13 +7,9 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING
 
-import numpy as np
-from numpy.typing import ArrayLike
-
 from solver.bar_check import Bar, BarCheck, check_bar
 from solver.car import Car, FourLink, Link
-from solver.checks import between
-from solver.members import CAUTIONS, Allowances
+from solver.members import CAUTIONS, Allowances, per_side
 
 if TYPE_CHECKING:
     from solver.launching import Launch
@@ -42,8 +38,7 @@ class PeakLoad:
     """Greatest tension and compression of one bar over a run.
 
     Both are N per bar, at or above zero; times in s, None where the bar never
-    sees that sign. ``standing`` is the force at the first instant, tension
-    positive.
+    sees that sign. ``standing`` is the force at ride height, tension positive.
     """
 
     tension: float
@@ -69,83 +64,6 @@ class LoadReport:
 
     bars: tuple
     cautions: tuple = (*CAUTIONS, SHARING)
-
-
-def peak_load(t: ArrayLike, force: ArrayLike, count: int = 2) -> PeakLoad:
-    """Greatest tension and compression of one bar from the lumped link force.
-
-    Parameters
-    ----------
-    t : array_like, shape (n,)
-        s.
-    force : array_like, shape (n,)
-        Sum over the bars of one height along the bar, N, tension positive.
-    count : int
-        Bars that share it.
-
-    Returns
-    -------
-    PeakLoad
-
-    Raises
-    ------
-    ValueError
-        When lengths differ, a force is not finite, or the count is not 1 to 4.
-    """
-    share = between("the number of bars", count, 1, 4)
-    times, each = np.asarray(t, dtype=float), np.asarray(force, dtype=float) / share
-    if times.ndim != 1 or times.shape != each.shape or times.size == 0:
-        raise ValueError("times and link forces must be of one length, one sample or more.")
-    if not np.all(np.isfinite(each)):
-        raise ValueError("a link force of this run is not a finite number: the run has no answer there.")
-    high, low = int(np.argmax(each)), int(np.argmin(each))
-    pull, push = max(float(each[high]), 0.0), max(-float(each[low]), 0.0)
-    return PeakLoad(
-        tension=pull,
-        tension_time=float(times[high]) if pull > 0.0 else None,
-        compression=push,
-        compression_time=float(times[low]) if push > 0.0 else None,
-        standing=float(each[0]),
-    )
-
-
-def bar_loads(
-    t: ArrayLike,
-    forces: Mapping[str, ArrayLike],
-    bars: Mapping[str, Bar],
-    allowances: Allowances | None = None,
-) -> LoadReport:
-    """Check every bar against its greatest loads in a run.
-
-    Parameters
-    ----------
-    t : array_like, shape (n,)
-        s.
-    forces : dict of str to array_like, each of shape (n,)
-        Lumped force along the bar by height (``'lower'``, ``'upper'``), N.
-    bars : dict of str to Bar
-        By the same names; each with its length.
-    allowances : solver.members.Allowances or None
-        None takes the defaults, common practice without a source.
-
-    Returns
-    -------
-    LoadReport
-
-    Raises
-    ------
-    ValueError
-        When a bar has no force in this run, or a value is out of range.
-    """
-    stated = allowances or Allowances()
-    found = []
-    for name, bar in bars.items():
-        if name not in forces:
-            raise ValueError(f"the run has no link called {name!r}: there are {', '.join(forces)}.")
-        peak = peak_load(t, forces[name], bar.count)
-        check = check_bar(bar, peak.tension, peak.compression, stated)
-        found.append(BarLoad(name=name, count=bar.count, peak=peak, check=check))
-    return LoadReport(bars=tuple(sorted(found, key=lambda load: load.check.governs.factor)))
 
 
 def link_length(link: Link) -> float:
@@ -183,10 +101,80 @@ def with_lengths(plan: BarPlan, linkage: FourLink) -> dict[str, Bar]:
     }
 
 
+def bar_loads(
+    plan: BarPlan,
+    linkage: FourLink,
+    figures: Mapping[str, float | None],
+    standing: Mapping[str, float],
+) -> LoadReport:
+    """Check every described bar against its greatest loads in a run.
+
+    Parameters
+    ----------
+    plan : BarPlan
+    linkage : solver.car.FourLink
+        For the lengths that the plan does not state.
+    figures : dict of str to float or None
+        Of a launch: ``lower_link_tension`` and so on with their times, lumped over
+        the bars of one height, tension positive, as `solver.figures` names them.
+        Read at every step of the run, not at its reports.
+    standing : dict of str to float
+        Lumped force at ride height by ``'lower'`` and ``'upper'``, N.
+
+    Returns
+    -------
+    LoadReport
+
+    Raises
+    ------
+    ValueError
+        When the run has no figure for a bar, or a value of a bar is out of range.
+    """
+    found = []
+    for name, bar in with_lengths(plan, linkage).items():
+        peak = peak_load(figures, standing[name], name, bar.count)
+        check = check_bar(bar, peak.tension, peak.compression, plan.allowances)
+        found.append(BarLoad(name=name, count=bar.count, peak=peak, check=check))
+    return LoadReport(bars=tuple(sorted(found, key=lambda load: load.check.governs.factor)))
+
+
+def peak_load(figures: Mapping[str, float | None], standing: float, name: str, count: int = 2) -> PeakLoad:
+    """Greatest tension and compression of one bar out of `count` that share a link's force.
+
+    Parameters
+    ----------
+    figures : dict of str to float or None
+        As `bar_loads`.
+    standing : float
+        Lumped force at ride height, N.
+    name : {'lower', 'upper'}
+    count : int
+        Bars that share it, 1 to 4.
+
+    Returns
+    -------
+    PeakLoad
+
+    Raises
+    ------
+    ValueError
+        When the run has no figure for this link.
+    """
+    most, least = figures.get(f"{name}_link_tension"), figures.get(f"{name}_link_compression")
+    if most is None or least is None:
+        raise ValueError(f"the run has no greatest loads of the {name} bars.")
+    pull, push = max(per_side(most, count), 0.0), max(-per_side(least, count), 0.0)
+    return PeakLoad(
+        tension=pull,
+        tension_time=figures.get(f"{name}_link_tension_time") if pull > 0.0 else None,
+        compression=push,
+        compression_time=figures.get(f"{name}_link_compression_time") if push > 0.0 else None,
+        standing=per_side(standing, count),
+    )
+
+
 def loads_of(car: Car, run: Launch) -> LoadReport:
     """Check a car's described bars against one of its launches.
-
-    Peaks are those read at every step of the run, not at its reports.
 
     Parameters
     ----------
@@ -206,21 +194,5 @@ def loads_of(car: Car, run: Launch) -> LoadReport:
     """
     if car.bars is None or not isinstance(car.rear.linkage, FourLink):
         raise ValueError("the car file describes no four-link bars: give its bars section.")
-    found = []
-    for name, bar in with_lengths(car.bars, car.rear.linkage).items():
-        peak = _peak_of_figures(run, name, bar.count)
-        check = check_bar(bar, peak.tension, peak.compression, car.bars.allowances)
-        found.append(BarLoad(name=name, count=bar.count, peak=peak, check=check))
-    return LoadReport(bars=tuple(sorted(found, key=lambda load: load.check.governs.factor)))
-
-
-def _peak_of_figures(run: Launch, name: str, count: int) -> PeakLoad:
-    most, least = run.figures[f"{name}_link_tension"], run.figures[f"{name}_link_compression"]
-    pull, push = max(most, 0.0) / count, max(-least, 0.0) / count
-    return PeakLoad(
-        tension=pull,
-        tension_time=run.figures[f"{name}_link_tension_time"] if pull > 0.0 else None,
-        compression=push,
-        compression_time=run.figures[f"{name}_link_compression_time"] if push > 0.0 else None,
-        standing=getattr(run.statics, f"{name}_link_force") / count,
-    )
+    standing = {"lower": run.statics.lower_link_force, "upper": run.statics.upper_link_force}
+    return bar_loads(car.bars, car.rear.linkage, run.figures, standing)
