@@ -9,6 +9,9 @@ ROOT = Path(__file__).parents[2]
 PROMISES = [
     "tests/shop/test_issued_revision_never_changes.py",
     "tests/shop/test_issue_at_once.py",
+    "tests/shop/test_queue_races.py",
+    "tests/shop/test_pass_constraints.py",
+    "tests/shop/test_enter_at_once.py",
 ]
 
 

@@ -24,7 +24,7 @@ def world(db):
     {"speed_660": "0"},
     {"reaction": "31"},
     {"number": 0},
-    {"lane": "middle"},
+    {"lane": "mid"},
     {"abort_reason": "shut off"},
     {"good_to": "time_60"},
     {"aborted": True, "good_to": "time_1320"},
