@@ -8,7 +8,7 @@ from dataclasses import asdict
 from pathlib import Path
 
 from solver.faults import CarError, LaunchFailed
-from solver.printing import launch_table, modes_table, statics_table
+from solver.printing import launch_table, modes_table, statics_table, sweep_table
 
 BAD_FILE, FAILED = 2, 3
 
@@ -37,14 +37,17 @@ def _parser():
         ("statics", _statics, "ride height: loads, preloads, instant centre, anti-squat"),
         ("modes", _modes, "natural frequencies and damping ratios"),
         ("launch", _launch, "the whole launch"),
+        ("sweep", _sweep, "the launch over a grid of choices"),
         ("weights", _weights, "scales, CG, sprung mass, CG height, spring-seat turns"),
         ("loads", _loads, "bars against the launch, rear tyres left and right"),
     ):
         part = commands.add_parser(name, help=what)
         part.add_argument("file", metavar="FILE", help="a car file")
         part.add_argument("--json", metavar="OUT", type=Path, help="write the result as JSON")
-        if name == "launch":
-            part.add_argument("--csv", metavar="OUT", type=Path, help="write the histories as CSV")
+        if name in ("launch", "sweep"):
+            part.add_argument("--csv", metavar="OUT", type=Path, help="write the table as CSV")
+        if name == "sweep":
+            part.add_argument("--vary", action="append", metavar="PATH=LOW:HIGH:COUNT", default=[])
         part.set_defaults(command=command)
     return parser
 
@@ -97,6 +100,22 @@ def _loads(options):
 
     result = loads_answer(_car(options))
     _answer(options, result.data, lambda: result.text)
+    return 0
+
+
+def _sweep(options):
+    from solver.grids import grid, usual_grid
+    from solver.sweeping import sweep
+
+    car = _car(options)
+    changes = grid(options.vary) if options.vary else usual_grid(car)
+    result = sweep(car, changes)
+    columns = {**changes, **result.statics, **result.figures}
+    if options.csv:
+        _write_csv(options.csv, columns)
+    varied = {path: values.tolist() for path, values in changes.items()}
+    data = {"varied": varied, **result.to_dict()}
+    _answer(options, data, lambda: sweep_table(changes, result), quiet=bool(options.csv))
     return 0
 
 

@@ -67,6 +67,32 @@ def launch_table(launch):
     return "\n\n".join([*parts, CAUTION])
 
 
+SWEEP_COLUMNS = {
+    "anti_squat": "anti-squat %",
+    "peak_rear_load": "peak rear N",
+    "rear_load_dip": "rear dip N",
+    "rear_separation": "separation m",
+    "peak_pitch": "pitch rad",
+    "front_lift_height": "front lift m",
+}
+
+
+def sweep_table(changes, sweep):
+    """One line a lane: what varies, then a few figures; or why it was refused."""
+    names = [*changes, *SWEEP_COLUMNS.values()]
+    lines = ["  ".join(names)]
+    known = {**sweep.figures, **sweep.statics}
+    for lane in range(len(sweep)):
+        cells = [f"{values[lane]:>{len(path)}.5g}" for path, values in changes.items()]
+        why = sweep.reason(lane)
+        if why:
+            cells.append(why)
+        else:
+            cells += [f"{known[k][lane]:>{len(v)}.5g}" for k, v in SWEEP_COLUMNS.items()]
+        lines.append("  ".join(cells))
+    return "\n".join(lines)
+
+
 def _most(mode):
     name = max(mode.shape, key=lambda key: abs(mode.shape[key]))
     return name.replace("_", " ")
