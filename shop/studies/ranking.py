@@ -74,7 +74,7 @@ def scores(columns: Columns, weights: Mapping[str, float], among: NDArray[np.boo
     total = np.zeros(len(among))
     used = {name: weight for name, weight in weights.items() if weight}
     for name, weight in used.items():
-        values = np.where(among, columns[name], np.nan)
+        values = np.where(among & np.isfinite(columns[name]), columns[name], np.nan)
         if np.isnan(values).all():
             return np.full(len(among), np.nan)
         low, high = np.nanmin(values), np.nanmax(values)

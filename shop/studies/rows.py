@@ -66,7 +66,7 @@ def changes_of(choice: Choice, base: Mapping[str, float], units: str) -> list[st
     ]
 
 
-def standing(study: Study, units: str, shown: list[str], most: int = 60) -> Standing:
+def standing(study: Study, units: str, shown: list[str], most: int = 25) -> Standing:
     """Rank what there is so far. `shown` are the figures the table has columns for."""
     columns, refused = columns_so_far(study)
     count, linkage = study.choices, study.revision.survey.linkage
