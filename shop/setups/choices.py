@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import Any
 
 from shop.garage.models import Measurement, Survey
@@ -35,6 +35,15 @@ class Choices:
     def fields(self) -> dict[str, Any]:
         names = ("holes", "settings", "hit_table", "hit_lines", "hit_lines_unit", "reason", "notes")
         return {name: getattr(self, name) for name in names}
+
+    def standing_in(self, start: Choices, faulty: set[str]) -> Choices:
+        """These choices, with those of `start` where a field is faulty: what can be drawn meanwhile."""
+        return replace(
+            self,
+            holes={**{key: hole for key, hole in start.holes.items() if key in faulty}, **self.holes},
+            settings={**{key: setting for key, setting in start.settings.items() if key in faulty}, **self.settings},
+            hit_table=start.hit_table if "hit_lines" in faulty else self.hit_table,
+        )
 
     @classmethod
     def of(cls, revision: Revision) -> Choices:

@@ -42,6 +42,7 @@ class RevisionForm(forms.Form):
             self.fields[quantity.key] = forms.CharField(required=False, max_length=200)
             self.fields[f"{quantity.key}_unit"] = forms.CharField(required=False, max_length=20)
         self.readable = Choices({}, {})
+        self.refused = False
 
     def clean(self) -> dict[str, Any]:
         cleaned = super().clean() or {}
@@ -101,8 +102,8 @@ class RevisionForm(forms.Form):
 
     @property
     def can_be_drawn(self) -> bool:
-        """Whether nothing but words is missing: a reason does not alter the drawing."""
-        return not self.is_bound or set(self.errors) <= {"reason", "notes"}
+        """Not once the solver has refused these very choices."""
+        return not self.is_bound or not self.refused
 
     @property
     def by_table(self) -> bool:
@@ -119,6 +120,7 @@ class RevisionForm(forms.Form):
 
     def add_refusal(self, refused: Refused) -> None:
         """Put a service's or the solver's words beside their fields; what has no field here goes on top."""
+        self.refused = True
         for name, words in refused.faults.items():
             field = HIT_FORCE.key if name == "hit" else name
             if field == "hit_peak" and self.by_table:

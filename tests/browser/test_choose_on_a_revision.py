@@ -42,12 +42,12 @@ def test_a_hole_can_be_chosen_by_keyboard(form: Page):
     expect(form.locator('.pick[data-bracket="lower_chassis"][data-hole="4"]')).to_be_focused()
 
 
-def test_a_fault_stands_beside_its_field_while_the_drawing_stays(form: Page):
+def test_a_fault_stands_beside_its_field_while_the_rest_is_drawn(form: Page):
     before = figure(form, "Anti-squat, whole car").inner_text()
     form.locator("#id_rear_spring_rate").fill("165 psi")
     expect(form.locator("#beside-rear_spring_rate")).to_contain_text("“psi” does not fit here")
     expect(figure(form, "Anti-squat, whole car")).to_have_text(before)
-    expect(form.locator("#form-faults")).to_contain_text("last choices that could be drawn")
+    expect(form.locator("#form-faults")).to_contain_text("still stand on rev 1")
     form.locator("#id_rear_spring_rate").fill("170")
     expect(form.locator("#beside-rear_spring_rate")).to_contain_text("rev 1: 165 lb/in")
     expect(form.locator("#form-faults")).to_be_empty()

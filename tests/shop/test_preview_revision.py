@@ -60,14 +60,17 @@ def test_what_changed_is_marked_beside_its_field(client, world):
     assert "rev 1" not in beside(response, "front_pressure")
 
 
-def test_a_fault_stands_beside_its_field_and_the_drawing_stays(client, world):
+def test_a_fault_stands_beside_its_field_and_the_rest_is_drawn(client, world):
     parent = make_issued(world)
-    response = send(
-        signed_in(client, world.owner), world, f"?from={parent.pk}", rear_spring_rate="165 psi", upper_chassis=2
-    )
+    client = signed_in(client, world.owner)
+    response = send(client, world, f"?from={parent.pk}", rear_spring_rate="165 psi", upper_chassis=2)
     assert "unit “psi” does not fit here" in beside(response, "rear_spring_rate")
     assert "rev 1: hole 3" in beside(response, "upper_chassis")
-    assert response["HX-Reswap"] == "none"
+    page = response.content.decode()
+    assert "still stand on rev 1" in page
+    without = send(client, world, f"?from={parent.pk}", upper_chassis=2).content.decode()
+    assert "Anti-squat" in page
+    assert page.split("<figure")[1].split("</figure>")[0] == without.split("<figure")[1].split("</figure>")[0]
 
 
 def test_a_linkage_that_cannot_be_is_said_in_words(client, world):
@@ -130,7 +133,7 @@ def test_an_empty_form_is_answered_in_words(client, world):
     response = signed_in(client, world.owner).post(reverse("setups:preview", args=[world.car.pk]), {})
     assert response.status_code == 200
     assert "must be set" in beside(response, "rear_spring_rate")
-    assert response["HX-Reswap"] == "none"
+    assert "choose one of the holes" in beside(response, "upper_chassis")
 
 
 @pytest.mark.django_db

@@ -11,9 +11,11 @@ from django.urls import reverse
 
 from shop.drawing.side_view import side_view
 from shop.launches import bridge
+from shop.people.models import LogEntry
 from shop.people.permissions import ISSUE, WRITE
 from shop.refusals import Refused
 from shop.setups import services
+from shop.setups.choices import Choices
 from shop.setups.differences import Change, hole_changes, setting_changes
 from shop.setups.figures import Figures, beside, figures_at_rest, headline
 from shop.setups.form_rows import rows_of, sections_of
@@ -33,6 +35,7 @@ def form_page(
     context["next_number"] = services.newest_number(draft.car) + 1
     context["surveys"] = list(draft.car.surveys.all()) if draft.pk is None else []
     if theirs is not None:
+        context["saved"] = LogEntry.objects.filter(object_type="revision", object_id=draft.pk).select_related("user").first()
         context["theirs"] = theirs
         context["against_theirs"] = _against(theirs, draft, form)
         # Sent once more, the form then replaces what the other person saved, knowingly.
@@ -57,7 +60,7 @@ def _meaning(request: HttpRequest, draft: Revision, form: RevisionForm) -> dict[
     figures, drawing, fault = None, "", ""
     if form.is_bound:
         form.is_valid()
-        form.readable.put_on(draft)
+        form.readable.standing_in(Choices.of(draft), set(form.errors)).put_on(draft)
     if form.can_be_drawn:
         try:
             figures = figures_at_rest(draft, units)
