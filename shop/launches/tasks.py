@@ -35,7 +35,13 @@ def reporter(job: Job) -> Callable[[float], None]:
 
 @shared_task(name="launches.run_job")
 def run_job(job_id: int) -> None:
+    # A worker lives for days; a connection that the database has dropped meanwhile must not cost the job an attempt.
     close_old_connections()
+    run(job_id)
+
+
+def run(job_id: int) -> None:
+    """Claim a job, or help with one that is shared, and work on it; nothing when another was faster."""
     worker = f"{socket.gethostname()}:{os.getpid()}"
     # The message names a job of any shop; its row says which scope the work runs in.
     with scopes_disabled():
