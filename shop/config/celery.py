@@ -24,8 +24,6 @@ from shop.config import folder_broker, lifeline, warming
 
 log = logging.getLogger(__name__)
 
-SWEEP_EVERY = 10.0  # seconds
-
 # Celery warns root of messages that carry code; ours are JSON and can carry none.
 warnings.filterwarnings("ignore", category=SecurityWarning)
 
@@ -92,13 +90,13 @@ def begin_sweeping(**_: Any) -> None:
     def keep_sweeping() -> None:
         while True:
             sweep()
-            time.sleep(SWEEP_EVERY)
+            time.sleep(settings.SWEEP_SECONDS)
 
     threading.Thread(target=keep_sweeping, name="sweeping", daemon=True).start()
 
 
 def sweep() -> None:
-    """Send stray jobs again. Whatever goes wrong is logged: the next sweep is ten seconds away."""
+    """Send stray jobs again. Whatever goes wrong is logged: the next sweep is seconds away."""
     from django.db import connections
 
     try:

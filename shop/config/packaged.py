@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import json
 import re
+import uuid
 from collections.abc import Iterable, Iterator
 from importlib.util import find_spec
 from pathlib import Path
@@ -77,7 +78,7 @@ def write_generated(folder: Path, plotly: Path) -> None:
     folder.mkdir(parents=True, exist_ok=True)
     script = plotly.read_text(encoding="utf-8")
     for name, derive in targets.items():
-        aside = folder / f".{name}.aside"
+        aside = folder / f".{name}.{uuid.uuid4().hex}"  # two threads may come here at once
         aside.write_text(derive(script), encoding="utf-8")
         aside.replace(folder / name)
 

@@ -194,6 +194,7 @@ SPECTACULAR_SETTINGS = {
 
 BROKER_URL = environment.text("LEDGER_BROKER_URL", "folder://localhost")
 QUEUE_DIR = DATA_DIR / "queue"
+SWEEP_SECONDS = environment.number("LEDGER_SWEEP_SECONDS", 10, least=1, most=600)
 
 # --- words on the way -----------------------------------------------------------------------------------------------
 

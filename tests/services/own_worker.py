@@ -32,6 +32,7 @@ class OwnWorker:
             LEDGER_DATABASE_URL=f"sqlite:///{connection.settings_dict['NAME']}",
             LEDGER_DATA_DIR=str(settings.DATA_DIR),
             LEDGER_SECRET_KEY=settings.SECRET_KEY,
+            LEDGER_SWEEP_SECONDS="1",
         )
         command = list(WORKER)
         command[command.index("WARNING")] = "INFO"

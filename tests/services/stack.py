@@ -57,7 +57,7 @@ def compose_settings(**given: str) -> dict[str, str]:
         name: re.sub(r"\$\{\w+:([-?])([^}]*)\}", lambda found: found[2] if found[1] == "-" else "unset", str(value))
         for name, value in settings.items()
     }
-    unknown = set(given) - set(filled) - {"LEDGER_DATA_DIR", "LEDGER_STATIC_DIR"}
+    unknown = set(given) - set(filled) - {"LEDGER_DATA_DIR", "LEDGER_STATIC_DIR", "LEDGER_SWEEP_SECONDS"}
     assert not unknown, f"docker-compose.yml does not set {unknown}"
     return {**filled, **given}
 
@@ -204,6 +204,7 @@ def prepared_stack(
         "LEDGER_DATA_DIR": str(folder / "var"),
         "LEDGER_STATIC_DIR": str(OUT / "static"),
         "LEDGER_SECRET_KEY": "only-for-tests",
+        "LEDGER_SWEEP_SECONDS": "1",
     }
     if kind == "hosted":
         assert postgres and redis
