@@ -10,6 +10,7 @@ from django.utils import timezone
 from django_scopes import scope
 
 from shop.demo.data import CARS, CUSTOMERS, MEMBERS, PASSWORD, SHOP, DemoCar
+from shop.demo.weekends import load_weekends
 from shop.garage.models import Bracket, Car, Customer, Measurement, Survey
 from shop.garage.quantities import BY_KEY, QUANTITIES
 from shop.people.models import Membership, Shop, User
@@ -31,6 +32,7 @@ def load_demo() -> Membership:
             Customer.objects.create(shop=shop, name=name, phone=phone, notes=notes)
         for offset, data in enumerate(CARS):
             _car(owner if offset % 2 else technician, data, days_ago=60 - 9 * offset)
+        load_weekends(technician, Car.objects.get(name=CARS[0].name))
     return owner
 
 
