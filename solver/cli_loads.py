@@ -141,4 +141,4 @@ def _at(force: float, time: float | None) -> str:
 
 
 def _row(label: str, text: str) -> str:
-    return f"  {label:<40}{text}"
+    return f"  {label:<48}{text}"

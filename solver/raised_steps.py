@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable
 from dataclasses import dataclass
 
 import numpy as np
@@ -48,8 +48,7 @@ class FittedHeight:
         there are no more readings than unknowns. What the scales, angle and
         lengths add on their own is not in them.
     residuals : ndarray, shape (n,)
-        Reading less line, kg, in the order the readings were given, front
-        before rear within a step.
+        Front axle's load less the line, kg, one a step in the order given.
     scatter : float
         Standard deviation of the residuals with n - 2 degrees of freedom, kg.
     up_down : float
@@ -78,7 +77,7 @@ def fit_raised_steps(
     ISO 10392 fits load against tan(angle). With unequal radii the load alone is
     not quite a straight line, but ``y = (Ff/W)[L - (Rf - Rr) t]``, t the tangent
     of the nose-up pitch, is: ``y = x - (h - Rr) t``. That is fitted, by least
-    squares, to both axles' readings alike.
+    squares, to the mean of both axles' readings where both were taken.
 
     Parameters
     ----------
@@ -107,57 +106,51 @@ def fit_raised_steps(
     ):
         positive(name, value, unit)
     steps = list(steps)
-    rows = [row for index, step in enumerate(steps) for row in _rows(index + 1, step, mass)]
-    tangents = np.array([row.tangent for row in rows])
+    tangents = np.array([_tangent(number, step) for number, step in enumerate(steps, start=1)])
+    loads = np.array([_front_load(number, step, mass) for number, step in enumerate(steps, start=1)])
     if len(np.unique(np.round(tangents, 6))) < 2:
         raise ValueError(
             "the readings are all at one angle: at least two different angles are needed,"
             " and ISO 10392 asks for three or more."
         )
     base = wheelbase - (front_radius - rear_radius) * tangents
-    shares = np.array([row.front_load for row in rows]) / mass
-    matrix = np.column_stack([np.ones_like(tangents), -tangents])
-    # Weighting by 1/base makes the fit one of loads, each scale equally good.
-    weighted = matrix / base[:, None] * mass
-    solution = np.linalg.lstsq(weighted, shares * mass, rcond=None)[0]
-    signs = np.array([row.sign for row in rows])
-    front_residuals = shares * mass - weighted @ solution
-    freedom = len(rows) - 2
-    scatter = math.sqrt(float(front_residuals @ front_residuals) / freedom) if freedom else math.nan
-    covariance = np.linalg.inv(weighted.T @ weighted) * scatter**2
+    # Divided by the base, the line is one of loads, and each step's scale is as good as another's.
+    matrix = np.column_stack([np.ones_like(tangents), -tangents]) / base[:, None] * mass
+    solution = np.linalg.lstsq(matrix, loads, rcond=None)[0]
+    residuals = loads - matrix @ solution
+    freedom = len(steps) - 2
+    scatter = math.sqrt(float(residuals @ residuals) / freedom) if freedom else math.nan
+    covariance = np.linalg.inv(matrix.T @ matrix) * scatter**2
     return FittedHeight(
         height=float(solution[1] + rear_radius),
         x=float(solution[0]),
         height_uncertainty=math.sqrt(covariance[1, 1]) if freedom else math.nan,
         x_uncertainty=math.sqrt(covariance[0, 0]) if freedom else math.nan,
-        residuals=front_residuals * signs,
+        residuals=residuals,
         scatter=scatter,
-        up_down=_up_down(front_residuals, [row.way for row in rows]),
+        up_down=_up_down(residuals, [step.way for step in steps]),
         doubts=_doubts(steps),
     )
 
 
-@dataclass(frozen=True)
-class _Row:
-    tangent: float
-    front_load: float
-    sign: float
-    way: str
-
-
-def _rows(number: int, step: RaisedStep, mass: float) -> Iterator[_Row]:
+def _tangent(number: int, step: RaisedStep) -> float:
+    """Tangent of the nose-up pitch of one step."""
     one_of(f"the raised end of step {number}", step.raised, ("front", "rear"))
     one_of(f"the way of step {number}", step.way, ("up", "down"))
     degrees = between(f"the angle of step {number}", math.degrees(step.angle), 0.0, 45.0, "degrees")
-    nose_up = math.tan(math.radians(degrees)) * (1.0 if step.raised == "front" else -1.0)
-    if step.front is None and step.rear is None:
-        raise ValueError(f"step {number} has no reading: give the front axle's, the rear's or both.")
+    return math.tan(math.radians(degrees)) * (1.0 if step.raised == "front" else -1.0)
+
+
+def _front_load(number: int, step: RaisedStep, mass: float) -> float:
+    """The front axle's load at one step, from its own reading, the rear's, or the mean of both."""
+    found = []
     if step.front is not None:
-        load = between(f"the front reading of step {number}", step.front, 0.0, mass, "kg")
-        yield _Row(nose_up, load, 1.0, step.way)
+        found.append(between(f"the front reading of step {number}", step.front, 0.0, mass, "kg"))
     if step.rear is not None:
-        load = between(f"the rear reading of step {number}", step.rear, 0.0, mass, "kg")
-        yield _Row(nose_up, mass - load, -1.0, step.way)
+        found.append(mass - between(f"the rear reading of step {number}", step.rear, 0.0, mass, "kg"))
+    if not found:
+        raise ValueError(f"step {number} has no reading: give the front axle's, the rear's or both.")
+    return sum(found) / len(found)
 
 
 def _up_down(residuals: NDArray[np.float64], ways: list[str]) -> float:
