@@ -107,6 +107,7 @@ AUTH_PASSWORD_VALIDATORS = [
 AXES_FAILURE_LIMIT = 8
 AXES_COOLOFF_TIME = 0.25
 AXES_LOCKOUT_PARAMETERS = [["username", "ip_address"]]
+AXES_USERNAME_FORM_FIELD = "username"  # what the sign-in form and authenticate() call it, though the model says email
 AXES_RESET_ON_SUCCESS = True
 AXES_LOCKOUT_CALLABLE = "shop.config.pages.shut_out"
 AXES_DISABLE_ACCESS_LOG = True
