@@ -19,6 +19,7 @@ from shop.sheets.setting_lines import Line, setting_groups
 
 PAPERS = {"letter": "US Letter", "a4": "A4"}
 HISTORY = 6
+ROOMY = 34  # lines that fit beside each other in the larger print
 NOTES = 360  # characters
 
 AT_REST = ("ic_x", "ic_z", "anti_squat", "anti_squat_dynamic")
@@ -44,6 +45,14 @@ class Sheet:
     drawing: SafeString | str = ""
     fault: str = ""
     changed: int = field(default=0)
+
+    @property
+    def dense(self) -> bool:
+        """Whether it takes the smaller print to keep to one page: counted in lines of either half."""
+        left = sum(len(lines) + 1 for _, lines in self.groups) + len(self.notes) // 60
+        typical = sum(map(len, self.provisional)) // 60
+        right = len(self.figures) + 6 + typical + sum(1 + len(one.reason[:76]) // 38 for one in self.history)
+        return max(left, right) > ROOMY
 
 
 def sheet_of(revision: Revision) -> Sheet:

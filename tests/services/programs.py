@@ -15,6 +15,9 @@ PACKAGES = {
     "initdb": "postgresql",
     "redis-server": "redis-server",
     "chromium": "chromium",
+    "pdfinfo": "poppler-utils",
+    "pdftotext": "poppler-utils",
+    "pdftoppm": "poppler-utils",
 }
 OTHER_NAMES = {"chromium": ("chromium", "chromium-browser", "google-chrome")}
 
