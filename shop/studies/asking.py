@@ -15,13 +15,20 @@ from shop.units import ReadingError, default_unit, show
 
 # What may be varied beside holes, and the step a shop would try. SI comes from the shop's own unit.
 SETTINGS = {
-    "rear_spring_rate": {"lb/in": 25, "N/mm": 5}, "front_spring_rate": {"lb/in": 25, "N/mm": 5},
-    "rear_shock_rate": {"lb·s/in": 1, "N·s/mm": 0.2}, "front_shock_rate": {"lb·s/in": 1, "N·s/mm": 0.2},
-    "rear_pressure": {"psi": 0.5, "kPa": 3}, "front_pressure": {"psi": 2, "kPa": 15},
-    "ride_height_rear": {"in": 0.25, "mm": 6}, "ride_height_front": {"in": 0.25, "mm": 6},
-    "front_limiter": {"in": 0.5, "mm": 12}, "wheelie_bar_height": {"in": 0.5, "mm": 12},
-    "ballast_weight": {"lb": 10, "kg": 5}, "ballast_x": {"in": 12, "mm": 300},
-    "hit_peak": {"g": 0.1, "m/s²": 1}, "hit_rise": {"s": 0.01, "ms": 10},
+    "rear_spring_rate": {"lb/in": 25, "N/mm": 5},
+    "front_spring_rate": {"lb/in": 25, "N/mm": 5},
+    "rear_shock_rate": {"lb·s/in": 1, "N·s/mm": 0.2},
+    "front_shock_rate": {"lb·s/in": 1, "N·s/mm": 0.2},
+    "rear_pressure": {"psi": 0.5, "kPa": 3},
+    "front_pressure": {"psi": 2, "kPa": 15},
+    "ride_height_rear": {"in": 0.25, "mm": 6},
+    "ride_height_front": {"in": 0.25, "mm": 6},
+    "front_limiter": {"in": 0.5, "mm": 12},
+    "wheelie_bar_height": {"in": 0.5, "mm": 12},
+    "ballast_weight": {"lb": 10, "kg": 5},
+    "ballast_x": {"in": 12, "mm": 300},
+    "hit_peak": {"g": 0.1, "m/s²": 1},
+    "hit_rise": {"s": 0.01, "ms": 10},
 }
 
 
@@ -47,7 +54,9 @@ def axis_fields(revision: Revision, units: str, typed: Mapping[str, str] | None 
     fields = []
     for place in places:
         every = ", ".join(str(number) for number in range(1, drilled.get(place, 0) + 1))
-        fields.append(_field(place, BRACKETS[place], True, "", f"hole {base.get(place, 0):g}", every, True, typed, faults, every))
+        fields.append(
+            _field(place, BRACKETS[place], True, "", f"hole {base.get(place, 0):g}", every, True, typed, faults, every)
+        )
     for key, steps in SETTINGS.items():
         if key not in base and key not in ("ballast_weight",):
             continue
@@ -55,10 +64,20 @@ def axis_fields(revision: Revision, units: str, typed: Mapping[str, str] | None 
         unit = default_unit(quantity.dimension, units)
         now = base.get(key)
         hint = f"steps of {steps.get(unit, '')} {unit}".strip()
-        fields.append(_field(
-            key, quantity.label, False, unit, "not set" if now is None else show(now, quantity.dimension, unit),
-            hint, False, typed, faults, "",
-        ))
+        fields.append(
+            _field(
+                key,
+                quantity.label,
+                False,
+                unit,
+                "not set" if now is None else show(now, quantity.dimension, unit),
+                hint,
+                False,
+                typed,
+                faults,
+                "",
+            )
+        )
     return fields
 
 
@@ -84,7 +103,9 @@ def read_asking(typed: Mapping[str, str], revision: Revision, units: str) -> dic
     if typed.get("mode") == "sample" and not size.isdecimal():
         raise Refused({"size": f"“{size}” is not how many samples to take; write a whole number"})
     return {
-        "mode": typed.get("mode", "every"), "axes": axes, "size": int(size) if size.isdecimal() else 0,
+        "mode": typed.get("mode", "every"),
+        "axes": axes,
+        "size": int(size) if size.isdecimal() else 0,
         "seed": int(seed) if seed.isdecimal() and len(seed) < 10 else 1,
     }
 

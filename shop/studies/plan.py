@@ -1,7 +1,8 @@
 """Which choices a study looks at: axes, how they combine, and choice number n of them.
 
 A plan is plain data, so that a study can be run again from its stored input:
-{"mode": "every" | "one" | "sample", "axes": [{"key", "values"}], "size", "seed"}.
+{"mode": "every" | "one" | "sample" | "few", "axes": [{"key", "values"}], "size", "seed"}.
+Mode "few" takes every choice that differs from the car as it is in at most `size` things.
 A key is a bracket place (values: hole numbers) or a setting of a revision (values: SI).
 Choices are numbered from 0; number n is worked out, never looked up.
 """
@@ -11,6 +12,8 @@ from __future__ import annotations
 import math
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field
+from functools import cached_property
+from itertools import combinations, product
 from typing import Any
 
 import numpy as np
@@ -26,7 +29,9 @@ MODES = {
     "every": "every combination",
     "one": "one at a time",
     "sample": "a spread of samples over all of them",
+    "few": "every combination of a few changes",
 }
+MOST_CHANGES = 3
 
 Choice = dict[str, float | int]
 
@@ -67,6 +72,14 @@ class Plan:
             return self.combinations
         if self.mode == "one":
             return 1 + sum(len(self._others(axis)) for axis in self.axes)
+        if self.mode == "few":
+            # Elementary symmetric sums of how many other values each axis has.
+            sums = [1] + [0] * self.size
+            for axis in self.axes:
+                others = len(self._others(axis))
+                for changes in range(self.size, 0, -1):
+                    sums[changes] += sums[changes - 1] * others
+            return sum(sums)
         return self.size
 
     def _others(self, axis: Axis) -> list[float]:
@@ -77,10 +90,13 @@ class Plan:
         """Choices number `start` up to, not including, `stop`."""
         if self.mode == "every":
             yield from (self._combination(number) for number in range(start, stop))
-        elif self.mode == "one":
-            yield from self._one_at_a_time()[start:stop]
         else:
-            yield from self._samples()[start:stop]
+            yield from self._listed[start:stop]
+
+    @cached_property
+    def _listed(self) -> list[Choice]:
+        makers = {"one": self._one_at_a_time, "few": self._few_changes, "sample": self._samples}
+        return makers[self.mode]()
 
     def _combination(self, number: int) -> Choice:
         choice: Choice = {}
@@ -93,6 +109,16 @@ class Plan:
         own = {axis.key: self.base[axis.key] for axis in self.axes if axis.key in self.base}
         return [own] + [{**own, axis.key: value} for axis in self.axes for value in self._others(axis)]
 
+    def _few_changes(self) -> list[Choice]:
+        """The car as it is, then one change, then two: fewest first."""
+        own = {axis.key: self.base[axis.key] for axis in self.axes if axis.key in self.base}
+        listed: list[Choice] = []
+        for changes in range(self.size + 1):
+            for axes in combinations(self.axes, changes):
+                for values in product(*(self._others(axis) for axis in axes)):
+                    listed.append({**own, **{axis.key: value for axis, value in zip(axes, values, strict=True)}})
+        return listed
+
     def _samples(self) -> list[Choice]:
         """A scrambled Sobol' sequence over the axes' values: seeded, so it can be drawn again."""
         sampler = qmc.Sobol(len(self.axes), scramble=True, rng=np.random.default_rng(self.seed))
@@ -100,9 +126,7 @@ class Plan:
         points = sampler.random_base2(max(1, math.ceil(math.log2(max(2, self.size)))))[: self.size]
         counts = np.array([len(axis.values) for axis in self.axes])
         digits = np.minimum((points * counts).astype(int), counts - 1)
-        return [
-            {axis.key: axis.values[digit] for axis, digit in zip(self.axes, row, strict=True)} for row in digits
-        ]
+        return [{axis.key: axis.values[digit] for axis, digit in zip(self.axes, row, strict=True)} for row in digits]
 
     def to_dict(self) -> dict[str, Any]:
         return {
@@ -128,6 +152,8 @@ def read_plan(data: Mapping[str, Any]) -> Plan:
         raise Refused({"axes": "nothing is varied: choose at least one bracket or setting with two values or more"})
     if mode == "sample" and not 2 <= plan.size <= MOST_CHOICES:
         raise Refused({"size": f"a sample has 2 to {MOST_CHOICES:,} choices; “{plan.size:,}” was asked for"})
+    if mode == "few" and not 1 <= plan.size <= MOST_CHANGES:
+        raise Refused({"size": f"at most 1 to {MOST_CHANGES} changes are looked for; “{plan.size:,}” was asked for"})
     if len(plan) > MOST_CHOICES:
         raise Refused({"axes": _too_many(plan)})
     return plan
@@ -152,6 +178,11 @@ def _read_axis(data: Mapping[str, Any]) -> Axis:
 
 def _too_many(plan: Plan) -> str:
     widest = max(plan.axes, key=lambda axis: len(axis.values))
+    if plan.mode == "few":
+        return (
+            f"{len(plan):,} choices of up to {plan.size} changes; at most {MOST_CHOICES:,} are solved in one study. Narrow it: "
+            f"fewer changes at once, fewer values of “{widest.label}” ({len(widest.values)} now), or fewer things to change"
+        )
     return (
         f"{len(plan):,} combinations; at most {MOST_CHOICES:,} are solved in one study. Narrow it: fewer values of "
         f"“{widest.label}” ({len(widest.values)} now), fewer axes, or a sample of up to {MOST_CHOICES:,} of them"

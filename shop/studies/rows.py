@@ -19,8 +19,11 @@ from shop.studies.yardsticks import FIGURES, USUAL, limits_of, study_measure
 from shop.units import default_unit, show
 
 SHORT = {
-    "lower_chassis": "lower chassis", "lower_housing": "lower housing", "upper_chassis": "upper chassis",
-    "upper_housing": "upper housing", "ladder_chassis": "ladder front",
+    "lower_chassis": "lower chassis",
+    "lower_housing": "lower housing",
+    "upper_chassis": "upper chassis",
+    "upper_housing": "upper housing",
+    "ladder_chassis": "ladder front",
 }
 
 
@@ -34,6 +37,7 @@ class RankedRow:
     score: str
     texts: list[str]
     is_base: bool
+    sure: str = ""
 
 
 @dataclass(frozen=True)
@@ -84,23 +88,67 @@ def standing(study: Study, units: str, shown: list[str], most: int = 25) -> Stan
         places = np.flatnonzero(solved)
         misses = [_miss_words(miss, places, units, linkage) for miss in nearest_misses(only, limits, int(solved.sum()))]
         misses = misses or ["No choice comes near: the limits contradict each other."]
-    ranked = order(score)[:most]
+    ranked = (_fewest(study, among, score) if study.plan["mode"] == "few" else order(score))[:most]
+    robust = _robust(study)
     measures = [study_measure(key, units, linkage) for key in shown]
     return Standing(
-        int(solved.sum()), refused, int(among.sum()), _rows(study, ranked, score, known, measures, units), misses, known,
-        score, among,
+        int(solved.sum()),
+        refused,
+        int(among.sum()),
+        _rows(study, ranked, score, known, measures, units, robust),
+        misses,
+        known,
+        score,
+        among,
     )
 
 
-def _rows(study: Study, ranked, score, known: Columns, measures: list[Measure], units: str) -> list[RankedRow]:
+def _rows(study: Study, ranked, score, known: Columns, measures: list[Measure], units: str, robust) -> list[RankedRow]:
     plan = read_plan(study.plan)
     rows = []
     for place, number in enumerate(ranked.tolist(), 1):
         choice = choice_of(plan, number)
         changes = changes_of(choice, plan.base, units)
         texts = [measure.text(_plain(known[measure.key][number])) for measure in measures]
-        rows.append(RankedRow(number, place, changes, f"{100 * score[number]:.0f}", texts, not changes))
+        sure = f"{100 * robust[str(number)]:.0f} %" if str(number) in robust else ""
+        rows.append(RankedRow(number, place, changes, f"{100 * score[number]:.0f}", texts, not changes, sure))
     return rows
+
+
+def _robust(study: Study) -> dict[str, float]:
+    result = getattr(study.job, "result", None)
+    return result.figures.get("robust", {}) if result else {}
+
+
+def few_changes_first(study: Study) -> list[int]:
+    """Choices that meet the limits, fewest changes first and the best score first among equals."""
+    columns, _ = columns_so_far(study)
+    among = within(_known(columns, study), limits_of(study.limits), study.choices) & _solved(columns, study)
+    score = scores(_known(columns, study), dict(study.weights or USUAL), among)
+    return _fewest(study, among, score).tolist()
+
+
+def _fewest(study: Study, among: np.ndarray, score: np.ndarray) -> np.ndarray:
+    plan = read_plan(study.plan)
+    numbers = np.flatnonzero(among)
+    changes = {
+        number: sum(
+            not np.isclose(value, plan.base[key], rtol=1e-9) for key, value in choice.items() if key in plan.base
+        )
+        for number, choice in enumerate(plan.between(0, study.choices))
+        if among[number]
+    }
+    return np.array(
+        sorted(numbers.tolist(), key=lambda n: (changes[n], -np.nan_to_num(score[n], nan=-1.0), n)), dtype=int
+    )
+
+
+def _known(columns: Columns, study: Study) -> Columns:
+    return {name: columns.get(name, np.full(study.choices, np.nan)) for name in FIGURES}
+
+
+def _solved(columns: Columns, study: Study) -> np.ndarray:
+    return np.isfinite(columns["peak_rear_load"]) if columns else np.zeros(study.choices, dtype=bool)
 
 
 def choice_of(plan, number: int) -> Choice:

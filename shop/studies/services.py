@@ -19,6 +19,7 @@ from shop.setups.models import Revision
 from shop.studies import work
 from shop.studies.models import Chunk, Study, Yardstick
 from shop.studies.plan import read_plan
+from shop.studies.spread import tolerances_of
 
 # The first rows should be there before a person looks up; after that, chunks large enough to be cheap.
 FIRST_CHUNK = 64
@@ -29,26 +30,40 @@ HELPERS = 3
 
 
 def request_study(
-    member: Membership, revision: Revision, plan_data: Mapping[str, Any], name: str,
-    limits: Mapping[str, Any] | None = None, weights: Mapping[str, float] | None = None,
+    member: Membership,
+    revision: Revision,
+    plan_data: Mapping[str, Any],
+    name: str,
+    limits: Mapping[str, Any] | None = None,
+    weights: Mapping[str, float] | None = None,
 ) -> Study:
     """Queue the launches of every choice of a plan, in chunks. Refused when the plan asks for nothing or too much."""
     if not revision.issued:
         raise Refused("a study starts from an issued revision; issue the draft first")
     plan = work.with_base(read_plan(plan_data), revision)
     stored = work.stored_input(revision, plan)
+    if plan.mode == "few":
+        stored["tolerances"] = tolerances_of(revision)
     count = len(plan)
     with transaction.atomic():
         job = queue(member, revision, "study", stored)
         study = Study.objects.create(
-            shop=member.shop, revision=revision, job=job, name=(name.strip() or "Study")[:120], plan=plan.to_dict(),
-            choices=count, limits=limits or {}, weights=weights or {}, author=member.user,
+            shop=member.shop,
+            revision=revision,
+            job=job,
+            name=(name.strip() or "Study")[:120],
+            plan=plan.to_dict(),
+            choices=count,
+            limits=limits or {},
+            weights=weights or {},
+            author=member.user,
         )
         starts = [0, *range(FIRST_CHUNK, count, CHUNK)]
         stops = [*starts[1:], count]
         Chunk.objects.bulk_create(
             Chunk(shop=member.shop, study=study, start=start, stop=min(stop, count))
-            for start, stop in zip(starts, stops, strict=True) if start < count
+            for start, stop in zip(starts, stops, strict=True)
+            if start < count
         )
         record(member, "asked for", study, choices=count)
         for _ in range(HELPERS):
@@ -113,7 +128,8 @@ def keep_yardstick(member: Membership, name: str, limits: Mapping[str, Any], wei
         raise Refused({"name": "give the limits and weights a name"})
     with transaction.atomic():
         kept, _ = Yardstick.objects.update_or_create(
-            shop=member.shop, name=name.strip()[:80],
+            shop=member.shop,
+            name=name.strip()[:80],
             defaults={"limits": limits, "weights": weights, "author": member.user},
         )
         record(member, "kept", kept)

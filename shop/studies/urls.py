@@ -1,12 +1,13 @@
 from django.urls import path
 
-from shop.studies.views import asking, study
+from shop.studies.views import asking, spread, study
 
 app_name = "studies"
 
 urlpatterns = [
     path("revisions/<int:pk>/studies/new", asking.new, name="new"),
     path("revisions/<int:pk>/studies/count", asking.count, name="count"),
+    path("revisions/<int:pk>/spread", spread.spread, name="spread"),
     path("studies/<int:pk>/", study.study, name="study"),
     path("studies/<int:pk>/table", study.table, name="table"),
     path("studies/<int:pk>/rank", study.rank, name="rank"),

@@ -20,7 +20,7 @@ from shop.studies.plan import Choice, Plan, read_plan
 Columns = dict[str, NDArray[np.float64]]
 
 
-def stored_input(revision: Revision, plan: Plan) -> dict[str, Any]:
+def stored_input(revision: Revision, plan: Plan | None = None) -> dict[str, Any]:
     """All that a study needs, as plain data: the revision in SI, every hole there is, and the plan."""
     inputs = inputs_of(revision)
     brackets = {bracket.place: bracket.si_holes() for bracket in revision.survey.brackets.all()}
@@ -31,7 +31,7 @@ def stored_input(revision: Revision, plan: Plan) -> dict[str, Any]:
         "brackets": {place: [list(hole) for hole in holes] for place, holes in brackets.items()},
         "linkage": inputs.linkage,
         "hit_table": inputs.hit_table,
-        "plan": plan.to_dict(),
+        **({"plan": plan.to_dict()} if plan else {}),
     }
 
 

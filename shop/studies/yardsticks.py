@@ -1,4 +1,4 @@
-"""By what a study is ranked: which figures, how a person's limits and weights are read, and what is taken when none is set."""
+"""By what a study is ranked: which figures, how limits and weights are read, and what is taken when none is set."""
 
 from __future__ import annotations
 
@@ -12,15 +12,40 @@ from shop.units import ReadingError, parse_reading, unit_of
 
 # Figures a study lists, in the order of the trade's questions: what the rear tyres feel, what the front does, what breaks.
 FIGURES = (
-    "mean_rear_load_100ms", "mean_rear_load_250ms", "mean_rear_load_500ms", "peak_rear_load", "rear_load_dip",
-    "least_rear_load", "peak_grip_needed", "front_lift_height", "peak_pitch", "rear_squat", "rear_separation",
-    "rear_droop_travel_left", "rear_bump_travel_left", "lower_link_compression", "upper_link_tension",
-    "peak_housing_angle", "anti_squat", "anti_squat_dynamic", "instant_centre_x", "instant_centre_z",
-    "lower_bar_length", "upper_bar_length",
+    "mean_rear_load_100ms",
+    "mean_rear_load_250ms",
+    "mean_rear_load_500ms",
+    "peak_rear_load",
+    "rear_load_dip",
+    "least_rear_load",
+    "peak_grip_needed",
+    "front_lift_height",
+    "peak_pitch",
+    "rear_squat",
+    "rear_separation",
+    "rear_droop_travel_left",
+    "rear_bump_travel_left",
+    "lower_link_compression",
+    "upper_link_tension",
+    "peak_housing_angle",
+    "anti_squat",
+    "anti_squat_dynamic",
+    "instant_centre_x",
+    "instant_centre_z",
+    "lower_bar_length",
+    "upper_bar_length",
 )
 # What the table shows beside the score before anybody chooses.
-SHOWN = ("mean_rear_load_250ms", "rear_load_dip", "front_lift_height", "peak_grip_needed", "anti_squat", "instant_centre_x",
-         "instant_centre_z", "lower_link_compression")
+SHOWN = (
+    "mean_rear_load_250ms",
+    "rear_load_dip",
+    "front_lift_height",
+    "peak_grip_needed",
+    "anti_squat",
+    "instant_centre_x",
+    "instant_centre_z",
+    "lower_link_compression",
+)
 WEIGHTS = {"2": "more, much", "1": "more is better", "0": "does not count", "-1": "less is better", "-2": "less, much"}
 # A stated default: load on the rear tyres early, held, at little grip. Common practice, no source.
 USUAL = {"mean_rear_load_250ms": 2.0, "rear_load_dip": 1.0, "peak_grip_needed": -1.0}
@@ -86,8 +111,12 @@ def limits_of(stored: Mapping[str, Mapping[str, float | None]]) -> list[Limit]:
 
 
 def yards(
-    limits: Mapping[str, Mapping[str, float | None]], weights: Mapping[str, float], units: str, linkage: str,
-    typed: Mapping[str, str] | None = None, faults: Mapping[str, str] | None = None,
+    limits: Mapping[str, Mapping[str, float | None]],
+    weights: Mapping[str, float],
+    units: str,
+    linkage: str,
+    typed: Mapping[str, str] | None = None,
+    faults: Mapping[str, str] | None = None,
 ) -> list[Yard]:
     """The ranking form's rows: as typed where something was refused, else as stored."""
     rows = []

@@ -6,85 +6,111 @@ from django.db import migrations, models
 
 
 class Migration(migrations.Migration):
-
     initial = True
 
     dependencies = [
-        ('launches', '0001_initial'),
-        ('people', '0001_initial'),
-        ('setups', '0002_issued_never_changes'),
+        ("launches", "0001_initial"),
+        ("people", "0001_initial"),
+        ("setups", "0002_issued_never_changes"),
         migrations.swappable_dependency(settings.AUTH_USER_MODEL),
     ]
 
     operations = [
         migrations.CreateModel(
-            name='Study',
+            name="Study",
             fields=[
-                ('id', models.BigAutoField(auto_created=True, primary_key=True, serialize=False, verbose_name='ID')),
-                ('name', models.CharField(max_length=120)),
-                ('plan', models.JSONField()),
-                ('choices', models.PositiveIntegerField()),
-                ('limits', models.JSONField(default=dict)),
-                ('weights', models.JSONField(default=dict)),
-                ('version', models.PositiveIntegerField(default=1)),
-                ('created_at', models.DateTimeField(auto_now_add=True)),
-                ('author', models.ForeignKey(null=True, on_delete=django.db.models.deletion.SET_NULL, to=settings.AUTH_USER_MODEL)),
-                ('job', models.OneToOneField(on_delete=django.db.models.deletion.PROTECT, related_name='study', to='launches.job')),
-                ('revision', models.ForeignKey(on_delete=django.db.models.deletion.PROTECT, related_name='studies', to='setups.revision')),
-                ('shop', models.ForeignKey(on_delete=django.db.models.deletion.CASCADE, to='people.shop')),
+                ("id", models.BigAutoField(auto_created=True, primary_key=True, serialize=False, verbose_name="ID")),
+                ("name", models.CharField(max_length=120)),
+                ("plan", models.JSONField()),
+                ("choices", models.PositiveIntegerField()),
+                ("limits", models.JSONField(default=dict)),
+                ("weights", models.JSONField(default=dict)),
+                ("version", models.PositiveIntegerField(default=1)),
+                ("created_at", models.DateTimeField(auto_now_add=True)),
+                (
+                    "author",
+                    models.ForeignKey(
+                        null=True, on_delete=django.db.models.deletion.SET_NULL, to=settings.AUTH_USER_MODEL
+                    ),
+                ),
+                (
+                    "job",
+                    models.OneToOneField(
+                        on_delete=django.db.models.deletion.PROTECT, related_name="study", to="launches.job"
+                    ),
+                ),
+                (
+                    "revision",
+                    models.ForeignKey(
+                        on_delete=django.db.models.deletion.PROTECT, related_name="studies", to="setups.revision"
+                    ),
+                ),
+                ("shop", models.ForeignKey(on_delete=django.db.models.deletion.CASCADE, to="people.shop")),
             ],
             options={
-                'verbose_name_plural': 'studies',
-                'ordering': ['-id'],
+                "verbose_name_plural": "studies",
+                "ordering": ["-id"],
             },
         ),
         migrations.CreateModel(
-            name='Chunk',
+            name="Chunk",
             fields=[
-                ('id', models.BigAutoField(auto_created=True, primary_key=True, serialize=False, verbose_name='ID')),
-                ('start', models.PositiveIntegerField()),
-                ('stop', models.PositiveIntegerField()),
-                ('attempt', models.PositiveIntegerField(default=0)),
-                ('lease_until', models.DateTimeField(blank=True, null=True)),
-                ('done_at', models.DateTimeField(blank=True, null=True)),
-                ('figures', models.BinaryField(null=True)),
-                ('refused', models.JSONField(default=dict)),
-                ('shop', models.ForeignKey(on_delete=django.db.models.deletion.CASCADE, to='people.shop')),
-                ('study', models.ForeignKey(on_delete=django.db.models.deletion.CASCADE, related_name='chunks', to='studies.study')),
+                ("id", models.BigAutoField(auto_created=True, primary_key=True, serialize=False, verbose_name="ID")),
+                ("start", models.PositiveIntegerField()),
+                ("stop", models.PositiveIntegerField()),
+                ("attempt", models.PositiveIntegerField(default=0)),
+                ("lease_until", models.DateTimeField(blank=True, null=True)),
+                ("done_at", models.DateTimeField(blank=True, null=True)),
+                ("figures", models.BinaryField(null=True)),
+                ("refused", models.JSONField(default=dict)),
+                ("shop", models.ForeignKey(on_delete=django.db.models.deletion.CASCADE, to="people.shop")),
+                (
+                    "study",
+                    models.ForeignKey(
+                        on_delete=django.db.models.deletion.CASCADE, related_name="chunks", to="studies.study"
+                    ),
+                ),
             ],
             options={
-                'ordering': ['start'],
+                "ordering": ["start"],
             },
         ),
         migrations.CreateModel(
-            name='Yardstick',
+            name="Yardstick",
             fields=[
-                ('id', models.BigAutoField(auto_created=True, primary_key=True, serialize=False, verbose_name='ID')),
-                ('name', models.CharField(max_length=80)),
-                ('limits', models.JSONField(default=dict)),
-                ('weights', models.JSONField(default=dict)),
-                ('created_at', models.DateTimeField(auto_now_add=True)),
-                ('author', models.ForeignKey(null=True, on_delete=django.db.models.deletion.SET_NULL, to=settings.AUTH_USER_MODEL)),
-                ('shop', models.ForeignKey(on_delete=django.db.models.deletion.CASCADE, to='people.shop')),
+                ("id", models.BigAutoField(auto_created=True, primary_key=True, serialize=False, verbose_name="ID")),
+                ("name", models.CharField(max_length=80)),
+                ("limits", models.JSONField(default=dict)),
+                ("weights", models.JSONField(default=dict)),
+                ("created_at", models.DateTimeField(auto_now_add=True)),
+                (
+                    "author",
+                    models.ForeignKey(
+                        null=True, on_delete=django.db.models.deletion.SET_NULL, to=settings.AUTH_USER_MODEL
+                    ),
+                ),
+                ("shop", models.ForeignKey(on_delete=django.db.models.deletion.CASCADE, to="people.shop")),
             ],
             options={
-                'ordering': ['name'],
+                "ordering": ["name"],
             },
         ),
         migrations.AddConstraint(
-            model_name='study',
-            constraint=models.CheckConstraint(condition=models.Q(('choices__gte', 1)), name='study_has_choices'),
+            model_name="study",
+            constraint=models.CheckConstraint(condition=models.Q(("choices__gte", 1)), name="study_has_choices"),
         ),
         migrations.AddConstraint(
-            model_name='chunk',
-            constraint=models.UniqueConstraint(fields=('study', 'start'), name='chunk_once_per_study'),
+            model_name="chunk",
+            constraint=models.UniqueConstraint(fields=("study", "start"), name="chunk_once_per_study"),
         ),
         migrations.AddConstraint(
-            model_name='chunk',
-            constraint=models.CheckConstraint(condition=models.Q(('stop__gt', models.F('start'))), name='chunk_not_empty'),
+            model_name="chunk",
+            constraint=models.CheckConstraint(
+                condition=models.Q(("stop__gt", models.F("start"))), name="chunk_not_empty"
+            ),
         ),
         migrations.AddConstraint(
-            model_name='yardstick',
-            constraint=models.UniqueConstraint(fields=('shop', 'name'), name='yardstick_named_once'),
+            model_name="yardstick",
+            constraint=models.UniqueConstraint(fields=("shop", "name"), name="yardstick_named_once"),
         ),
     ]

@@ -15,13 +15,16 @@ from shop.studies import services
 from shop.studies.asking import axis_fields, read_asking
 from shop.studies.models import Yardstick
 from shop.studies.plan import MODES, MOST_CHOICES, read_plan
+from shop.studies.yardsticks import FIGURES, read_limits, yards
 
 REFUSED = 422
 
 
 def _revision(pk: int) -> Revision:
     return get_object_or_404(
-        Revision.objects.select_related("car__customer", "survey__car", "parent", "author", "shop"), pk=pk, number__isnull=False
+        Revision.objects.select_related("car__customer", "survey__car", "parent", "author", "shop"),
+        pk=pk,
+        number__isnull=False,
     )
 
 
@@ -33,9 +36,19 @@ def new(request: HttpRequest, pk: int) -> HttpResponse:
     typed = request.POST.dict()
     try:
         plan = read_asking(typed, revision, request.shop.units)
-        kept = Yardstick.objects.filter(pk=typed["yardstick"]).first() if typed.get("yardstick", "").isdecimal() else None
+        limits = read_limits(typed, request.shop.units, revision.survey.linkage)
+        kept = (
+            Yardstick.objects.filter(pk=typed["yardstick"]).first() if typed.get("yardstick", "").isdecimal() else None
+        )
+        if plan["mode"] == "few" and not limits and kept is None:
+            raise Refused("say which figures to reach: fewest changes to what?")
         study = services.request_study(
-            request.member, revision, plan, typed.get("name", ""), kept.limits if kept else None, kept.weights if kept else None
+            request.member,
+            revision,
+            plan,
+            typed.get("name", ""),
+            limits or (kept.limits if kept else None),
+            kept.weights if kept else None,
         )
     except Refused as refused:
         return _page(request, revision, typed, refused.faults, status=REFUSED)
@@ -56,12 +69,26 @@ def count(request: HttpRequest, pk: int) -> HttpResponse:
 
 def _page(request: HttpRequest, revision: Revision, typed, faults, status: int = 200) -> HttpResponse:
     fields = axis_fields(revision, request.shop.units, typed, faults)
-    own = {field.key for field in fields}
+    own = {field.key for field in fields} | set(FIGURES)
     context = {
-        "revision": revision, "car": revision.car, "typed": typed or {"mode": "every", "seed": "1", "size": "1000"},
-        "holes": [field for field in fields if field.is_hole], "settings": [field for field in fields if not field.is_hole],
-        "modes": MODES.items(), "most": MOST_CHOICES, "yardsticks": Yardstick.objects.all(),
+        "revision": revision,
+        "car": revision.car,
+        "typed": typed or _start(request),
+        "holes": [field for field in fields if field.is_hole],
+        "settings": [field for field in fields if not field.is_hole],
+        "modes": MODES.items(),
+        "yards": yards({}, {}, request.shop.units, revision.survey.linkage, typed, faults),
+        "aiming": (typed or {}).get("mode") == "few",
+        "most": MOST_CHOICES,
+        "yardsticks": Yardstick.objects.all(),
         "faults": [words for name, words in faults.items() if name not in own],
-        "provisional": bridge.provisional(revision), "may_issue": request.member.may(ISSUE),
+        "provisional": bridge.provisional(revision),
+        "may_issue": request.member.may(ISSUE),
     }
     return render(request, "studies/new.html", context, status=status)
+
+
+def _start(request: HttpRequest) -> dict[str, str]:
+    """What the form begins with; `aim` begins with the search for few changes."""
+    aiming = "aim" in request.GET
+    return {"mode": "few" if aiming else "every", "seed": "1", "size": "2" if aiming else "1000"}

@@ -33,7 +33,15 @@ REFUSED = 422
 
 
 def _study(pk: int) -> Study:
-    related = ("job", "shop", "revision__car__customer", "revision__survey", "revision__shop", "revision__author", "author")
+    related = (
+        "job",
+        "shop",
+        "revision__car__customer",
+        "revision__survey",
+        "revision__shop",
+        "revision__author",
+        "author",
+    )
     return get_object_or_404(Study.objects.select_related(*related).defer("job__input"), pk=pk)
 
 
@@ -42,9 +50,14 @@ def _table(request: HttpRequest, study: Study) -> dict[str, object]:
     stand = standing(study, units, list(SHOWN))
     left = study.choices - stand.solved - len(stand.refused)
     return {
-        "study": study, "stand": stand, "left": left, "job": study.job, "running": not study.job.settled,
+        "study": study,
+        "stand": stand,
+        "left": left,
+        "job": study.job,
+        "running": not study.job.settled,
         "heads": [study_measure(key, units, linkage) for key in SHOWN],
-        "refused": list(stand.refused.items())[:5], "may_write": request.member.may(WRITE),
+        "refused": list(stand.refused.items())[:5],
+        "may_write": request.member.may(WRITE),
         "may_issue": request.member.may(ISSUE),
     }
 
@@ -53,8 +66,12 @@ def _page(request: HttpRequest, study: Study, typed=None, faults=None, *, stale:
     units, linkage = request.shop.units, study.revision.survey.linkage
     weights = study.weights or USUAL
     context = _table(request, study) | {
-        "car": study.revision.car, "revision": study.revision, "stale": stale, "weights": WEIGHTS.items(),
-        "yards": yards(study.limits, weights, units, linkage, typed, faults), "usual": not study.weights,
+        "car": study.revision.car,
+        "revision": study.revision,
+        "stale": stale,
+        "weights": WEIGHTS.items(),
+        "yards": yards(study.limits, weights, units, linkage, typed, faults),
+        "usual": not study.weights,
         "figures": [study_measure(key, units, linkage) for key in FIGURES],
         "provisional": bridge.provisional(study.revision),
     }
@@ -148,8 +165,15 @@ def choice(request: HttpRequest, pk: int, number: int) -> HttpResponse:
         change = known.difference(columns[key][number] - before) if math.isfinite(before) else ""
         rows.append((known, known.text(float(columns[key][number])), change))
     context = {
-        "study": study, "car": study.revision.car, "revision": study.revision, "number": number, "drawing": drawing,
-        "changes": changes_of(chosen, plan.base, units), "rows": rows, "bars": bars, "fault": refused.get(str(number)),
+        "study": study,
+        "car": study.revision.car,
+        "revision": study.revision,
+        "number": number,
+        "drawing": drawing,
+        "changes": changes_of(chosen, plan.base, units),
+        "rows": rows,
+        "bars": bars,
+        "fault": refused.get(str(number)),
         "may_write": request.member.may(WRITE),
     }
     return render(request, "studies/choice.html", context)
@@ -177,9 +201,17 @@ def _choices(study: Study, chosen) -> Choices:
         if key in settings and math.isclose(settings[key]["value"], shown, rel_tol=1e-7):
             continue
         settings[key] = {"typed": f"{shown:g}", "value": shown, "unit": unit}
-    words = ", ".join(change_words(key, value, study.shop.units) for key, value in chosen.items()
-                      if start.holes.get(key) != value)
-    return Choices(holes, settings, start.hit_table, start.hit_lines, start.hit_lines_unit, f"From study “{study.name}”: {words}"[:200])
+    words = ", ".join(
+        change_words(key, value, study.shop.units) for key, value in chosen.items() if start.holes.get(key) != value
+    )
+    return Choices(
+        holes,
+        settings,
+        start.hit_table,
+        start.hit_lines,
+        start.hit_lines_unit,
+        f"From study “{study.name}”: {words}"[:200],
+    )
 
 
 def _with_choice(study: Study, chosen) -> Revision:
@@ -215,9 +247,15 @@ def columns(request: HttpRequest, pk: int) -> JsonResponse:
         values = stand.columns[key] * known.scale / unit.factor - unit.offset
         channels[key] = {"label": known.label, "unit": known.unit, "values": _rounded(values)}
     answer = {
-        "count": study.choices, "columns": channels, "meets": stand.among.astype(int).tolist(),
-        "words": [", ".join(changes_of(chosen, plan.base, units)) or "as on the car" for chosen in plan.between(0, study.choices)],
-        "front": [], "running": not study.job.settled,
+        "count": study.choices,
+        "columns": channels,
+        "meets": stand.among.astype(int).tolist(),
+        "words": [
+            ", ".join(changes_of(chosen, plan.base, units)) or "as on the car"
+            for chosen in plan.between(0, study.choices)
+        ],
+        "front": [],
+        "running": not study.job.settled,
     }
     if len(wanted) >= 2:
         first, second = (np.where(stand.among, stand.columns[key], np.nan) for key in wanted[:2])
@@ -243,7 +281,9 @@ def export(request: HttpRequest, pk: int) -> HttpResponse:
     writer.writerow(["choice", *keys, *names, "refused"])
     for number, chosen in enumerate(plan.between(0, study.choices)):
         figures = ["" if not math.isfinite(found[name][number]) else repr(float(found[name][number])) for name in names]
-        writer.writerow([number, *(chosen.get(key, plan.base.get(key, "")) for key in keys), *figures, refused.get(str(number), "")])
+        writer.writerow(
+            [number, *(chosen.get(key, plan.base.get(key, "")) for key in keys), *figures, refused.get(str(number), "")]
+        )
     answer = HttpResponse(out.getvalue(), content_type="text/csv; charset=utf-8")
     answer["Content-Disposition"] = f'attachment; filename="study-{pk}.csv"'
     return answer
