@@ -15,6 +15,7 @@ from shop.drawing.canvas import Canvas, Point
 from shop.drawing.scene import Scene
 
 REACH = 26.0
+_TALLEST = 0.6  # of the enlarged view: its height as a share of its width
 
 
 def side_view(scene: Scene, *, mode: str = "read") -> SafeString:
@@ -71,12 +72,21 @@ def _whole(scene: Scene) -> str:
     return canvas.svg(_in_words(scene), "side-view")
 
 
-def _rear(scene: Scene, choosing: bool) -> str:
+def _rear_window(scene: Scene, choosing: bool) -> Canvas:
+    """The brackets, the axle and the ground; where one is choosing, as large as that lets the holes be."""
     points = [hole for holes in scene.brackets.values() for hole in holes]
-    points += [point for strut in scene.struts for point in (strut.chassis, strut.housing)]
+    if not choosing:
+        points += [point for strut in scene.struts for point in (strut.chassis, strut.housing)]
     points += [(0.0, scene.rear_radius), (0.0, 0.0)]
     xs, zs = [p[0] for p in points], [p[1] for p in points]
-    canvas = Canvas(min(xs) - 0.12, max(xs) + 0.2, min(zs) - 0.05, max(zs) + 0.08)
+    left, right, bottom, top = min(xs) - 0.12, max(xs) + 0.2, min(zs) - 0.05, max(zs) + 0.08
+    # Beside a form a tall picture would be made small, and its words with it: more of the car ahead is shown instead.
+    missing = max((top - bottom) / _TALLEST - (right - left), 0.0)
+    return Canvas(left - 0.4 * missing, right + 0.6 * missing, bottom, top)
+
+
+def _rear(scene: Scene, choosing: bool) -> str:
+    canvas = _rear_window(scene, choosing)
     marks.ground(canvas)
     marks.tyre(canvas, (0.0, scene.rear_radius), scene.rear_radius)
     marks.lines(canvas, scene)
@@ -84,7 +94,10 @@ def _rear(scene: Scene, choosing: bool) -> str:
         marks.links(canvas, scene.ghost, "link ghost")
     for strut in scene.struts:
         canvas.line(strut.chassis, strut.housing, "strut")
-        canvas.text(strut.chassis, strut.label, "label", dx=10, dy=4)
+        top = strut.chassis
+        if not canvas.holds(top):
+            top = canvas.clip(strut.housing, (top[0] - strut.housing[0], top[1] - strut.housing[1]))
+        canvas.text(top, strut.label, "label", dx=12, dy=20)
     marks.links(canvas, scene, "link")
     marks.link_names(canvas, scene)
     # The chosen holes last: a spare one never lies over the pin.

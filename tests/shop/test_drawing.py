@@ -255,3 +255,22 @@ def test_nothing_drawn_carries_a_style_a_script_or_words_as_markup() -> None:
             for mark in svg.iter():
                 assert mark.tag in {f"{SVG}{name}" for name in ("svg", "g", "line", "circle", "path", "text")}
                 assert not {name for name in mark.keys() if name == "style" or name.startswith("on")}
+
+
+@pytest.mark.parametrize("mode", ["choose", "read"])
+def test_the_enlarged_view_is_never_tall_and_keeps_every_hole_in_sight(mode: str) -> None:
+    tall = scene(struts=(Strut((0.06, 1.40), (-0.04, 0.24), "spring and shock"),))
+    rear = drawn(side_view(tall, mode=mode))[0 if mode == "choose" else 1]
+    width, height = map(float, rear.get("viewBox").split()[2:])
+    assert height <= 0.6 * width + 1
+    for hole in of_class(rear, "hole"):
+        x, y = numbers(hole, "cx", "cy")
+        assert 0 < x < width and 0 < y < height
+    assert "spring and shock" in words(rear)
+
+
+def test_holes_are_drawn_larger_where_one_chooses_than_a_tall_spring_would_let_them() -> None:
+    tall = scene(struts=(Strut((0.06, 1.40), (-0.04, 0.24), "spring and shock"),))
+    choose, read = drawn(side_view(tall, mode="choose"))[0], drawn(side_view(tall))[1]
+    # The tyre is of one size, so its drawn radius is the scale.
+    assert numbers(only(choose, "tyre"), "r")[0] > 1.3 * numbers(only(read, "tyre"), "r")[0]
