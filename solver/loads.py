@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 
 from solver.bar_check import Bar, BarCheck, check_bar
 from solver.car import Car, FourLink, Link
+from solver.fasteners import axial_warning
 from solver.members import CAUTIONS, Allowances, per_side
 
 if TYPE_CHECKING:
@@ -130,12 +131,19 @@ def bar_loads(
     ValueError
         When the run has no figure for a bar, or a value of a bar is out of range.
     """
-    found = []
-    for name, bar in with_lengths(plan, linkage).items():
+    found, described = [], with_lengths(plan, linkage)
+    for name, bar in described.items():
         peak = peak_load(figures, standing[name], name, bar.count)
         check = check_bar(bar, peak.tension, peak.compression, plan.allowances)
         found.append(BarLoad(name=name, count=bar.count, peak=peak, check=check))
-    return LoadReport(bars=tuple(sorted(found, key=lambda load: load.check.governs.factor)))
+    return LoadReport(
+        bars=tuple(sorted(found, key=lambda load: load.check.governs.factor)),
+        cautions=(
+            *CAUTIONS,
+            SHARING,
+            *((axial_warning(),) if any(bar.rod_ends for bar in described.values()) else ()),
+        ),
+    )
 
 
 def peak_load(figures: Mapping[str, float | None], standing: float, name: str, count: int = 2) -> PeakLoad:

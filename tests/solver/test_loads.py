@@ -84,6 +84,9 @@ def test_cautions_travel_with_the_report():
     words = " ".join(loads(run(lower=(1.0, 0.0)), lower=LOWER).cautions)
     for part in ("rulebook in force", "qualified fabricator", "shared alike"):
         assert part in words
+    assert "10 to 20 percent" not in words
+    ended = loads(run(lower=(1.0, 0.0)), lower=replace(LOWER, rod_ends=(RodEnd("end", 5e4, "sheet"),)))
+    assert "10 to 20 percent" in ended.cautions[-1]
 
 
 @pytest.mark.parametrize(
