@@ -24,6 +24,7 @@ REASONS = {
     "stiff for the weight it moves",
     L.LOCKED: "the rear linkage locked: its bars came into one line",
     L.TURNED_OVER: "the car turned over: pitch passed 69 degrees, where the model ends",
+    L.FOLDED: "the rear axle folded up on its bars: the housing turned past 69 degrees",
     L.DRIFTED: "the bars' lengths could not be held",
     L.INEXACT: "the accuracy could not be held, even in steps sixteen times shorter",
 }

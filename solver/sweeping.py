@@ -181,7 +181,7 @@ def _solve(car, p, n, longest_step):
     for values in figures.values():
         values[failed] = np.nan
     for values in statics.values():
-        values[codes > L.INEXACT] = np.nan
+        values[codes > L.FOLDED] = np.nan
     return figures, statics, codes, times
 
 

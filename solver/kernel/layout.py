@@ -205,6 +205,6 @@ EVENTS = 48
 WORK_ROWS, WORK_WIDTH = 12, OUTPUTS
 
 # How a lane ended -------------------------------------------------------------
-SOLVED, NOT_FINITE, LOCKED, TURNED_OVER, DRIFTED, INEXACT = range(6)
+SOLVED, NOT_FINITE, LOCKED, TURNED_OVER, DRIFTED, INEXACT, FOLDED = range(7)
 # Refused before it began: the links, the weights, or no rest at ride height.
-BAD_LINKS, BAD_WEIGHTS, NO_REST, LINKS_LOCK, NOT_RUN = range(6, 11)
+BAD_LINKS, BAD_WEIGHTS, NO_REST, LINKS_LOCK, NOT_RUN = range(7, 12)

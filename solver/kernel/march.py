@@ -70,8 +70,10 @@ def check(kept, y, k4, slope, h, out):
     total = y[L.Z] + y[L.PITCH] + y[L.HOUSING] + out[L.O_LOWER] + out[L.O_SHOCK_SPEED]
     if not math.isfinite(total):
         return L.NOT_FINITE
-    if abs(y[L.PITCH]) > UPRIGHT or abs(y[L.HOUSING]) > UPRIGHT:
+    if abs(y[L.PITCH]) > UPRIGHT:
         return L.TURNED_OVER
+    if abs(y[L.HOUSING]) > UPRIGHT:
+        return L.FOLDED
     if out[L.O_LEVERAGE] < LEAST_LEVERAGE:
         return L.LOCKED
     kept[L.A_DRIFT] = max(kept[L.A_DRIFT], out[L.O_DRIFT])
