@@ -7,6 +7,7 @@ takes go through the solver as lanes of one batch.
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
 from dataclasses import dataclass
 
@@ -36,8 +37,11 @@ class Spread:
     Attributes
     ----------
     propagation : solver.uncertainty.Propagation
-        Inputs by path, outputs by figure: ``value``, ``uncertainty``, ``ranking``
-        and ``remeasured`` answer for each figure.
+        Of the measurements: inputs by path, outputs by figure; its ``value``,
+        ``ranking`` and ``remeasured`` answer for each figure.
+    reading : dict of str to float
+        Standard uncertainty with which a figure is read off a run, where it is not
+        read exactly: a peak's time, to a solver's step (rectangular, GUM 4.3.7).
     left_out : tuple of str
         Figures that some lane does not have (the front tyres lift with one set
         of numbers and not with another), so that no spread can be stated.
@@ -47,6 +51,7 @@ class Spread:
     """
 
     propagation: Propagation
+    reading: Mapping[str, float]
     left_out: tuple[str, ...]
     curved: tuple[str, ...]
 
@@ -54,6 +59,10 @@ class Spread:
     def figures(self) -> tuple[str, ...]:
         """Names of the figures that have a spread."""
         return self.propagation.names
+
+    def uncertainty(self, figure: str) -> float:
+        """One figure's standard uncertainty, reading included."""
+        return math.hypot(self.propagation.uncertainty(figure), self.reading.get(figure, 0.0))
 
 
 @dataclass(frozen=True)
@@ -119,7 +128,8 @@ def spread_of(
         for name, size, spread in zip(names, bend, propagation.uncertainties, strict=True)
         if size > CURVED * spread
     )
-    return Spread(propagation=propagation, left_out=left_out, curved=curved)
+    reading = {name: width / math.sqrt(12.0) for name, width in found.steps.items() if name in names}
+    return Spread(propagation=propagation, reading=reading, left_out=left_out, curved=curved)
 
 
 def spread_by_draws(
@@ -181,13 +191,13 @@ def best_purchases(spread: Spread, figure: str, part: float = 0.5) -> tuple[Purc
         When the figure has no spread or the part is below zero.
     """
     not_negative("the part of the tolerance", part)
-    now = spread.propagation.uncertainty(figure)
+    now, reading = spread.uncertainty(figure), spread.reading.get(figure, 0.0)
     found = [
         Purchase(
             path=path,
             tolerance_part=part,
             now=now,
-            then=spread.propagation.remeasured({path: part * item.uncertainty})[figure],
+            then=math.hypot(spread.propagation.remeasured({path: part * item.uncertainty})[figure], reading),
         )
         for path, item in spread.propagation.inputs.items()
     ]

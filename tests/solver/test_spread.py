@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from solver.carfile import car_from_dict
-from solver.launching import launch
+from solver.launching import LONGEST_STEP, launch
 from solver.spread import best_purchases, spread_by_draws, spread_of
 from solver.spread_lanes import LaneFigures
 from solver.sweeping import changed
@@ -118,6 +118,19 @@ def test_first_order_agrees_with_draws_of_whole_cars():
             assert drawn == pytest.approx(spread.propagation.uncertainty(name), rel=0.08), name
             checked += 1
     assert checked > 25
+
+
+def test_times_of_peaks_are_no_better_than_a_step():
+    spread = spread_of(CAR, {"mass": 0.01})
+    assert spread.propagation.uncertainty("peak_rear_load_time") == pytest.approx(0.0, abs=1e-6)
+    assert spread.uncertainty("peak_rear_load_time") == pytest.approx(
+        LONGEST_STEP / math.sqrt(12.0), rel=1e-3
+    )
+    assert spread.uncertainty("peak_rear_load") == spread.propagation.uncertainty("peak_rear_load")
+    # A finer run's peak lies within a step of the reported one.
+    coarse, fine = launch(CAR).figures, launch(CAR, longest_step=LONGEST_STEP / 16).figures
+    for name in ("peak_rear_load_time", "rear_squat_time", "peak_pitch_time"):
+        assert abs(coarse[name] - fine[name]) <= LONGEST_STEP
 
 
 def test_more_uncertain_measurements_spread_more():
