@@ -134,7 +134,7 @@ class Stack:
         else:
             module = [part.replace("0.0.0.0:8000", f"fd://{fd}") for part in compose()["services"]["web"]["command"][2:]]
             self.web = self.spawn("web", module, (fd,))
-        until(self.answers, "the web server")
+        until(self.answers, "the web server", 90)
 
     def answers(self) -> bool:
         assert self.web is not None
