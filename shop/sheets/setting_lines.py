@@ -48,5 +48,6 @@ def _bars(revision: Revision, units: str) -> list[Line]:
     lines = []
     for row in bridge.bar_rows(revision, units):
         label = row.label.partition(", centre to centre")[0]
-        lines.append(Line(label, row.text, row.note.replace(" than on ", " against ")))
+        way, _, change = row.note.partition(" than on ")[0].partition(" by ")
+        lines.append(Line(label, row.text, f"{change} {way}".strip()))
     return lines

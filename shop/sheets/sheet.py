@@ -20,7 +20,7 @@ from shop.sheets.setting_lines import Line, setting_groups
 PAPERS = {"letter": "US Letter", "a4": "A4"}
 HISTORY = 6
 ROOMY = 34  # lines that fit beside each other in the larger print
-NOTES = 360  # characters
+NOTES = 300  # characters
 
 AT_REST = ("ic_x", "ic_z", "anti_squat", "anti_squat_dynamic")
 ON_THE_HIT = ("peak_rear_load", "mean_rear_load_250ms", "peak_grip_needed", "front_lift_height", "peak_pitch", "rear_squat",
@@ -45,6 +45,10 @@ class Sheet:
     drawing: SafeString | str = ""
     fault: str = ""
     changed: int = field(default=0)
+
+    @property
+    def car_name(self) -> str:
+        return str(self.revision.car)
 
     @property
     def dense(self) -> bool:

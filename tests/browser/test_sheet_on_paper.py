@@ -19,6 +19,7 @@ from tests.shop.launch_world import make_solved
 from tests.shop.setups_world import make_world
 
 PAPERS = {"letter": (612, 792), "a4": (595, 842)}
+BETWEEN_MARGINS = {"letter": 740, "a4": 725}  # CSS pixels
 EVERY_SETTING = {
     "front_shock_compression": "12", "front_shock_rebound": "14", "rear_shock_compression": "9", "rear_shock_rebound": "6",
     "ballast_weight": "45", "ballast_x": "-22 1/2", "ballast_z": "11", "wheelie_bar_height": "5", "hit_peak": "1.4",
@@ -47,8 +48,13 @@ def told(program: str, *arguments: Any) -> str:
 def check_one_page(page: Any, revision: Revision, paper: str, folder: Path) -> str:
     pages, size, words = printed(page, f"/revisions/{revision.pk}/sheet?paper={paper}", folder)
     assert (pages, size) == (1, PAPERS[paper]), revision
-    # The last thing on the page is there: nothing was cut off at its end.
-    assert "Checked by" in words and f"/revisions/{revision.pk}/" in words
+    # The last things on the page are there, and the drawing is whole: nothing was cut off.
+    cut = "(box) => [...document.querySelectorAll(box)].filter((one) => one.scrollHeight > one.clientHeight + 1).length"
+    page.set_viewport_size({"width": BETWEEN_MARGINS[paper], "height": 1000})
+    page.emulate_media(media="print")
+    assert page.evaluate(cut, ".sheet .drawing, .sheet .title-block") == 0, revision
+    page.emulate_media(media="null")
+    assert "1/1" in words and "wheelbase" in words and "Checked by" in words and f"/revisions/{revision.pk}/" in words
     assert "Work under a raised car" in words and "Sign out" not in words and "Print, or keep" not in words
     return words
 
