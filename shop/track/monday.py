@@ -81,6 +81,10 @@ class Monday:
     left_out: list[str]
 
     @property
+    def revision_numbers(self) -> str:
+        return ", ".join(str(part.revision.number) for part in self.revisions) or "none"
+
+    @property
     def how(self) -> str:
         """How the intervals were made: said once for all of them."""
         return " ".join(max((statement.how for statement in self.statements), key=len, default=()))

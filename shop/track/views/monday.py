@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, render
+from django.utils import timezone
 
 from shop.garage.models import Car
 from shop.people.access import shop_view
@@ -26,7 +27,7 @@ def monday_page(request: HttpRequest, car_id: int) -> HttpResponse:
         "car": car, "every": every, "chosen": weekends, "first": weekends[0] if weekends else None,
         "second": weekends[1] if len(weekends) > 1 else None,
         "page": monday(car, weekends, station_of(weekends), request.shop.units),
-        "correction": CORRECTION, "paper": request.shop.paper,
+        "correction": CORRECTION, "paper": request.shop.paper, "today": timezone.localdate().isoformat(),
     }
     return render(request, "track/monday.html", context)
 

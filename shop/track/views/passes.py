@@ -9,6 +9,7 @@ from typing import Any
 from django.contrib import messages
 from django.http import Http404, HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, redirect, render
+from django.urls import reverse
 
 from shop.garage.models import Car
 from shop.people.access import action_view, form_view, shop_view
@@ -152,6 +153,7 @@ def _page(
         "may_write": request.member.may(WRITE), "may_issue": request.member.may(ISSUE),
     }
     if saved:
+        context["remove_url"] = reverse("track:pass-remove", args=[saved.pk])
         context["row"] = slip_row(saved, list(weekend.weather.all()), request.shop.units)
         values = {column.field: getattr(saved, column.field) for column in COLUMNS}
         context["doubts"] = doubts_of({**values, "speed_unit": saved.speed_unit})

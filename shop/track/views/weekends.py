@@ -10,6 +10,7 @@ from django.core.paginator import Paginator
 from django.db.models import Count
 from django.http import HttpRequest, HttpResponse
 from django.shortcuts import get_object_or_404, redirect, render
+from django.urls import reverse
 
 from shop.garage.models import Car
 from shop.people.access import action_view, form_view, shop_view
@@ -136,6 +137,8 @@ def _form_page(
         "version": theirs.version if theirs else form["version"].value(), "theirs": theirs,
         "differences": _differences(fields, WeekendForm(initial=_initial(theirs)), request.shop.units) if theirs else [],
     }
+    if weekend:
+        context["remove_url"] = reverse("track:weekend-remove", args=[weekend.pk])
     status = CONFLICT if theirs else REFUSED if form.is_bound else 200
     return render(request, "track/weekend_form.html", context, status=status)
 
