@@ -80,7 +80,7 @@ def bar_rows(figures: Mapping[str, float | None], units: str, linkage: str) -> l
             row = figure_row(key, {**figures, key: abs(figures[key] or 0.0)}, units, linkage)
             way = key.rpartition("_")[2]
             label = f"{row.label.partition(', greatest')[0]}, greatest load"
-            rows.append(FigureRow(key, label, f"{row.text} in {way}", row.when, row.description))
+            rows.append(FigureRow(key, label, f"{row.text} {way}", row.when, row.description))
     return rows
 
 
