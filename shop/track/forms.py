@@ -45,6 +45,8 @@ class WeekendForm(forms.Form):
         if "ends_on" not in self.errors:
             cleaned["ends_on"] = cleaned.get("ends_on") or first
         last = cleaned.get("ends_on")
+        if first and not 1950 <= first.year <= 2100:
+            self.add_error("starts_on", f"{first} is not a day anybody raced on; check the year")
         if first and last and last < first:
             self.add_error("ends_on", f"the last day is before the first, {first}")
         elif first and last and (last - first).days > 30:

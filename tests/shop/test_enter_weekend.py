@@ -52,6 +52,21 @@ def test_a_day_before_the_first_is_refused_and_nothing_typed_is_lost(client, wor
     assert "the last day is before the first" in page and "Sprayed to 330 ft" in page and 'value="1,250"' in page
 
 
+@pytest.mark.parametrize("typed", [
+    {"starts_on": "9999-12-31", "ends_on": ""},
+    {"starts_on": "0026-05-09", "ends_on": "0026-05-10"},
+    {"starts_on": "9 May"},
+    {"starts_on": "2026-05-09", "ends_on": "2026-06-20"},
+    {"place": ""},
+    {"place": "x" * 81},
+    {"place": "Harrow\x00Bend"},
+    {"elevation": "99,000"},
+])
+def test_what_makes_no_sense_is_refused(client, world, typed):
+    assert signed_in(client, world.owner).post(URL, {**TYPED, **typed}).status_code == 422
+    assert entered(world) == []
+
+
 def test_an_elevation_in_a_wrong_unit_is_refused(client, world):
     page = signed_in(client, world.owner).post(URL, {**TYPED, "elevation": "1250 lb"}).content.decode()
     assert "does not fit here; use ft, m" in page
