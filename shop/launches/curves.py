@@ -27,7 +27,8 @@ CHARTS = (
 SETTLED_SHARE = 0.02
 SETTLED_OVER = 0.15  # seconds
 
-Histories = Mapping[str, list[float | None]]
+Series = list[float | None]
+Histories = Mapping[str, Any]  # of Series; the times, "t", have no gaps
 
 
 def curves(job: Job, other: Job | None, units: str) -> dict[str, Any]:
@@ -58,7 +59,7 @@ def empty(words: str) -> dict[str, Any]:
     return {"time": [], "unit": "s", "channels": {}, "events": [], "labels": {}, "why_empty": words}
 
 
-def _channel(shown: Measure, values: list[float | None], time: list[float], compared: Histories) -> dict[str, Any]:
+def _channel(shown: Measure, values: Series, time: list[float], compared: Histories) -> dict[str, Any]:
     channel: dict[str, Any] = {
         "label": shown.label, "unit": shown.unit, "values": [shown.value(value) for value in values]
     }
@@ -70,7 +71,7 @@ def _channel(shown: Measure, values: list[float | None], time: list[float], comp
     return channel
 
 
-def settled_value(time: list[float], values: list[float | None]) -> float | None:
+def settled_value(time: list[float], values: Series) -> float | None:
     """Where a curve has come to rest by the end of the run; None where it still moves, or never did."""
     if not time or any(value is None for value in values):
         return None
@@ -82,7 +83,7 @@ def settled_value(time: list[float], values: list[float | None]) -> float | None
     return float(series[-1])
 
 
-def on_times(wanted: list[float], time: list[float], values: list[float | None]) -> list[float | None]:
+def on_times(wanted: list[float], time: list[float], values: Series) -> Series:
     """Another run's curve at this run's times; None outside of it and beside its gaps."""
     if time == wanted:
         return values

@@ -10,7 +10,7 @@ from datetime import datetime, timedelta
 from typing import Any
 
 from django.db import transaction
-from django.db.models import F
+from django.db.models import F, QuerySet
 from django.utils import timezone
 
 from shop.launches.bridge import SOLVER_VERSION, CannotSolve
@@ -107,7 +107,7 @@ def join(job_id: int, shared: Collection[str]) -> Job | None:
     return helped.select_related("shop", "revision__car").first()
 
 
-def _mine(job: Job):
+def _mine(job: Job) -> QuerySet[Job]:
     return Job.objects.filter(pk=job.pk, attempt=job.attempt, state=Job.RUNNING)
 
 

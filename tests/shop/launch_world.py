@@ -29,7 +29,7 @@ def make_solved(world: World, parent: Revision | None = None, **typed: Any) -> J
 
 
 def make_hopeless(world: World) -> Job:
-    """A launch that cannot be solved: six times its weight at the tyres turns the car over."""
+    """A launch that cannot be solved: many times its weight at the tyres turns the car over, or its axle."""
     job = make_job(world)
     hit = {"kind": "force", "table": [[0.0, 0.0], [0.01, 120e3]]}
     hopeless = {**job.input, "hit": hit, "wheelie_bar": None}

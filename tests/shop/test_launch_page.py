@@ -78,7 +78,7 @@ def test_what_failed_says_why_and_when_and_shows_no_curve(client, world):
     job = make_hopeless(world)
     tasks.run(job.pk)
     page = page_of(client, world.owner, job)
-    assert fresh(job).error in page and "turned over" in page
+    assert f"This could not be solved: {fresh(job).error}" in page and "degrees" in page
     assert 'class="chart"' not in page and "plotly" not in page
     assert url(job, "retry") in page
 
