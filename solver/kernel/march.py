@@ -16,7 +16,7 @@ from solver.kernel.physics import accelerate
 from solver.kernel.watch import begin, events, first_peak, kinked, peaks, turns, windows
 
 STABLE = 1.5  # share of 1/|eigenvalue| that a step may take
-SPLIT = 8
+SPLIT = 16
 FURTHEST_DRIFT = 1e-5  # m of link length
 LARGEST_ERROR = 0.02  # m/s or rad/s, of one step's embedded estimate
 UPRIGHT = 1.2  # rad
