@@ -12,7 +12,10 @@ from shop.garage.models import Car
 from shop.people.log import record
 from shop.people.models import Membership
 from shop.refusals import Refused, Stale
+from shop.setups.models import Revision
 from shop.track.models import Pass, WeatherReading, Weekend
+from shop.track.quantities import BY_KEY
+from shop.track.slip import COLUMNS, figure_text
 
 Values = Mapping[str, Any]
 
@@ -91,17 +94,42 @@ def save_pass(member: Membership, run: Pass, version: int, values: Values) -> Pa
             changed = Pass.objects.filter(pk=run.pk, version=version).update(**fields, version=version + 1)
             if not changed:
                 raise Stale(Pass.objects.select_related("car", "revision", "weekend").get(pk=run.pk))
-            saved = Pass.objects.select_related("car").get(pk=run.pk)
-            record(member, "changed", saved)
+            saved = Pass.objects.select_related("car", "revision").get(pk=run.pk)
+            record(member, "changed", saved, reason=changes_text(run, saved))
     except IntegrityError as error:
         raise Refused({"number": f"pass {fields['number']} of {run.car} is already entered"}) from error
     return saved
 
 
+_NAMED = ("revision", "number", "day", "clock", "lane", "aborted", "good_to")
+
+
+def changes_text(before: Pass, after: Pass) -> str:
+    """What was changed on a pass, in the words of its slip, for the log."""
+    words = []
+    for column in COLUMNS:
+        was, now = getattr(before, column.field), getattr(after, column.field)
+        if was != now:
+            said = [figure_text(column, value, run.speed_unit) for value, run in ((was, before), (now, after))]
+            words.append(f"{column.label} {said[0]} to {said[1]}")
+    for name in _NAMED:
+        was, now = getattr(before, name), getattr(after, name)
+        if was != now:
+            words.append(f"{name.replace('_', ' ')} {_word(was)} to {_word(now)}")
+    words += [BY_KEY[key].label.lower() for key in BY_KEY if before.readings.get(key) != after.readings.get(key)]
+    return "; ".join(words) or "notes"
+
+
+def _word(value: object) -> str:
+    if isinstance(value, Revision):
+        return value.label
+    return "none" if value in (None, "") else str(value)
+
+
 def remove_pass(member: Membership, run: Pass, version: int) -> None:
     """Take a pass out that was entered by mistake; the log keeps what its slip said."""
     with transaction.atomic():
-        record(member, "removed", run, weekend=str(run.weekend), figures=run.figures_text())
+        record(member, "removed", run, reason=f"{run.figures_text()}, {run.weekend}")
         gone, _ = Pass.objects.filter(pk=run.pk, version=version).delete()
         if not gone:
             raise Stale(run)
@@ -122,7 +150,8 @@ def import_passes(
             if not changed:
                 raise Refused(f"{run} was changed by somebody else just now; nothing has been written, look once more")
             filled += 1
-        record(member, "imported passes", weekend, passes=entered, filled_in=filled, file=file_name[:120])
+        words = f"{entered} new, {filled} filled in, from {file_name[:120] or 'a file'}"
+        record(member, "imported passes", weekend, reason=words)
     return entered + filled
 
 
@@ -131,7 +160,8 @@ def import_weather(member: Membership, weekend: Weekend, rows: Iterable[Values],
     with transaction.atomic():
         readings = [WeatherReading(shop=member.shop, weekend=weekend, **values) for values in rows]
         WeatherReading.objects.bulk_create(readings, batch_size=500)
-        record(member, "imported weather", weekend, readings=len(readings), file=file_name[:120])
+        words = f"{len(readings)} readings from {file_name[:120] or 'a file'}"
+        record(member, "imported weather", weekend, reason=words)
     return len(readings)
 
 
@@ -139,5 +169,5 @@ def clear_weather(member: Membership, weekend: Weekend) -> int:
     """Drop a weekend's station readings, so that a right file can replace a wrong one."""
     with transaction.atomic():
         gone, _ = WeatherReading.objects.filter(weekend=weekend).delete()
-        record(member, "removed weather", weekend, readings=gone)
+        record(member, "removed weather", weekend, reason=f"{gone} readings")
     return gone

@@ -6,6 +6,7 @@ import pytest
 from django.urls import reverse
 from django_scopes import scope
 
+from shop.people.models import LogEntry
 from shop.refusals import Stale
 from shop.track import services
 from shop.track.forms import initial_of
@@ -44,6 +45,17 @@ def test_it_works(client, world, run):
     assert (saved.reaction, saved.time_660, saved.speed_1320) == (Decimal("-0.0120"), Decimal("5.5521"), Decimal("157.02"))
     assert saved.readings["left_rear_pressure"] == {"typed": "9 3/4", "value": 9.75, "unit": "psi"}
     assert (saved.revision, saved.lane, saved.version) == (issued, "left", 2)
+
+
+def test_the_log_says_what_was_changed(client, world, run):
+    issued = make_issued(world)
+    client = signed_in(client, world.owner)
+    send(client, run, time_60="1.305", time_330="3.61", lane="left", revision=issued.pk, humidity="40")
+    with scope(shop=world.shop):
+        entry = LogEntry.objects.get(action="changed")
+    assert entry.detail["reason"] == (
+        "60 ft 1.312 s to 1.305 s; 330 ft — to 3.610 s; revision none to rev 1; lane none to left; relative humidity"
+    )
 
 
 def test_what_is_shown_is_what_was_saved(client, world, run):

@@ -68,7 +68,7 @@ def test_it_works(client, world, weekend):
     assert (second.clock.hour, second.number) == (15, 2)
     with scope(shop=world.shop):
         assert LogEntry.objects.get(action="imported passes").detail == {
-            "passes": 2, "filled_in": 0, "file": "passes.csv",
+            "reason": "2 new, 0 filled in, from passes.csv",
         }
 
 

@@ -28,7 +28,7 @@ def test_it_works_and_the_log_keeps_the_slip(client, world, run):
     assert passes_of(run.weekend) == []
     with scope(shop=world.shop):
         entry = LogEntry.objects.get(action="removed")
-    assert entry.detail["figures"] == "60 ft 1.312 s"
+    assert entry.detail["reason"] == "60 ft 1.312 s, Harrow Bend Dragway, 9 to 10 May 2026"
 
 
 def test_a_team_mate_may(client, world, run):
