@@ -12,7 +12,7 @@ from django_scopes import scope
 
 from shop.demo.load import load_demo
 from shop.launches.models import Job
-from shop.launches.tasks import run
+from shop.launches.tasks import run, run_job
 from shop.setups.models import Revision
 from tests.services.programs import needed
 from tests.shop.launch_world import make_solved
@@ -28,6 +28,12 @@ EVERY_SETTING = {
     "front_pressure": "30", "rear_pressure": "12 1/4", "ride_height_front": "4 1/4", "ride_height_rear": "5 1/2",
     "upper_chassis": 2, "upper_housing": 2, "lower_chassis": 2, "lower_housing": 2,
 }
+
+
+@pytest.fixture(autouse=True)
+def unsent(monkeypatch):
+    """Nothing reaches a worker that an earlier test left running: these launches are solved here."""
+    monkeypatch.setattr(run_job, "delay", lambda job_id: None)
 
 
 def printed(page: Any, address: str, folder: Path) -> tuple[int, tuple[int, int], str]:
