@@ -303,7 +303,9 @@ def sweep(files: list[dict[str, Any] | None]) -> tuple[dict[str, Any], dict[int,
 
 # --- the track: plain numbers to the solver's weather, slip and comparison functions, and back ------------------------
 
-Summary, Comparison, Interval = comparing.Summary, comparing.Comparison, significance.Interval
+Summary = comparing.Summary
+Comparison = comparing.Comparison
+Interval = significance.Interval
 
 
 @dataclass(frozen=True)

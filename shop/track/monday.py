@@ -8,7 +8,7 @@ from statistics import median
 
 from shop.garage.models import Car
 from shop.launches import bridge
-from shop.launches.models import Job
+from shop.launches.models import Job, Result
 from shop.setups.differences import Change, hole_changes, setting_changes, survey_changes
 from shop.setups.models import Revision
 from shop.track.comparing import Statement, compare
@@ -87,7 +87,8 @@ class Monday:
     @property
     def how(self) -> str:
         """How the intervals were made: said once for all of them."""
-        return " ".join(max((statement.how for statement in self.statements), key=len, default=()))
+        said: list[tuple[str, ...]] = [statement.how for statement in self.statements]
+        return " ".join(max(said, key=lambda how: len(how), default=()))
 
 
 def monday(car: Car, weekends: Sequence[Weekend], station: dict[int, list[WeatherReading]], units: str) -> Monday:
@@ -156,11 +157,10 @@ def _revisions(runs: Sequence[Pass], units: str) -> list[RevisionPart]:
             changes = [*hole_changes(earlier, revision), *setting_changes(earlier, revision),
                        *survey_changes(earlier.survey, revision.survey)]
         job = revision.jobs.filter(kind="launch").select_related("result").order_by("-id").first()
-        done = job is not None and job.state == Job.DONE
-        histories, figures = (job.result.histories, job.result.figures) if done else ({}, {})
-        slip = bridge.slip_of_run(histories)
+        result = job.result if job is not None and job.state == Job.DONE else None
+        slip = bridge.slip_of_run(result.histories if result else {})
         parts.append(RevisionPart(
-            revision, earlier, changes, _launch_words(job), _foreseen(job, figures, units) if done else [],
+            revision, earlier, changes, _launch_words(job), _foreseen(result, units) if result else [],
             _marks(revision, runs, slip.times), _reach(slip, units),
         ))
         before = revision
@@ -177,10 +177,10 @@ def _launch_words(job: Job | None) -> str:
     )
 
 
-def _foreseen(job: Job, figures: dict, units: str) -> list[tuple[str, str]]:
+def _foreseen(result: Result, units: str) -> list[tuple[str, str]]:
     """What the launch says where no slip can speak: figures at rest and on the hit."""
     force = default_unit("force", units)
-    anti_squat = job.result.statics.get("anti_squat")
+    anti_squat, figures = result.statics.get("anti_squat"), result.figures
     rows = [
         ("Anti-squat, whole car", "—" if anti_squat is None else f"{anti_squat:.1f} %".replace("-", "−")),
         ("Peak load on the rear tyres, both", show(figures.get("peak_rear_load"), "force", force)),

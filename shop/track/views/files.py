@@ -129,7 +129,7 @@ def _sent(request: HttpRequest) -> tuple[str, list[str], str]:
     """Text, notes and name: from the file, else as the preview carries it."""
     file = request.FILES.get("file")
     if file is not None:
-        refuse_too_large(file.size)
+        refuse_too_large(file.size or 0)
         text, notes = decoded(file.read())
         return text, notes, file.name or ""
     text = request.POST.get("text", "")
