@@ -101,8 +101,16 @@ def _fate(row: Row, table: Table, weekend: Weekend, shop: Shop, reader: Reader, 
     match = known.look_up(values, row.line)
     if match.fate != NEW:
         return Fate(row.line, match.fate, match.words, title, figures, match.fields, row.raw, match.run)
-    missing = ["no revision: not counted in comparisons."] if values["revision"] is None else []
-    return Fate(row.line, NEW, " ".join([*missing, *form.doubts]), title, figures, values, row.raw)
+    words = " ".join([*_assumed(row, values, weekend), *form.doubts])
+    return Fate(row.line, NEW, words, title, figures, values, row.raw)
+
+
+def _assumed(row: Row, values: Mapping[str, Any], weekend: Weekend) -> list[str]:
+    """What the row leaves open, and what is made of it."""
+    words = ["no revision: not counted in comparisons."] if values["revision"] is None else []
+    if not row.cells.get("day") and weekend.starts_on != weekend.ends_on:
+        words.append(f"no day: taken as {values['day'].day} {values['day']:%b}.")
+    return words
 
 
 def _figures(values: Mapping[str, Any]) -> str:

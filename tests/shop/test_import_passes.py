@@ -221,6 +221,12 @@ def test_a_quote_that_is_never_closed_keeps_the_rows_before_it(client, world, we
     assert "a quote is opened and not closed" in words(preview)
 
 
+def test_a_row_without_a_day_says_which_is_taken(client, world):
+    two_days = make_weekend(world)
+    preview = upload(signed_in(client, world.owner), two_days, "car,60 ft\r\n218,1.312\r\n")
+    assert "no revision: not counted in comparisons. no day: taken as 10 May." in words(preview)
+
+
 def test_units_in_the_header_count(client, world, weekend):
     client = signed_in(client, world.owner)
     text = "car,60 ft (ms),temperature (C),pressure (mbar),humidity (%)\r\n218,1312,29,979,41\r\n"
