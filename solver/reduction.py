@@ -63,14 +63,18 @@ _FIRST_TIMES = {
 # What a car may lack: (figures, whether the car has it).
 _NEEDS = (
     (("peak_wheelie_bar_load",), lambda car: car.wheelie_bar),
-    (("peak_rear_bump_stop_force", "rear_bump_travel_left"), lambda car: car.rear.bump_stop),
-    (("peak_rear_droop_stop_force", "rear_droop_travel_left"), lambda car: car.rear.droop_stop),
-    (("peak_front_bump_stop_force", "front_bump_travel_left"), lambda car: car.front.bump_stop),
-    (("peak_front_droop_stop_force", "front_droop_travel_left"), lambda car: car.front.droop_stop),
-    (("peak_grip_used",), lambda car: car.rear.tyre.grip),
+    (("peak_rear_bump_stop_force",), lambda car: car.rear.bump_stop),
+    (("peak_rear_droop_stop_force",), lambda car: car.rear.droop_stop),
+    (("peak_front_bump_stop_force",), lambda car: car.front.bump_stop),
+    (("peak_front_droop_stop_force",), lambda car: car.front.droop_stop),
     (("peak_slip", "peak_wheel_torque"), lambda car: not isinstance(car.hit, Hit)),
     (("least_engine_speed",), has_engine),
 )
+
+_NAMES = list(_PEAKS)
+_PLACES = np.array([4 * output + (0 if side == "greatest" else 2) for output, side, _ in _PEAKS.values()])
+_FACTORS = np.array([factor for *_, factor in _PEAKS.values()])
+_LIFT, _GRIP = _NAMES.index("front_lift_height"), _NAMES.index("peak_grip_needed")
 
 
 def reduce(car, p, kept, log, counts):
@@ -89,38 +93,49 @@ def reduce(car, p, kept, log, counts):
     dict of str to float array (lanes,)
         SI; NaN where there is nothing to tell (front tyres that never left).
     """
-    figures = {}
-    for name, (output, side, factor) in _PEAKS.items():
-        at = 4 * output + (0 if side == "greatest" else 2)
-        figures[name] = factor * kept[:, at] + 0.0
-        figures[f"{name}_time"] = kept[:, at + 1]
+    figures = _peaks(car, p, kept)
     _first_peak(figures, kept)
     for i, (window, name) in enumerate(zip(L.WINDOWS, ("100ms", "250ms", "500ms"), strict=True)):
         held = kept[:, L.A_WINDOWS + i] / window
         figures[f"mean_rear_load_{name}"] = np.where(p[:, L.DURATION] >= window - 1e-9, held, np.nan)
+    first = first_times(log, counts)
     for name, (gate, state) in _FIRST_TIMES.items():
-        figures[name] = first_time(log, counts, 2 * gate + state)
+        figures[name] = first[:, 2 * gate + state]
     figures["sixty_foot_time"] = figures["sixty_foot_time"] - figures["rollout_time"]
     figures["end_speed"] = kept[:, L.A_LAST + L.O_SPEED] + 0.0
     figures["end_distance"] = kept[:, L.A_LAST + L.O_DISTANCE] + 0.0
-    for side, plan in zip(("lower", "upper"), plan_angles(car), strict=True):
-        for stress in ("tension", "compression"):
-            figures[f"{side}_link_{stress}"] /= np.cos(plan)
-    _travel_left(figures, p, kept)
-    _grip(figures, p)
-    for names, has in _NEEDS:
-        if not has(car):
-            for name in names:
-                figures[name] = np.full(len(p), np.nan)
-    _forget_times(figures)
+    _travel_left(figures, car, p, kept)
     return figures
 
 
-def first_time(log, counts, kind):
-    """Time of the first event of a kind per lane, NaN where there was none."""
-    row = np.arange(log.shape[1])[None, :] < counts[:, None]
-    times = np.where(row & (log[:, :, 0] == kind), log[:, :, 1], np.inf).min(axis=1)
-    return np.where(np.isfinite(times), times, np.nan)
+def first_times(log, counts):
+    """Time of the first event of every kind, (lanes, kinds); NaN where there was none."""
+    first = np.full((len(log), 2 * L.N_GATES), np.nan)
+    for slot in range(min(int(counts.max(initial=0)), log.shape[1]) - 1, -1, -1):
+        lanes = np.flatnonzero(counts > slot)
+        first[lanes, log[lanes, slot, 0].astype(np.int64)] = log[lanes, slot, 1]
+    return first
+
+
+def _peaks(car, p, kept):
+    """Greatest and least values with their times; a time of nothing is nothing."""
+    values, times = kept[:, _PLACES] * _FACTORS, kept[:, _PLACES + 1]
+    for names, has in _NEEDS:
+        if not has(car):
+            values[:, [_NAMES.index(name) for name in names]] = np.nan
+    for side, plan in zip(("lower", "upper"), plan_angles(car), strict=True):
+        if plan:
+            both = [_NAMES.index(f"{side}_link_{stress}") for stress in ("tension", "compression")]
+            values[:, both] /= np.cos(plan)
+    times[:, _LIFT] = np.where(values[:, _LIFT] > 0.0, times[:, _LIFT], np.nan)
+    times[np.isnan(values)] = np.nan
+    figures = {}
+    for i, name in enumerate(_NAMES):
+        figures[name], figures[f"{name}_time"] = values[:, i], times[:, i]
+    grip = p[:, L.GRIP] if car.rear.tyre.grip else np.full(len(p), np.nan)
+    figures["peak_grip_used"] = values[:, _GRIP] / grip
+    figures["peak_grip_used_time"] = times[:, _GRIP] + 0.0 * grip
+    return figures
 
 
 def _first_peak(figures, kept):
@@ -133,24 +148,13 @@ def _first_peak(figures, kept):
         figures[f"{name}_time"] = np.where(fell, kept[:, time], np.nan)
 
 
-def _travel_left(figures, p, kept):
+def _travel_left(figures, car, p, kept):
     """Clearance less the greatest travel; below nil is how far into the stop it went."""
-    figures["rear_bump_travel_left"] = -kept[:, 4 * L.O_REAR_BUMP_PAST]
-    figures["rear_droop_travel_left"] = -kept[:, 4 * L.O_REAR_DROOP_PAST]
-    figures["front_bump_travel_left"] = p[:, L.FRONT_BUMP_CLEARANCE] - figures["front_bump"]
-    figures["front_droop_travel_left"] = p[:, L.FRONT_DROOP_CLEARANCE] - figures["front_droop"]
-
-
-def _grip(figures, p):
-    grip = np.where(p[:, L.GRIP] > 0.0, p[:, L.GRIP], np.nan)
-    figures["peak_grip_used"] = figures["peak_grip_needed"] / grip
-    figures["peak_grip_used_time"] = figures["peak_grip_needed_time"]
-
-
-def _forget_times(figures):
-    """A time of something that was not there is not there either."""
-    for name in figures:
-        if f"{name}_time" in figures:
-            figures[f"{name}_time"] = np.where(np.isnan(figures[name]), np.nan, figures[f"{name}_time"])
-    lifted = figures["front_lift_height"] > 0.0
-    figures["front_lift_height_time"] = np.where(lifted, figures["front_lift_height_time"], np.nan)
+    left = {
+        "rear_bump": (car.rear.bump_stop, -kept[:, 4 * L.O_REAR_BUMP_PAST]),
+        "rear_droop": (car.rear.droop_stop, -kept[:, 4 * L.O_REAR_DROOP_PAST]),
+        "front_bump": (car.front.bump_stop, p[:, L.FRONT_BUMP_CLEARANCE] - figures["front_bump"]),
+        "front_droop": (car.front.droop_stop, p[:, L.FRONT_DROOP_CLEARANCE] - figures["front_droop"]),
+    }
+    for name, (stop, values) in left.items():
+        figures[f"{name}_travel_left"] = values if stop else np.full(len(p), np.nan)

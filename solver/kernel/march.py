@@ -48,6 +48,13 @@ def ahead(y, step, k, into, states):
         into[i] = y[i] + step * k[i]
 
 
+@inlined
+def before_shift(out, after):
+    """Share of a step that comes before a shift; 1 when there is none."""
+    before, now = out[L.O_GATE + L.GATE_SHIFT], after[L.O_GATE + L.GATE_SHIFT]
+    return before / (before - now) if before <= 0.0 < now else 1.0
+
+
 @lean
 def take_step(p, n, leg, t, h, y, k1, work, after):
     """One step from `y`: rows 3 and 4 of `work` get the new state and its slope."""
@@ -70,10 +77,9 @@ def check(kept, y, k4, slope, h, out):
     total = y[L.Z] + y[L.PITCH] + y[L.HOUSING] + out[L.O_LOWER] + out[L.O_SHOCK_SPEED]
     if not math.isfinite(total):
         return L.NOT_FINITE
-    if abs(y[L.PITCH]) > UPRIGHT:
-        return L.TURNED_OVER
-    if abs(y[L.HOUSING]) > UPRIGHT:
-        return L.FOLDED
+    if max(abs(y[L.PITCH]), abs(y[L.HOUSING])) > UPRIGHT:
+        folded = abs(y[L.HOUSING] - y[L.PITCH]) > 0.5 * UPRIGHT
+        return L.FOLDED if folded else L.TURNED_OVER
     if out[L.O_LEVERAGE] < LEAST_LEVERAGE:
         return L.LOCKED
     kept[L.A_DRIFT] = max(kept[L.A_DRIFT], out[L.O_DRIFT])
@@ -137,14 +143,22 @@ def march(p, n, longest, kept, log, record, states_record, outputs_record, work)
             mark = min(mark, p[hit_at + 2 * leg + 2])
         steps = max(1, math.ceil((mark - t) / longest - 1e-9))
         start, part, place, fine = t, (mark - t) / (steps * SPLIT), 0, False
-        h_before = 0.0
+        h_before, within = 0.0, 0.0
         while place < steps * SPLIT:
             size = 1 if fine else SPLIT
-            t, h = start + place * part, size * part
+            t, h = start + (place + within) * part, (size - within) * part
             take_step(p, n, leg, t, h, y, k1, work, after)
             if not fine and kinked(out, after):
                 fine = True
                 continue
+            share = before_shift(out, after)
+            if share < 1.0:
+                # A shift changes the gear at once: end the step just past it.
+                h = min(h, share * h + 1e-7)
+                take_step(p, n, leg, t, h, y, k1, work, after)
+                within += h / part
+            else:
+                place, within = place + size, 0.0
             peaks(kept, t, out)
             if h_before > 0.0:
                 turns(kept, t, h_before, h, before, out, after)
@@ -162,8 +176,9 @@ def march(p, n, longest, kept, log, record, states_record, outputs_record, work)
             if n[L.DRIVE] >= L.CLUTCH_DRIVE and shift(p, n, y):
                 accelerate(p, n, drive(p, n, leg, t + h), y, k1, out)
             h_before = 0.0 if kink else h
-            place += size
-            fine = fine and place % SPLIT != 0
+            if within >= 1.0 - 1e-9:
+                place, within = place + 1, 0.0
+            fine = fine and (place % SPLIT != 0 or within > 0.0)
         t = mark
         if leg + 1 < legs and t >= p[hit_at + 2 * leg + 2]:
             leg += 1
