@@ -46,7 +46,7 @@ class OwnWorker:
                 stderr=subprocess.STDOUT,
                 start_new_session=True,
             )
-        until(self.is_ready, "the worker", 90)
+        until(self.is_ready, "the worker", 180)
 
     def is_ready(self) -> bool:
         assert self.process is not None

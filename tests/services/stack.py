@@ -153,7 +153,7 @@ class Stack:
         before = self.log("worker").stat().st_size if self.log("worker").exists() else 0
         self.worker = self.spawn("worker", command)
         if wait:
-            until(lambda: self.worker_ready(before), "the worker", 90)
+            until(lambda: self.worker_ready(before), "the worker", 180)
 
     def worker_ready(self, since: int) -> bool:
         assert self.worker is not None

@@ -65,9 +65,13 @@ class Started:
         except OSError:
             return False
 
-    def wait_until_up(self, seconds: float = 60) -> None:
-        until(lambda: self.serves() and "Ctrl-C stops it." in self.words(), "the start to be through", seconds)
-        until(lambda: len(self.pool()) == 2, "the worker's two processes", 90)
+    def wait_until_up(self, seconds: float = 180) -> None:
+        """Serving, announced, and with its worker's pool. A busy machine may have to compile and collect first."""
+        try:
+            until(lambda: self.serves() and "Ctrl-C stops it." in self.words(), "the start to be through", seconds)
+            until(lambda: len(self.pool()) == 2, "the worker's two processes", seconds)
+        except AssertionError as fault:
+            raise AssertionError(f"{fault}\n{self.words()}") from None
 
     def child(self, module: str) -> int | None:
         """The process id of the child that runs `module`."""

@@ -83,24 +83,24 @@ def test_the_secret_key_is_its_owners_alone(shared: Started) -> None:
 def test_a_killed_web_server_is_started_again(shared: Started) -> None:
     before = shared.web()
     os.kill(before, signal.SIGKILL)
-    until(lambda: shared.web() not in (None, before), "a new web server")
-    until(shared.serves, "the new web server to serve")
+    until(lambda: shared.web() not in (None, before), "a new web server", 60)
+    until(shared.serves, "the new web server to serve", 90)
     assert "The web server stopped (killed by SIGKILL); starting it again" in shared.words()
 
 
 def test_a_killed_worker_is_started_again_and_its_pool_does_not_linger(shared: Started) -> None:
     before, pool = shared.worker(), set(shared.pool())
     os.kill(before, signal.SIGKILL)
-    until(lambda: shared.worker() not in (None, before), "a new worker")
+    until(lambda: shared.worker() not in (None, before), "a new worker", 60)
     assert gone(pool), "the killed worker's pool would compute beside the new one's"
-    until(lambda: len(shared.pool()) == 2, "the new worker's pool", 90)
+    until(lambda: len(shared.pool()) == 2, "the new worker's pool", 180)
 
 
 def test_a_killed_process_of_the_pool_is_replaced_by_the_worker(shared: Started) -> None:
     worker, pool = shared.worker(), set(shared.pool())
     killed = min(pool)
     os.kill(killed, signal.SIGKILL)
-    until(lambda: len(shared.pool()) == 2 and killed not in shared.pool(), "a new process in the pool", 90)
+    until(lambda: len(shared.pool()) == 2 and killed not in shared.pool(), "a new process in the pool", 180)
     assert shared.worker() == worker
 
 
