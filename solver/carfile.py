@@ -48,12 +48,33 @@ def load_car(path):
         raise CarError([Fault("", str(path), f"cannot be read: {error.strerror}")]) from None
     except UnicodeDecodeError:
         raise CarError([Fault("", str(path), "is not a text file in UTF-8")]) from None
+    return parse_car(text, str(path))
+
+
+def parse_car(text, name="the file"):
+    """Read a car file's text.
+
+    Parameters
+    ----------
+    text : str
+    name : str, optional
+        What to call it in a fault.
+
+    Returns
+    -------
+    Car
+
+    Raises
+    ------
+    CarError
+        As for `load_car`.
+    """
     try:
         data = json.loads(text, object_pairs_hook=_no_repeats, parse_constant=_no_constant)
     except CarError:
         raise
     except (ValueError, RecursionError) as error:
-        raise CarError([Fault("", str(path), f"is not valid JSON: {error}")]) from None
+        raise CarError([Fault("", name, f"is not valid JSON: {error}")]) from None
     return car_from_dict(data)
 
 

@@ -216,3 +216,15 @@ def _check(reading: SurveyReading) -> None:
 
     for name, words in check_together(reading).items():
         reading.fault(name, words)
+
+
+def check_ranges(reading: SurveyReading) -> None:
+    """The form's ranges and checks for values that were not typed into it, such as a car file's."""
+    for key, taken in reading.taken.items():
+        quantity = BY_KEY[key]
+        slack = 1e-9 * max(abs(quantity.least), abs(quantity.most), 1.0)
+        if not quantity.least - slack <= taken.si <= quantity.most + slack:
+            low, high = (show(bound, quantity.dimension, taken.unit) for bound in (quantity.least, quantity.most))
+            reading.fault(key, f"{quantity.label}: {taken.typed} {taken.unit} is outside {low} to {high}")
+    if not reading.faults:
+        _check(reading)

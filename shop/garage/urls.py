@@ -1,8 +1,8 @@
 from django.urls import path
 from django.views.generic import RedirectView
 
+from shop.garage.views import car_file, surveys
 from shop.garage.views import people_and_cars as rows
-from shop.garage.views import surveys
 
 app_name = "garage"
 
@@ -10,6 +10,7 @@ urlpatterns = [
     path("", RedirectView.as_view(pattern_name="garage:cars"), name="home"),
     path("cars/", rows.cars, name="cars"),
     path("cars/new", rows.add_car, name="car-new"),
+    path("cars/from-file", car_file.from_file, name="from-file"),
     path("cars/<int:pk>/", rows.car, name="car"),
     path("cars/<int:pk>/edit", rows.edit_car, name="car-edit"),
     path("cars/<int:pk>/put-away", rows.put_away_car, name="car-put-away"),

@@ -22,6 +22,7 @@ from shop.setups import car_file
 from shop.setups.models import Revision
 from shop.units import default_unit, show, unit_of
 from solver import atmosphere, comparing, power, significance, slip_check, timing, weather, weights
+from solver.carfile import parse_car
 from solver.many import sweep_files
 from solver.statics import statics as solve_statics
 
@@ -100,6 +101,15 @@ def car_of(revision: Revision) -> solver.Car:
 def check(revision: Revision) -> dict[str, Any]:
     """The car file, once it is known that it can be solved from; Refused otherwise."""
     return solver.car_to_dict(car_of(revision))
+
+
+def read_car_file(text: str) -> dict[str, Any]:
+    """A car file's content, sound in every number; Refused has a line for each fault, naming the field."""
+    try:
+        return solver.car_to_dict(parse_car(text))
+    except solver.CarError as error:
+        faults = {fault.field: f"{fault.field or 'a number in the file'}: {fault.message}" for fault in error.faults}
+        raise Refused(faults) from error
 
 
 def provisional(revision: Revision) -> list[Quantity]:
