@@ -30,6 +30,7 @@ _HOMES = {
     "launch": "launching",
     "Sweep": "sweeping",
     "sweep": "sweeping",
+    "sweep_cars": "sweeping",
     "sweepable": "sweeping",
     "warm": "warming",
     "FIGURES": "figures",

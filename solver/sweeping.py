@@ -11,7 +11,7 @@ from solver.kernel.lanes import run_many
 from solver.launching import LONGEST_STEP, REASONS
 from solver.packing import pack
 from solver.reduction import reduce
-from solver.rest_figures import rest_figures
+from solver.rest_figures import plan_angles, rest_figures
 
 CHUNK = 500
 
@@ -114,6 +114,66 @@ def sweep(car, changes, *, longest_step=LONGEST_STEP, chunk=CHUNK, progress=None
         if progress:
             progress(done, lanes)
     return _joined(parts, lanes, done)
+
+
+def sweep_cars(cars, *, longest_step=LONGEST_STEP, chunk=CHUNK, progress=None, cancelled=None):
+    """Solve many cars that may differ in anything: shock clicks, tables, stops.
+
+    Cars of one make-up (the same parts, the same number of points in each table) are
+    solved together. Parameters beyond `cars`, the result and the order of lanes are
+    those of `sweep`; each car costs some 20 microseconds of packing more.
+
+    Parameters
+    ----------
+    cars : sequence of Car
+
+    Returns
+    -------
+    Sweep
+
+    Raises
+    ------
+    CarError
+        When a car is refused; its faults name ``cars.<number>.<field>``.
+    """
+    groups = {}
+    for i, car in enumerate(cars):
+        row = pack(_sound(i, car))
+        groups.setdefault((row.n.tobytes(), len(row.p), _options(car)), []).append((i, car, row))
+    batches = [g[at : at + chunk] for g in groups.values() for at in range(0, len(g), chunk)]
+    parts, order = [], []
+    for batch in batches:
+        if cancelled and cancelled():
+            break
+        p = np.array([row.p for _, _, row in batch])
+        parts.append(_solve(batch[0][1], p, batch[0][2].n, longest_step))
+        order += [i for i, _, _ in batch]
+        if progress:
+            progress(len(order), len(cars))
+    order += sorted(set(range(len(cars))) - set(order))
+    joined = _joined(parts, len(cars), sum(len(part[2]) for part in parts))
+    back = np.argsort(order)
+    return Sweep(
+        {name: values[back] for name, values in joined.figures.items()},
+        {name: values[back] for name, values in joined.statics.items()},
+        joined.codes[back],
+        joined.times[back],
+        joined.complete,
+    )
+
+
+def _sound(i, car):
+    try:
+        ensure_sound(car)
+    except CarError as error:
+        faults = [Fault(f"cars.{i}.{f.field}", f.value, f.message) for f in error.faults]
+        raise CarError(faults) from None
+    return car
+
+
+def _options(car):
+    """What `reduce` reads from the car itself rather than from its row."""
+    return bool(car.rear.tyre.grip), plan_angles(car)
 
 
 def sweepable(car):

@@ -1,5 +1,6 @@
 """Same input, same bits: alone, in a batch, again, and without the compiler."""
 
+import dataclasses
 import os
 import subprocess
 import sys
@@ -8,10 +9,11 @@ import numpy as np
 import pytest
 
 from solver.carfile import car_from_dict
+from solver.faults import CarError
 from solver.kernel import layout as L
 from solver.launching import launch
 from solver.packing import pack
-from solver.sweeping import sweep
+from solver.sweeping import sweep, sweep_cars
 from tests.solver.cars import car_with, door_car, put
 from tests.solver.random_cars import SPECIALS, special
 
@@ -50,6 +52,21 @@ def test_a_lane_is_the_same_launch_to_the_last_bit():
             assert (np.isnan(lane) and value is None) or lane == value, name
         assert study.statics["anti_squat_dynamic"][i] == alone.statics.anti_squat_dynamic
         assert study.statics["instant_centre_x"][i] == alone.statics.instant_centre.x
+
+
+def test_cars_of_every_make_up_in_one_study():
+    cars = [special(name) for name in SPECIALS] + [car_with({"mass": 1300.0 + i}) for i in range(5)]
+    study = sweep_cars(cars, chunk=3)
+    for i, car in enumerate(cars):
+        for name, value in launch(car).figures.items():
+            lane = study.figures[name][i]
+            assert (np.isnan(lane) and value is None) or lane == value, (i, name)
+
+
+def test_a_study_of_cars_names_the_bad_one():
+    with pytest.raises(CarError) as refused:
+        sweep_cars([car_with({}), dataclasses.replace(car_with({}), mass=1.0)])
+    assert refused.value.faults[0].field == "cars.1.mass"
 
 
 def test_a_lanes_neighbours_do_not_matter():
