@@ -200,7 +200,8 @@ def _each(reading: SurveyReading, place: str, text: str, unit: str) -> list[list
     for number, line in enumerate(lines, 1):
         parts = [part for part in line.replace(";", ",").replace("\t", ",").split(",") if part.strip()]
         if len(parts) != 2:
-            reading.fault(name, f"hole {number}: write ahead of axle, comma, above ground, like 21 1/2, 8; got “{line.strip()}”")
+            words = "write ahead of axle, comma, above ground, like 21 1/2, 8"
+            reading.fault(name, f"hole {number}: {words}; got “{line.strip()}”")
             return []
         x = _coordinate(reading, name, parts[0], unit, HOLE_X, f"hole {number}, ahead of axle")
         z = _coordinate(reading, name, parts[1], unit, HOLE_Z, f"hole {number}, above ground")

@@ -47,7 +47,9 @@ class BracketEntry:
     holes: list[tuple[int, str, str]] = field(default_factory=list)
 
 
-def sections(typed: Mapping[str, str], reading: SurveyReading | None, linkage: str, system: str) -> list[tuple[str, str, list[Entry]]]:
+def sections(
+    typed: Mapping[str, str], reading: SurveyReading | None, linkage: str, system: str
+) -> list[tuple[str, str, list[Entry]]]:
     """(key, title, entries) in the order in which one walks around the car."""
     by_section: dict[str, list[Entry]] = {key: [] for key in SECTIONS}
     for quantity in QUANTITIES:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 from django import forms
 from django.contrib import messages
 from django.db import transaction
@@ -17,6 +19,8 @@ from shop.launches import bridge
 from shop.people.access import form_view
 from shop.people.permissions import WRITE
 from shop.refusals import Refused
+from shop.setups.choices import beginning
+from shop.setups.services import start_draft
 
 REFUSED = 422
 MOST_BYTES = 1024 * 1024
@@ -61,11 +65,6 @@ def from_file(request: HttpRequest) -> HttpResponse:
 
 def _take_in(request: HttpRequest, form: CarFileForm) -> Car:
     """Car, survey and draft, or nothing at all."""
-    from dataclasses import replace
-
-    from shop.setups.choices import beginning
-    from shop.setups.services import start_draft
-
     data = bridge.read_car_file(form.cleaned_data["file"])
     reading = survey_of(data)
     name = (form.cleaned_data["name"] or data.get("name") or "from a file")[:80]

@@ -76,7 +76,8 @@ def edit(request: HttpRequest, pk: int) -> HttpResponse:
     """Correct a survey that nothing issued stands on."""
     survey = get_object_or_404(Survey.objects.select_related("car"), pk=pk)
     if survey.locked:
-        messages.error(request, f"An issued revision stands on survey {survey.number}, so it stays as it is. Copy it instead.")
+        words = f"An issued revision stands on survey {survey.number}, so it stays as it is. Copy it instead."
+        messages.error(request, words)
         return redirect("garage:survey", pk)
     if request.method != "POST":
         return _page(request, survey.car, typed_of(survey), None, survey=survey)
