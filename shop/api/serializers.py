@@ -8,9 +8,12 @@ from rest_framework import serializers
 
 from shop.garage.models import Bracket, Car, Customer, Measurement, Survey
 from shop.launches.models import Job
+from shop.parts.models import Part, PartVersion
 from shop.setups.car_file import setting_si
 from shop.setups.models import Revision
 from shop.setups.quantities import BY_KEY
+from shop.studies.models import Study
+from shop.track.models import Pass, Weekend
 
 
 class CustomerSerializer(serializers.ModelSerializer):
@@ -85,6 +88,46 @@ class JobSerializer(serializers.ModelSerializer):
             "id", "kind", "revision", "state", "progress", "attempt", "error", "solver_version", "input_hash",
             "created_at", "started_at", "finished_at",
         ]
+
+
+class WeekendSerializer(serializers.ModelSerializer):
+    class Meta:
+        model = Weekend
+        fields = ["id", "place", "starts_on", "ends_on", "elevation", "surface", "notes", "version", "created_at"]
+
+
+class PassSerializer(serializers.ModelSerializer):
+    """A pass as entered: times in seconds, speeds in `speed_unit`, readings as typed."""
+
+    class Meta:
+        model = Pass
+        exclude = ["shop", "entered_by", "entry_key"]
+
+
+class StudySerializer(serializers.ModelSerializer):
+    state = serializers.CharField(source="job.state", read_only=True)
+    progress = serializers.FloatField(source="job.progress", read_only=True)
+
+    class Meta:
+        model = Study
+        fields = [
+            "id", "revision", "job", "name", "plan", "choices", "limits", "weights", "state", "progress", "created_at",
+        ]
+
+
+class PartSerializer(serializers.ModelSerializer):
+    """A part with every version of what is known of it; `data` is as entered, curves in SI."""
+
+    class VersionSerializer(serializers.ModelSerializer):
+        class Meta:
+            model = PartVersion
+            fields = ["id", "number", "data", "origin", "dated", "notes", "created_at"]
+
+    versions = VersionSerializer(many=True, read_only=True)
+
+    class Meta:
+        model = Part
+        fields = ["id", "kind", "name", "versions", "created_at", "archived_at"]
 
 
 class SettingField(serializers.Field):

@@ -12,6 +12,10 @@ router.register("cars", views.CarViewSet, basename="car")
 router.register("surveys", views.SurveyViewSet, basename="survey")
 router.register("revisions", views.RevisionViewSet, basename="revision")
 router.register("launches", views.JobViewSet, basename="launch")
+router.register("weekends", views.WeekendViewSet, basename="weekend")
+router.register("passes", views.PassViewSet, basename="pass")
+router.register("studies", views.StudyViewSet, basename="study")
+router.register("parts", views.PartViewSet, basename="part")
 
 urlpatterns = [
     path("api/v1/", include(router.urls)),

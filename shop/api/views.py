@@ -20,17 +20,24 @@ from shop.api.serializers import (
     FaultsSerializer,
     JobSerializer,
     NewRevisionSerializer,
+    PartSerializer,
+    PassSerializer,
     RevisionSerializer,
+    StudySerializer,
     SurveySerializer,
+    WeekendSerializer,
 )
 from shop.garage.models import Car, Customer, Survey
 from shop.launches import bridge
 from shop.launches.models import Job
+from shop.parts.models import Part
 from shop.people.permissions import ISSUE
 from shop.refusals import Refused, Stale
 from shop.setups import services
 from shop.setups.forms import RevisionForm, form_of
 from shop.setups.models import Revision
+from shop.studies.models import Study
+from shop.track.models import Pass, Weekend
 
 ReadOnly = viewsets.ReadOnlyModelViewSet
 
@@ -95,6 +102,38 @@ class JobViewSet(mixins.RetrieveModelMixin, mixins.ListModelMixin, viewsets.Gene
             return Response({"form": [words]}, status=status.HTTP_409_CONFLICT)
         names = ("statics", "modes", "figures", "events", "histories")
         return Response({name: getattr(job.result, name) for name in names})
+
+
+class WeekendViewSet(ReadOnly):
+    serializer_class = WeekendSerializer
+    filterset_fields = ["place", "starts_on"]
+
+    def get_queryset(self) -> QuerySet[Weekend]:
+        return Weekend.objects.order_by("-starts_on", "-id")
+
+
+class PassViewSet(ReadOnly):
+    serializer_class = PassSerializer
+    filterset_fields = ["weekend", "car", "revision", "aborted"]
+
+    def get_queryset(self) -> QuerySet[Pass]:
+        return Pass.objects.order_by("-day", "-id")
+
+
+class StudyViewSet(ReadOnly):
+    serializer_class = StudySerializer
+    filterset_fields = ["revision"]
+
+    def get_queryset(self) -> QuerySet[Study]:
+        return Study.objects.select_related("job").defer("job__input")
+
+
+class PartViewSet(ReadOnly):
+    serializer_class = PartSerializer
+    filterset_fields = ["kind", "name"]
+
+    def get_queryset(self) -> QuerySet[Part]:
+        return Part.objects.prefetch_related("versions")
 
 
 class CarRevisionsViewSet(viewsets.GenericViewSet):

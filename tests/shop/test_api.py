@@ -3,11 +3,16 @@
 from __future__ import annotations
 
 import pytest
+from django.utils import timezone
 from django_scopes import scope
 from rest_framework.test import APIClient
 
+from shop.launches.models import Job
+from shop.parts.services import Knowledge, add_part
 from shop.people.models import AccessToken
+from shop.studies.services import request_study
 from tests.shop.setups_world import World, make_issued, make_world, signed_in
+from tests.shop.track_world import enter, make_weekend
 
 pytestmark = pytest.mark.django_db
 
@@ -25,7 +30,22 @@ def client_of(member) -> APIClient:
     return client
 
 
-LISTS = ("customers", "cars", "surveys", "revisions", "launches")
+LISTS = ("customers", "cars", "surveys", "revisions", "launches", "weekends", "passes", "studies", "parts")
+
+
+def fill(world: World) -> None:
+    """One row of every kind in the shop."""
+    revision = make_issued(world)
+    weekend = make_weekend(world)
+    enter(world, weekend, time_60="1.31")
+    with scope(shop=world.shop):
+        plan = {"axes": [{"key": "upper_chassis", "values": [1, 2]}]}
+        Job.objects.filter(kind="launch").delete()
+        request_study(world.owner, revision, plan, "Upper holes")
+        Job.objects.filter(kind="study").update(state="done", finished_at=timezone.now())
+        numbers = {"rate": {"typed": "150", "value": 150.0, "unit": "lb/in"}}
+        known = Knowledge(numbers, [], "spring rater", timezone.localdate())
+        add_part(world.owner, "spring", "150 on the shelf", known)
 
 
 @pytest.mark.parametrize("name", LISTS)
@@ -35,7 +55,7 @@ def test_lists_need_a_member(name):
 
 @pytest.mark.parametrize("name", LISTS)
 def test_every_role_reads(world, name):
-    make_issued(world)
+    fill(world)
     for member in (world.owner, world.mate, world.reader):
         answer = client_of(member).get(f"/api/v1/{name}/")
         assert answer.status_code == 200
@@ -44,7 +64,7 @@ def test_every_role_reads(world, name):
 
 @pytest.mark.parametrize("name", LISTS)
 def test_a_stranger_sees_nothing_and_finds_nothing(world, name):
-    make_issued(world)
+    fill(world)
     own = client_of(world.owner).get(f"/api/v1/{name}/").json()["results"][0]["id"]
     stranger = client_of(world.stranger)
     assert stranger.get(f"/api/v1/{name}/").json()["count"] == 0
