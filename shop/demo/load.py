@@ -53,10 +53,12 @@ def _car(member: Membership, data: DemoCar, days_ago: int) -> None:
         )
         survey = _survey(member, car, data, days_ago)
     parent: Revision | None = None
-    for planned in data.revisions:
+    for place, planned in enumerate(data.revisions):
         choices = _choices(survey, parent, data, planned.holes, planned.settings, planned.reason)
         draft = start_draft(member, car, survey, parent, choices)
-        parent = issue(member, draft, draft.version)
+        # The first on the day after the survey, the others a fortnight and more apart, the weekends between them.
+        issued_at = timezone.now() - timedelta(days=max(days_ago - 1 - 26 * place, place % 2))
+        parent = issue(member, draft, draft.version, at=issued_at)
 
 
 def _survey(member: Membership, car: Car, data: DemoCar, days_ago: int) -> Survey:

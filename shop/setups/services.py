@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from datetime import datetime
+
 from django.db import transaction
 from django.db.models import Max, ProtectedError
 from django.utils import timezone
@@ -66,12 +68,15 @@ def discard_draft(member: Membership, draft: Revision, version: int) -> None:
         raise Refused(f"{draft} has work that hangs on it and cannot be thrown away") from error
 
 
-def issue(member: Membership, draft: Revision, version: int, newest_seen: int | None = None) -> Revision:
+def issue(
+    member: Membership, draft: Revision, version: int, newest_seen: int | None = None, at: datetime | None = None
+) -> Revision:
     """Freeze the draft under the car's next number and queue its launch, in one transaction.
 
     `newest_seen` is the newest number the person knew of (0 for none): when somebody else has
     issued since, this one is refused in words, so that it is not issued on an old footing by
-    accident. Without it the next number is taken. The draft is kept whenever this refuses.
+    accident. Without it the next number is taken. The draft is kept whenever this refuses. `at` is
+    for a revision that is entered after the day it was issued on; now, where it is left out.
     """
     if not draft.reason.strip():
         raise Refused({"reason": "say what this revision changes, and why: it goes on the sheet"})
@@ -83,7 +88,7 @@ def issue(member: Membership, draft: Revision, version: int, newest_seen: int | 
         number = _next_number(draft, newest_seen)
         changed = Revision.objects.filter(pk=draft.pk, version=version, number__isnull=True).update(
             number=number,
-            issued_at=timezone.now(),
+            issued_at=at or timezone.now(),
             author=member.user,
             car_file={**car_file, "name": f"{draft.car}, rev {number}"},
             version=version + 1,
