@@ -1,4 +1,4 @@
-"""``python -m solver statics|modes|launch|weights|loads FILE``: answers from a car file alone."""
+"""``python -m solver statics|modes|launch|sweep|weights|loads FILE``: answers from a car file alone."""
 
 import argparse
 import csv

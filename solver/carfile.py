@@ -95,7 +95,7 @@ def car_from_dict(data):
         With every fault found: unknown or missing keys, values out of range,
         geometry that cannot work.
     """
-    faults = []
+    faults: list[Fault] = []
     top = Section(data, "", faults)
     if not isinstance(data, dict):
         raise CarError(faults)

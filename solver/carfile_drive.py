@@ -4,6 +4,7 @@ from solver.car import Clutch, Converter, Engine, Gears, Hit, Powertrain, WheelT
 
 TIME = (0.0, 100.0)
 TORQUE = (-1e6, 1e6)
+MAX_TIMES = 2000  # a logged hit may be long
 
 
 def read_drive(section):
@@ -14,9 +15,9 @@ def read_drive(section):
     if kind == "torque" and section.has("engine"):
         drive = _read_powertrain(section)
     elif kind == "torque":
-        drive = WheelTorque(section.table("table", ("time in s", "torque in N m"), (TIME, TORQUE)))
+        drive = WheelTorque(section.table("table", ("time in s", "torque in N m"), (TIME, TORQUE), most=MAX_TIMES))
     else:
-        drive = Hit(section.table("table", ("time in s", "force in N"), (TIME, TORQUE)))
+        drive = Hit(section.table("table", ("time in s", "force in N"), (TIME, TORQUE), most=MAX_TIMES))
     section.refuse_the_rest()
     return drive
 
@@ -38,7 +39,7 @@ def _read_powertrain(section):
     engine = _read_engine(section.section("engine"))
     if section.has("clutch") == section.has("converter"):
         section.fault("clutch", None, "give either a clutch or a converter")
-        coupling = None
+        coupling = Clutch(())
     elif section.has("clutch"):
         coupling = _read_clutch(section.section("clutch"))
     else:

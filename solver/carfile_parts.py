@@ -122,7 +122,7 @@ def read_linkage(section):
     if section is None:
         return None
     kind = section.choice("kind", ("four-link", "ladder-bar"))
-    linkage = None
+    linkage: FourLink | LadderBar | None = None
     if kind == "four-link":
         lower, upper = (_read_link(section.section(key)) for key in ("lower", "upper"))
         linkage = FourLink(lower, upper) if lower and upper else None

@@ -30,14 +30,15 @@ def pack(car):
         `columns` maps car-file paths to (column of `p`, factor on the file's value).
     """
     n = np.zeros(L.INTEGERS, dtype=np.int64)
-    scalars, columns = np.zeros(L.SCALARS), {}
+    scalars = np.zeros(L.SCALARS)
+    columns: dict[str, tuple[int, float]] = {}
     _put_body(scalars, columns, car)
     _put_linkage(scalars, n, columns, car.rear.linkage)
     lines = _put_lines(scalars, n, columns, car.rear)
     _put_wheelie_bar(scalars, n, columns, car.wheelie_bar)
     _put_stops(scalars, columns, car)
     n[L.FRONT_STOPS] = car.front.bump_stop is not None or car.front.droop_stop is not None
-    tail = []
+    tail: list[float] = []
     adder = Curves(scalars, n, tail, columns)
     _put_curves(adder, car, lines)
     table = put_drive(scalars, n, adder, car)

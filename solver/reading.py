@@ -82,7 +82,7 @@ class Section:
             for part, axis in zip(value, "xz", strict=True)
         )
 
-    def table(self, key, columns, limits, fewest=2):
+    def table(self, key, columns, limits, fewest=2, most=MAX_TABLE):
         """Pairs of numbers whose first column rises strictly.
 
         `columns` names the two columns with their units; `limits` holds
@@ -97,8 +97,8 @@ class Section:
         ):
             self.fault(key, value, f"must be {words}")
             return ()
-        if not fewest <= len(value) <= MAX_TABLE:
-            self.fault(key, value, f"must have from {fewest} to {MAX_TABLE} points")
+        if not fewest <= len(value) <= most:
+            self.fault(key, value, f"must have from {fewest} to {most} points")
             return ()
         rows = tuple(self._row(key, i, row, columns, limits) for i, row in enumerate(value))
         if any(not b[0] > a[0] for a, b in pairwise(rows)):

@@ -136,7 +136,7 @@ def sweep_cars(cars, *, longest_step=LONGEST_STEP, chunk=CHUNK, progress=None, c
     CarError
         When a car is refused; its faults name ``cars.<number>.<field>``.
     """
-    groups = {}
+    groups: dict[tuple, list] = {}
     for i, car in enumerate(cars):
         row = pack(_sound(i, car))
         groups.setdefault((row.n.tobytes(), len(row.p), _options(car)), []).append((i, car, row))

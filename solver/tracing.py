@@ -133,9 +133,9 @@ def _moving_centre(car, p, states):
     lower = on_chassis(p[L.LCX], p[L.LCZ]), on_housing(p[L.LHX], p[L.LHZ])
     upper = on_chassis(p[L.UCX], p[L.UCZ]), on_housing(p[L.UHX], p[L.UHZ])
     # Seen from the patch, which moves with the axle.
-    lower, upper = (tuple((px - axle_x, pz) for px, pz in bar) for bar in (lower, upper))
-    meet_x, meet_z, w = meeting(*lower, *upper)
-    gone = parallel(*lower, *upper, w)
+    a, b, c, d = ((px - axle_x, pz) for px, pz in (*lower, *upper))
+    meet_x, meet_z, w = meeting(a, b, c, d)
+    gone = parallel(a, b, c, d, w)
     w = np.where(gone, np.nan, w)
     front_x, front_z = on_chassis(p[L.WHEELBASE], p[L.FRONT_RADIUS] + states[:, L.SLIDE])
     height = (

@@ -5,7 +5,8 @@ import numpy as np
 from solver.kernel import layout as L
 from solver.kernel.curves import curve, slope_at_rest
 from solver.kernel.jit import jit
-from solver.kernel.physics import accelerate, link
+from solver.kernel.links import link
+from solver.kernel.physics import accelerate
 
 # Independent coordinates: chassis x, z, pitch, axle height, front slide.
 FREE = (L.X, L.Z, L.PITCH, L.HZ, L.SLIDE)
