@@ -4,9 +4,12 @@
 ``sweep`` answer from it. Nothing is compiled at import: `warm` does that, once.
 """
 
+from __future__ import annotations
+
 import importlib
 import sys
 import types
+from typing import Any
 
 from solver.version import SOLVER_VERSION
 
@@ -41,7 +44,7 @@ _HOMES = {
 __all__ = ["SOLVER_VERSION", *_HOMES]
 
 
-def __getattr__(name):
+def __getattr__(name: str) -> Any:
     if name not in _HOMES:
         raise AttributeError(f"module 'solver' has no attribute {name!r}")
     return getattr(importlib.import_module(f"solver.{_HOMES[name]}"), name)
@@ -54,7 +57,7 @@ class _Package(types.ModuleType):
     ``solver.statics(car)`` looks for the function.
     """
 
-    def __setattr__(self, name, value):
+    def __setattr__(self, name: str, value: Any) -> None:
         if not (name in _HOMES and isinstance(value, types.ModuleType)):
             super().__setattr__(name, value)
 

@@ -1,19 +1,26 @@
 """``python -m solver statics|modes|launch|sweep|weights|loads FILE``: answers from a car file alone."""
 
+from __future__ import annotations
+
 import argparse
 import csv
 import json
 import sys
+from collections.abc import Callable, Mapping
 from dataclasses import asdict
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from solver.faults import CarError, LaunchFailed
 from solver.printing import launch_table, modes_table, statics_table, sweep_table
 
+if TYPE_CHECKING:
+    from solver.car import Car
+
 BAD_FILE, FAILED = 2, 3
 
 
-def main(arguments=None):
+def main(arguments: list[str] | None = None) -> int:
     """Run one command; returns the exit status: 0, 2 for a bad file, 3 for a failed launch."""
     options = _parser().parse_args(arguments)
     try:
@@ -30,7 +37,7 @@ def main(arguments=None):
         return BAD_FILE
 
 
-def _parser():
+def _parser() -> argparse.ArgumentParser:
     parser = argparse.ArgumentParser(prog="python -m solver", description=__doc__)
     commands = parser.add_subparsers(required=True, metavar="command")
     for name, command, what in (
@@ -52,13 +59,13 @@ def _parser():
     return parser
 
 
-def _car(options):
+def _car(options: argparse.Namespace) -> Car:
     from solver.carfile import load_car
 
     return load_car(options.file)
 
 
-def _statics(options):
+def _statics(options: argparse.Namespace) -> int:
     from solver.launching import plain
     from solver.statics import statics
 
@@ -67,7 +74,7 @@ def _statics(options):
     return 0
 
 
-def _modes(options):
+def _modes(options: argparse.Namespace) -> int:
     from solver.launching import plain
     from solver.modes import modes
 
@@ -77,7 +84,7 @@ def _modes(options):
     return 0
 
 
-def _launch(options):
+def _launch(options: argparse.Namespace) -> int:
     from solver.launching import launch
 
     result = launch(_car(options))
@@ -87,7 +94,7 @@ def _launch(options):
     return 0
 
 
-def _weights(options):
+def _weights(options: argparse.Namespace) -> int:
     from solver.cli_weights import weights_answer
 
     result = weights_answer(_car(options))
@@ -95,7 +102,7 @@ def _weights(options):
     return 0
 
 
-def _loads(options):
+def _loads(options: argparse.Namespace) -> int:
     from solver.cli_loads import loads_answer
 
     result = loads_answer(_car(options))
@@ -103,7 +110,7 @@ def _loads(options):
     return 0
 
 
-def _sweep(options):
+def _sweep(options: argparse.Namespace) -> int:
     from solver.grids import grid, usual_grid
     from solver.sweeping import sweep
 
@@ -119,7 +126,7 @@ def _sweep(options):
     return 0
 
 
-def _answer(options, data, table, quiet=False):
+def _answer(options: argparse.Namespace, data: dict, table: Callable, quiet: bool = False) -> None:
     """Write JSON where asked, else print the table."""
     if options.json:
         options.json.write_text(json.dumps(data, allow_nan=False), encoding="utf-8")
@@ -127,7 +134,7 @@ def _answer(options, data, table, quiet=False):
         print(table())
 
 
-def _write_csv(path, histories):
+def _write_csv(path: Path, histories: Mapping) -> None:
     with open(path, "w", encoding="utf-8", newline="") as file:
         writer = csv.writer(file)
         writer.writerow(histories)

@@ -5,6 +5,8 @@ Both sides of the car are lumped. Points are ``(x, z)`` tuples; tables are tuple
 of pairs.
 """
 
+from __future__ import annotations
+
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
@@ -252,10 +254,10 @@ class Car:
     hit: Hit | WheelTorque | Powertrain
     run: Run
     wheelie_bar: WheelieBar | None = None
-    corners: "CornerPlan | None" = None
-    bars: "BarPlan | None" = None
+    corners: CornerPlan | None = None
+    bars: BarPlan | None = None
 
 
-def has_engine(car):
+def has_engine(car: Car) -> bool:
     """Whether the hit comes from an engine."""
     return isinstance(car.hit, Powertrain)

@@ -1,8 +1,11 @@
 """The car file: one JSON object that describes one car in one setup (CARFILE.md)."""
 
+from __future__ import annotations
+
 import dataclasses
 import json
 from pathlib import Path
+from typing import TYPE_CHECKING, Any
 
 from solver.bar_section import read_bars
 from solver.car import Car, FourLink, Front, Rear, Run, WheelieBar
@@ -20,12 +23,15 @@ from solver.faults import CarError, Fault
 from solver.reading import Section
 from solver.soundness import faults_of
 
+if TYPE_CHECKING:
+    pass
+
 FORMAT, VERSION = "launch-ledger/car", 1
 MAX_REAR_SPRINGS = 4
 MAX_REPORTS = 20_000
 
 
-def load_car(path):
+def load_car(path: str | Path) -> Car:
     """Read a car file.
 
     Parameters
@@ -51,7 +57,7 @@ def load_car(path):
     return parse_car(text, str(path))
 
 
-def parse_car(text, name="the file"):
+def parse_car(text: str, name: str = "the file") -> Car:
     """Read a car file's text.
 
     Parameters
@@ -78,7 +84,7 @@ def parse_car(text, name="the file"):
     return car_from_dict(data)
 
 
-def car_from_dict(data):
+def car_from_dict(data: Any) -> Car:
     """Make a car from the car file's JSON object, checking everything.
 
     Parameters
@@ -110,7 +116,7 @@ def car_from_dict(data):
     return car
 
 
-def ensure_sound(car):
+def ensure_sound(car: Car) -> None:
     """Refuse a car made by hand that the car file would refuse.
 
     Raises
@@ -122,7 +128,7 @@ def ensure_sound(car):
         object.__setattr__(car, "_sound", True)
 
 
-def car_to_dict(car):
+def car_to_dict(car: Car) -> dict[str, Any]:
     """The car file's JSON object for a car; `car_from_dict` gives the same car back.
 
     Parameters
@@ -157,18 +163,14 @@ def car_to_dict(car):
 SHOWN_EMPTY = {"spring", "damper", "droop_stop", "bump_stop"}
 
 
-def _plain(thing):
+def _plain(thing: Any) -> Any:
     if dataclasses.is_dataclass(thing):
         pairs = ((f.name, getattr(thing, f.name), f.default) for f in dataclasses.fields(thing))
-        return {
-            name: _plain(value)
-            for name, value, default in pairs
-            if name in SHOWN_EMPTY or value != default
-        }
+        return {name: _plain(value) for name, value, default in pairs if name in SHOWN_EMPTY or value != default}
     return [_plain(part) for part in thing] if isinstance(thing, tuple) else thing
 
 
-def _read_header(top):
+def _read_header(top: Section) -> None:
     if top.take("format", f"{FORMAT!r}") not in (None, FORMAT):
         top.fault("format", top.data["format"], f"must be {FORMAT!r}")
     version = top.take("version", "the format's version")
@@ -176,7 +178,7 @@ def _read_header(top):
         top.fault("version", version, f"must be {VERSION}, the only version there is")
 
 
-def _read_car(top):
+def _read_car(top: Section) -> Car:
     name = top.text("name")
     wheelbase = top.number("wheelbase", 1.0, 10.0, "m")
     mass = top.number("mass", 50.0, 20_000.0, "kg")
@@ -193,12 +195,10 @@ def _read_car(top):
         wheelie_bar=_read_wheelie_bar(top.optional_section("wheelie_bar")),
         corners=read_corners(top.optional_section("corners")),
     )
-    return dataclasses.replace(
-        car, bars=read_bars(top.optional_section("bars"), car.rear.linkage if car.rear else None)
-    )
+    return dataclasses.replace(car, bars=read_bars(top.optional_section("bars"), car.rear.linkage if car.rear else None))
 
 
-def _read_cg(section):
+def _read_cg(section: Any) -> Any:
     if section is None:
         return None
     cg = section.number("x", 0.01, 10.0, "m"), section.number("z", 0.05, 3.0, "m")
@@ -206,7 +206,7 @@ def _read_cg(section):
     return cg
 
 
-def _read_chassis(section):
+def _read_chassis(section: Any) -> Any:
     if section is None:
         return None
     inertia = section.number("pitch_inertia", 1.0, 1e5, "kg m^2")
@@ -214,7 +214,7 @@ def _read_chassis(section):
     return inertia
 
 
-def _read_front(section):
+def _read_front(section: Any) -> Any:
     if section is None:
         return None
     front = Front(
@@ -230,7 +230,7 @@ def _read_front(section):
     return front
 
 
-def _read_rear(section):
+def _read_rear(section: Any) -> Any:
     if section is None:
         return None
     rear = Rear(
@@ -248,7 +248,7 @@ def _read_rear(section):
     return rear
 
 
-def _read_wheelie_bar(section):
+def _read_wheelie_bar(section: Any) -> Any:
     if section is None:
         return None
     bar = WheelieBar(
@@ -262,7 +262,7 @@ def _read_wheelie_bar(section):
     return bar
 
 
-def _read_run(section):
+def _read_run(section: Any) -> Any:
     if section is None:
         return None
     duration = section.number("duration", 0.01, 20.0, "s")
@@ -276,7 +276,7 @@ def _read_run(section):
     return Run(duration, step, rollout)
 
 
-def _no_repeats(pairs):
+def _no_repeats(pairs: list) -> dict:
     found = {}
     for key, value in pairs:
         if key in found:
@@ -285,5 +285,5 @@ def _no_repeats(pairs):
     return found
 
 
-def _no_constant(word):
+def _no_constant(word: str) -> None:
     raise CarError([Fault("", word, "must be a finite number")])

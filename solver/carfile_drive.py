@@ -1,19 +1,27 @@
 """The hit as it stands in a car file: a force, a wheel torque, or an engine."""
 
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import TYPE_CHECKING, Any
+
 from solver.car import Clutch, Converter, Engine, Gears, Hit, Powertrain, WheelTorque
+
+if TYPE_CHECKING:
+    from solver.car import Table
 
 TIME = (0.0, 100.0)
 TORQUE = (-1e6, 1e6)
 MAX_TIMES = 2000  # a logged hit may be long
 
 
-def read_drive(section):
+def read_drive(section: Any) -> Any:
     """Drive mode 1 (kind force) or 2 (kind torque), or None for a missing section."""
     if section is None:
         return None
     kind = section.choice("kind", ("force", "torque"))
     if kind == "torque" and section.has("engine"):
-        drive = _read_powertrain(section)
+        drive: Hit | WheelTorque | Powertrain = _read_powertrain(section)
     elif kind == "torque":
         drive = WheelTorque(section.table("table", ("time in s", "torque in N m"), (TIME, TORQUE), most=MAX_TIMES))
     else:
@@ -22,7 +30,7 @@ def read_drive(section):
     return drive
 
 
-def drive_to_dict(drive, plain):
+def drive_to_dict(drive: Any, plain: Callable) -> dict:
     """The section `read_drive` reads back; `plain` turns dataclasses into dicts."""
     if isinstance(drive, Powertrain):
         coupling = "clutch" if isinstance(drive.coupling, Clutch) else "converter"
@@ -35,11 +43,11 @@ def drive_to_dict(drive, plain):
     return {"kind": "force" if isinstance(drive, Hit) else "torque", **plain(drive)}
 
 
-def _read_powertrain(section):
+def _read_powertrain(section: Any) -> Any:
     engine = _read_engine(section.section("engine"))
     if section.has("clutch") == section.has("converter"):
         section.fault("clutch", None, "give either a clutch or a converter")
-        coupling = Clutch(())
+        coupling: Clutch | Converter = Clutch(())
     elif section.has("clutch"):
         coupling = _read_clutch(section.section("clutch"))
     else:
@@ -47,7 +55,7 @@ def _read_powertrain(section):
     return Powertrain(engine, coupling, _read_gears(section.section("gears")))
 
 
-def _read_engine(section):
+def _read_engine(section: Any) -> Any:
     columns = ("engine speed in rad/s", "torque in N m")
     engine = Engine(
         section.table("curve", columns, ((0.0, 2000.0), (-1e4, 1e5))),
@@ -58,7 +66,7 @@ def _read_engine(section):
     return engine
 
 
-def _read_clutch(section):
+def _read_clutch(section: Any) -> Any:
     columns = ("time in s", "capacity in N m")
     clutch = Clutch(
         section.table("capacity", columns, (TIME, (0.0, 1e5))),
@@ -68,11 +76,11 @@ def _read_clutch(section):
     return clutch
 
 
-def _read_converter(section):
+def _read_converter(section: Any) -> Any:
     usual = Converter(1.0, 1.0)
     share = ("speed ratio", "ratio")
 
-    def shape(key, low, high):
+    def shape(key: str, low: float, high: float) -> Table:
         if not section.has(key):
             return getattr(usual, key)
         return section.table(key, share, ((0.0, 1.5), (low, high)))
@@ -90,7 +98,7 @@ def _read_converter(section):
     return converter
 
 
-def _read_gears(section):
+def _read_gears(section: Any) -> Any:
     if section is None:
         return None
     ratios = section.take("ratios", "a list of gear ratios from first up")

@@ -1,15 +1,22 @@
 """Springs, shocks, tyres, stops and links as they stand in a car file."""
 
+from __future__ import annotations
+
 from itertools import pairwise
+from typing import TYPE_CHECKING, Any
 
 from solver.car import Adjuster, Click, Damper, FourLink, LadderBar, Link, RearSpring, Spring, Stop, Tyre
+
+if TYPE_CHECKING:
+    from solver.car import Table
+    from solver.reading import Section
 
 FORCE = (-1e6, 1e6)
 SPRING_COLUMNS = ("compression in m", "force in N")
 DAMPER_COLUMNS = ("velocity in m/s", "force in N")
 
 
-def read_spring(section):
+def read_spring(section: Any) -> Any:
     """A spring from ``{"rate"}`` or ``{"table"}``, or None for a missing section."""
     if section is None:
         return None
@@ -26,7 +33,7 @@ def read_spring(section):
     return spring
 
 
-def read_damper(section):
+def read_damper(section: Any) -> Any:
     """A shock from a rate, a table, or the dyno curves of its two adjusters."""
     if section is None:
         return None
@@ -47,7 +54,7 @@ def read_damper(section):
     return damper
 
 
-def read_adjuster(section):
+def read_adjuster(section: Any) -> Any:
     """The dyno'd clicks of one stroke; the setting must lie between two of them."""
     if section is None:
         return None
@@ -60,14 +67,13 @@ def read_adjuster(section):
         section.fault(
             "setting",
             setting,
-            f"must be from click {names[0]:g} to {names[-1]:g}: a shock is not guessed "
-            "beyond what was on the dyno",
+            f"must be from click {names[0]:g} to {names[-1]:g}: a shock is not guessed beyond what was on the dyno",
         )
     section.refuse_the_rest()
     return Adjuster(setting, clicks)
 
 
-def _read_click(section):
+def _read_click(section: Any) -> Any:
     click = section.number("click", 0.0, 100.0, "clicks")
     table = section.table("table", ("speed in m/s", "force in N"), ((0.0, 20.0), (0.0, 1e6)))
     if table and table[0] != (0.0, 0.0):
@@ -77,7 +83,7 @@ def _read_click(section):
     return Click(click, table)
 
 
-def read_tyre(section, driven):
+def read_tyre(section: Any, driven: bool) -> Any:
     """A tyre; grip is read on the driven axle only."""
     if section is None:
         return None
@@ -95,7 +101,7 @@ def read_tyre(section, driven):
     return Tyre(rate, damping, **extra)
 
 
-def read_stop(section, own_mounts):
+def read_stop(section: Any, own_mounts: bool) -> Any:
     """A bump or droop stop; on the rear it may stand on mounts of its own."""
     if section is None:
         return None
@@ -117,7 +123,7 @@ def read_stop(section, own_mounts):
     return Stop(clearance, rate, damping, table, **mounts)
 
 
-def read_linkage(section):
+def read_linkage(section: Any) -> Any:
     """A four-link or a ladder bar, or None with its faults noted."""
     if section is None:
         return None
@@ -132,7 +138,7 @@ def read_linkage(section):
     return linkage
 
 
-def _read_link(section):
+def _read_link(section: Any) -> Any:
     if section is None:
         return None
     link = Link(
@@ -144,7 +150,7 @@ def _read_link(section):
     return link
 
 
-def read_rear_spring(section):
+def read_rear_spring(section: Section) -> RearSpring:
     """One line between mounts; it must carry a spring or a damper."""
     entry = RearSpring(
         section.point("chassis"),
@@ -158,7 +164,7 @@ def read_rear_spring(section):
     return entry
 
 
-def _one_of_two(section, first, second):
+def _one_of_two(section: Section, first: str, second: str) -> bool:
     both = section.has(first), section.has(second)
     if both == (True, True):
         section.fault(second, section.data[second], f"cannot stand beside {first}: give one")
@@ -167,17 +173,17 @@ def _one_of_two(section, first, second):
     return any(both)
 
 
-def _force_must_rise(section, table):
+def _force_must_rise(section: Section, table: Table) -> None:
     if any(not b[1] > a[1] for a, b in pairwise(table)):
         section.fault("table", table, "the force must rise with every further compression")
 
 
-def _force_must_not_fall(section, table):
+def _force_must_not_fall(section: Section, table: Table) -> None:
     if any(b[1] < a[1] for a, b in pairwise(table)):
         section.fault("table", table, "the force must not fall as the speed rises")
 
 
-def _no_push_at_rest(section, table):
+def _no_push_at_rest(section: Section, table: Table) -> None:
     """A shock table must pass through no force at no speed, or ride height is not at rest."""
     if len(table) < 2:
         return

@@ -1,9 +1,15 @@
 """A shock's force-velocity curve at an adjuster setting between two dyno'd clicks."""
 
+from __future__ import annotations
+
 from itertools import pairwise
+from typing import TYPE_CHECKING, Any
+
+if TYPE_CHECKING:
+    from solver.car import Damper, Table
 
 
-def damper_table(damper):
+def damper_table(damper: Damper) -> Table:
     """The (velocity, force) table of a damper, compression positive.
 
     Parameters
@@ -21,7 +27,7 @@ def damper_table(damper):
     return tuple((-v, -f) for v, f in reversed(rebound[1:])) + squeeze
 
 
-def stroke(adjuster):
+def stroke(adjuster: Any) -> Table:
     """One stroke's (speed, force) at its setting.
 
     Between two dyno'd clicks the force at a speed is interpolated linearly in
@@ -55,7 +61,7 @@ def stroke(adjuster):
     return clicks[0].table
 
 
-def _blend(one, other, share):
+def _blend(one: Table, other: Table, share: float) -> Table:
     if share == 0.0:
         return one
     if share == 1.0:
@@ -65,7 +71,7 @@ def _blend(one, other, share):
     return tuple((v, (1.0 - share) * at(one, v) + share * at(other, v)) for v in speeds)
 
 
-def at(table, v):
+def at(table: Table, v: float) -> float:
     """Force of a table at a speed, linear between points and beyond the ends."""
     i = 1
     while i < len(table) - 1 and v > table[i][0]:

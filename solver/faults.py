@@ -1,6 +1,10 @@
 """What is wrong with a car, and why a launch could not be solved."""
 
+from __future__ import annotations
+
+from collections.abc import Sequence
 from dataclasses import dataclass
+from typing import Any
 
 
 @dataclass(frozen=True)
@@ -21,7 +25,7 @@ class Fault:
     value: object
     message: str
 
-    def __str__(self):
+    def __str__(self) -> str:
         where = self.field or "the car file"
         if self.value is None:
             return f"{where}: {self.message}"
@@ -31,11 +35,11 @@ class Fault:
 class CarError(ValueError):
     """A car that cannot be solved as it is described; carries every fault found."""
 
-    def __init__(self, faults):
+    def __init__(self, faults: Sequence[Fault]) -> None:
         self.faults = tuple(faults)
         super().__init__("; ".join(str(fault) for fault in self.faults))
 
-    def __reduce__(self):
+    def __reduce__(self) -> tuple:
         return CarError, (self.faults,)
 
 
@@ -50,15 +54,15 @@ class LaunchFailed(RuntimeError):
         Why, in words.
     """
 
-    def __init__(self, time, reason):
+    def __init__(self, time: float, reason: str) -> None:
         self.time = float(time)
         self.reason = reason
         super().__init__(f"at {self.time:.4f} s: {reason}")
 
-    def __reduce__(self):
+    def __reduce__(self) -> tuple:
         return LaunchFailed, (self.time, self.reason)
 
 
-def _short(value):
+def _short(value: Any) -> str:
     text = repr(value)
     return text if len(text) <= 60 else text[:57] + "..."

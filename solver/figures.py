@@ -5,6 +5,8 @@ Dimensions are names, not units: force, length, speed, acceleration, time, angle
 torque, spin (rad/s), ratio, percent, coefficient. Values are SI; angles in radians.
 """
 
+from __future__ import annotations
+
 from typing import NamedTuple
 
 
@@ -34,9 +36,7 @@ HISTORIES = {
     "upper_link_force": Quantity(
         "Upper bars", "force", "Tension positive, both bars; ladder bar: across the bar at its pin"
     ),
-    "lower_link_force": Quantity(
-        "Lower bars", "force", "Tension positive, both bars; ladder bar: along the bar"
-    ),
+    "lower_link_force": Quantity("Lower bars", "force", "Tension positive, both bars; ladder bar: along the bar"),
     "front_travel": Quantity("Front wheel travel", "length", "Bump positive, from ride height"),
     "front_velocity": Quantity("Front wheel speed", "speed", "Bump positive"),
     "front_spring_force": Quantity("Front springs and shocks", "force", "At the wheels, both sides"),
@@ -61,7 +61,7 @@ HISTORIES = {
 }
 
 
-def _pair(name, label, dimension, description):
+def _pair(name: str, label: str, dimension: str, description: str) -> dict[str, Quantity]:
     """A peak and when it was."""
     return {
         name: Quantity(label, dimension, description),

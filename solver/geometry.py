@@ -1,9 +1,13 @@
 """Where link lines meet, and what that says about the force line from the patch."""
 
+from __future__ import annotations
+
+from typing import Any
+
 import numpy as np
 
 
-def meeting(a, b, c, d):
+def meeting(a: Any, b: Any, c: Any, d: Any) -> tuple:
     """Where line `a b` meets line `c d`, kept as a direction when it is at infinity.
 
     Parameters
@@ -22,13 +26,13 @@ def meeting(a, b, c, d):
     return l1 * m2 - l2 * m1, l2 * m0 - l0 * m2, l0 * m1 - l1 * m0
 
 
-def parallel(a, b, c, d, w):
+def parallel(a: Any, b: Any, c: Any, d: Any, w: Any) -> Any:
     """Whether the lines' meeting point is farther off than can be told (1e-9 rad)."""
     size = np.hypot(b[0] - a[0], b[1] - a[1]) * np.hypot(d[0] - c[0], d[1] - c[1])
     return np.abs(w) <= 1e-9 * size
 
 
-def turned(angle, point):
+def turned(angle: Any, point: tuple) -> tuple:
     """A body's point turned by an angle, counter-clockwise in x-z."""
     cosine, sine = np.cos(angle), np.sin(angle)
     return cosine * point[0] - sine * point[1], sine * point[0] + cosine * point[1]

@@ -1,14 +1,21 @@
 """Grids of choices for a study, from what was typed on a command line."""
 
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
 import numpy as np
 
 from solver.car import FourLink
 from solver.faults import CarError, Fault
 
+if TYPE_CHECKING:
+    from solver.car import Car
+
 MOST_LANES = 100_000
 
 
-def grid(wanted):
+def grid(wanted: list[str]) -> dict[str, np.ndarray]:
     """Every combination of the ranges in ``PATH=LOW:HIGH:COUNT`` texts.
 
     Parameters
@@ -32,7 +39,7 @@ def grid(wanted):
     return {path: values.ravel() for path, values in zip(axes, full, strict=True)}
 
 
-def usual_grid(car):
+def usual_grid(car: Car) -> dict[str, np.ndarray]:
     """Front pins of the bars 20 mm up and down in five steps each."""
     linkage = car.rear.linkage
     if isinstance(linkage, FourLink):
@@ -42,7 +49,7 @@ def usual_grid(car):
     return grid([f"rear.linkage.{path}.z={z - 0.02}:{z + 0.02}:5" for path, (_, z) in pins.items()])
 
 
-def _axis(text):
+def _axis(text: str) -> tuple[str, np.ndarray]:
     path, equals, range_ = text.partition("=")
     try:
         low, high, count = range_.split(":")

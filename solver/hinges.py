@@ -1,9 +1,12 @@
 """Tables as sums of hinges, the form the kernel reads (`solver.kernel.curves`)."""
 
+from __future__ import annotations
+
 from itertools import pairwise
+from typing import Any
 
 
-def hinges(table, ratio=1.0):
+def hinges(table: Any, ratio: float = 1.0) -> list[float]:
     """Value and slope at zero as the first leg has them, then (knot, change of slope).
 
     Parameters
@@ -27,7 +30,7 @@ def hinges(table, ratio=1.0):
     return row
 
 
-def value_of(row, v):
+def value_of(row: list[float], v: float) -> float:
     """The curve's value, in plain Python."""
     pairs = zip(row[2::2], row[3::2], strict=True)
     return row[0] + row[1] * v + sum(change * max(0.0, v - knot) for knot, change in pairs)

@@ -1,7 +1,10 @@
 """One launch, from a car to its figures, histories and events."""
 
+from __future__ import annotations
+
 import math
 from dataclasses import asdict, dataclass
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
@@ -16,6 +19,9 @@ from solver.reduction import reduce
 from solver.statics import Statics, statics_of_row
 from solver.tracing import event_list, histories_of
 from solver.version import SOLVER_VERSION
+
+if TYPE_CHECKING:
+    from solver.car import Car
 
 LONGEST_STEP = 2.5e-3
 
@@ -59,7 +65,7 @@ class Launch:
     settled: bool
     quality: dict
 
-    def to_dict(self):
+    def to_dict(self) -> dict[str, Any]:
         """The result as JSON-ready plain values: lists for arrays, None for not-a-number."""
         return {
             "solver_version": SOLVER_VERSION,
@@ -73,7 +79,7 @@ class Launch:
         }
 
 
-def launch(car, longest_step=LONGEST_STEP):
+def launch(car: Car, longest_step: float = LONGEST_STEP) -> Launch:
     """Solve a launch.
 
     Parameters
@@ -100,9 +106,7 @@ def launch(car, longest_step=LONGEST_STEP):
     kept, log = np.zeros(L.ACCUMULATORS), np.zeros((L.EVENTS, 2))
     reports = math.floor(car.run.duration / car.run.output_step + 1e-9) + 1
     states, outputs = np.zeros((reports, L.STATES)), np.zeros((reports, L.OUTPUTS))
-    code, time, count, step = run_one(
-        row.p, row.n, longest_step, kept, log, True, states, outputs
-    )
+    code, time, count, step = run_one(row.p, row.n, longest_step, kept, log, True, states, outputs)
     if code != L.SOLVED:
         raise LaunchFailed(time, REASONS[code])
     figures = reduce(car, row.p[None], kept[None], log[None], np.array([count]))
@@ -123,7 +127,7 @@ def launch(car, longest_step=LONGEST_STEP):
     )
 
 
-def plain(value):
+def plain(value: Any) -> Any:
     """The value with every not-a-number and infinity as None, tuples as lists."""
     if isinstance(value, dict):
         return {key: plain(part) for key, part in value.items()}
@@ -132,5 +136,3 @@ def plain(value):
     if isinstance(value, float) and not math.isfinite(value):
         return None
     return value
-
-

@@ -1,8 +1,14 @@
 """Does a four-link close over all of its travel, without locking on the way?"""
 
+from __future__ import annotations
+
 import math
+from typing import TYPE_CHECKING, Any
 
 from solver.faults import Fault
+
+if TYPE_CHECKING:
+    from solver.car import Car
 
 STEPS = 12
 ASSUMED_TRAVEL = 0.08
@@ -10,7 +16,7 @@ ASSUMED_TRAVEL = 0.08
 LOCKED = 0.02
 
 
-def travel_faults(car):
+def travel_faults(car: Car) -> list[Fault]:
     """Walk the axle from droop to bump along the linkage and report where it locks.
 
     The travel is that of the stops where the car has them, else
@@ -43,7 +49,7 @@ def travel_faults(car):
     return []
 
 
-def _leverage(linkage, rise):
+def _leverage(linkage: Any, rise: float) -> float | None:
     """How far the two bars' lines are from being one line, 0 to 1, or None if open.
 
     The lower bar's housing pin is raised by `rise` about its chassis pin; the

@@ -1,7 +1,10 @@
 """Natural frequencies and damping ratios of the model linearised at ride height."""
 
+from __future__ import annotations
+
 import math
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
 
@@ -12,6 +15,10 @@ from solver.kernel.lanes import settle_one
 from solver.kernel.linear import linearise
 from solver.packing import pack
 from solver.statics import rest_faults
+
+if TYPE_CHECKING:
+    from solver.car import Car
+    from solver.packing import Row
 
 
 @dataclass(frozen=True)
@@ -34,7 +41,7 @@ class Mode:
     shape: dict[str, float]
 
 
-def modes(car):
+def modes(car: Car) -> tuple[Mode, ...]:
     """Oscillatory modes at ride height, slowest first.
 
     Eigenvalues of the model's own right-hand side, linearised; a shock with
@@ -61,7 +68,7 @@ def modes(car):
     return modes_of_row(row)
 
 
-def modes_of_row(row):
+def modes_of_row(row: Row) -> tuple[Mode, ...]:
     """`Mode` tuple from a settled row, which is left as it was."""
     # Nothing depends on how far the car has gone; with that coordinate in, the rest
     # of a steady roll would be a double eigenvalue, which rounding splits.
@@ -73,19 +80,19 @@ def modes_of_row(row):
     return tuple(_mode(values[i], vectors[:4, i], row.p) for i in found)
 
 
-def state_matrix(row):
+def state_matrix(row: Row) -> np.ndarray:
     """The (10, 10) matrix of (x, z, pitch, axle height, slide) and their rates."""
     matrix = np.empty((10, 10))
     linearise(row.p.copy(), row.n, matrix)
     return matrix
 
 
-def _mode(value, vector, p):
+def _mode(value: complex, vector: np.ndarray, p: np.ndarray) -> Mode:
     size = float(abs(value))
     return Mode(size / (2.0 * math.pi), float(-value.real) / size, _shape(vector, p))
 
 
-def _shape(vector, p):
+def _shape(vector: np.ndarray, p: np.ndarray) -> dict[str, float]:
     z, pitch, axle, slide = vector
     front = z + pitch * (p[L.WHEELBASE] - p[L.SPRUNG_X])
     heights = {

@@ -1,5 +1,8 @@
 """From a `Car` to the kernel's rows of numbers, and from file paths to columns."""
 
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
@@ -9,15 +12,18 @@ from solver.hinges import hinges, value_of
 from solver.kernel import layout as L
 from solver.packing_drive import put_drive
 
+if TYPE_CHECKING:
+    from solver.car import Car, Damper, Point, Rear, Spring, Stop, WheelieBar
+
 
 class Row:
     """One lane as the kernel reads it: floats `p`, integers `n`, and where each path went."""
 
-    def __init__(self, p, n, columns):
+    def __init__(self, p: np.ndarray, n: np.ndarray, columns: dict) -> None:
         self.p, self.n, self.columns = p, n, columns
 
 
-def pack(car):
+def pack(car: Car) -> Row:
     """Lay a car's numbers out for the kernel.
 
     Parameters
@@ -47,12 +53,12 @@ def pack(car):
     return Row(np.concatenate([scalars, tail]), n, columns)
 
 
-def _put(scalars, columns, where, path, value):
+def _put(scalars: np.ndarray, columns: dict, where: int, path: str, value: float) -> None:
     scalars[where] = value
     columns[path] = (where, 1.0)
 
 
-def _put_body(scalars, columns, car):
+def _put_body(scalars: np.ndarray, columns: dict, car: Car) -> None:
     front, rear = car.front, car.rear
     plain = {
         "wheelbase": (L.WHEELBASE, car.wheelbase),
@@ -77,7 +83,7 @@ def _put_body(scalars, columns, car):
     scalars[L.ROLLOUT] = car.run.rollout
 
 
-def _put_linkage(scalars, n, columns, linkage):
+def _put_linkage(scalars: np.ndarray, n: np.ndarray, columns: dict, linkage: Any) -> None:
     n[L.KIND] = L.FOUR_LINK if isinstance(linkage, FourLink) else L.LADDER_BAR
     if n[L.KIND] == L.LADDER_BAR:
         _put_point(scalars, columns, L.LOWER_CX, "rear.linkage.chassis", linkage.chassis)
@@ -88,12 +94,12 @@ def _put_linkage(scalars, n, columns, linkage):
         _put_point(scalars, columns, at + 2, f"{path}.housing", link.housing)
 
 
-def _put_point(scalars, columns, at, path, point):
+def _put_point(scalars: np.ndarray, columns: dict, at: int, path: str, point: Point) -> None:
     scalars[at], scalars[at + 1] = point
     columns[f"{path}.x"], columns[f"{path}.z"] = (at, 1.0), (at + 1, 1.0)
 
 
-def _put_lines(scalars, n, columns, rear):
+def _put_lines(scalars: np.ndarray, n: np.ndarray, columns: dict, rear: Rear) -> list:
     """Spring lines, then lines for stops on mounts of their own; the lines' entries."""
     entries = [(f"rear.springs.{i}", entry) for i, entry in enumerate(rear.springs)]
     for name, slot in (("bump_stop", L.BUMP_LINE), ("droop_stop", L.DROOP_LINE)):
@@ -114,7 +120,7 @@ def _put_lines(scalars, n, columns, rear):
     return entries
 
 
-def _put_wheelie_bar(scalars, n, columns, bar):
+def _put_wheelie_bar(scalars: np.ndarray, n: np.ndarray, columns: dict, bar: WheelieBar | None) -> None:
     if bar is None:
         return
     n[L.WHEELIE_ON] = L.ON_CHASSIS if bar.mounted_on == "chassis" else L.ON_HOUSING
@@ -123,7 +129,7 @@ def _put_wheelie_bar(scalars, n, columns, bar):
         _put(scalars, columns, where, f"wheelie_bar.{name}", getattr(bar, name))
 
 
-def _put_stops(scalars, columns, car):
+def _put_stops(scalars: np.ndarray, columns: dict, car: Car) -> None:
     for path, stop, clearance, damping in (
         ("front.bump_stop", car.front.bump_stop, L.FRONT_BUMP_CLEARANCE, L.FRONT_BUMP_DAMPING),
         ("front.droop_stop", car.front.droop_stop, L.FRONT_DROOP_CLEARANCE, L.FRONT_DROOP_DAMPING),
@@ -135,7 +141,7 @@ def _put_stops(scalars, columns, car):
             _put(scalars, columns, damping, f"{path}.damping", stop.damping)
 
 
-def _put_curves(adder, car, lines):
+def _put_curves(adder: Curves, car: Car, lines: list) -> None:
     front, rear = car.front, car.rear
     stops = (
         (L.FRONT_BUMP, "front.bump_stop", front.bump_stop),
@@ -156,10 +162,10 @@ def _put_curves(adder, car, lines):
 class Curves:
     """Lays curves down one after another and notes where each stands."""
 
-    def __init__(self, scalars, n, tail, columns):
+    def __init__(self, scalars: np.ndarray, n: np.ndarray, tail: list[float], columns: dict) -> None:
         self.scalars, self.n, self.tail, self.columns = scalars, n, tail, columns
 
-    def add(self, which, row, path=None, factor=1.0):
+    def add(self, which: int, row: list[float], path: str | None = None, factor: float = 1.0) -> None:
         """Lay down (value, slope, knot, change, ...), noting the slope's column under `path`."""
         leg = L.LEGS + 2 * which
         self.scalars[leg], self.scalars[leg + 1] = row[:2]
@@ -169,7 +175,7 @@ class Curves:
         if path:
             self.columns[path] = (leg + 1, factor)
 
-    def spring(self, which, path, spring):
+    def spring(self, which: int, path: str, spring: Spring | None) -> None:
         if spring is None:
             self.add(which, [0.0, 0.0])
         elif spring.rate is not None:
@@ -181,7 +187,7 @@ class Curves:
             row[0] -= value_of(row, 0.0)
             self.add(which, row)
 
-    def damper(self, which, path, damper):
+    def damper(self, which: int, path: str, damper: Damper | None) -> None:
         if damper is None:
             self.add(which, [0.0, 0.0])
         elif damper.rate is not None:
@@ -190,11 +196,10 @@ class Curves:
         else:
             self.add(which, hinges(damper_table(damper), damper.motion_ratio))
 
-    def stop(self, which, path, stop):
+    def stop(self, which: int, path: str, stop: Stop | None) -> None:
         if stop is None:
             self.add(which, [0.0, 0.0])
         elif stop.rate is not None:
             self.add(which, [0.0, stop.rate], f"{path}.rate")
         else:
             self.add(which, hinges(stop.table))
-

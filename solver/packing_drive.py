@@ -1,17 +1,26 @@
 """The drive laid out for the kernel: tyre grip, engine, coupling, gears."""
 
+from __future__ import annotations
+
 import math
+from typing import TYPE_CHECKING
 
 from solver.car import Clutch, Hit, WheelTorque
 from solver.hinges import hinges
 from solver.kernel import layout as L
+
+if TYPE_CHECKING:
+    import numpy as np
+
+    from solver.car import Car, Powertrain, Rear, Table
+    from solver.packing import Curves
 
 # Of a large soft slick, m: common practice, no source. `CARFILE.md` says so.
 RELAXATION = 0.3
 FLAT = [0.0, 0.0]
 
 
-def put_drive(scalars, n, curves, car):
+def put_drive(scalars: np.ndarray, n: np.ndarray, curves: Curves, car: Car) -> Table:
     """Write the drive's numbers and curves; returns the table that runs over time."""
     _put_tyre(scalars, curves.columns, car.rear)
     drive = car.hit
@@ -36,7 +45,7 @@ def put_drive(scalars, n, curves, car):
     return coupling.throttle
 
 
-def _put_tyre(scalars, columns, rear):
+def _put_tyre(scalars: np.ndarray, columns: dict, rear: Rear) -> None:
     tyre = rear.tyre
     scalars[L.RELAXATION] = tyre.relaxation_length or RELAXATION
     for where, path, value in (
@@ -50,7 +59,7 @@ def _put_tyre(scalars, columns, rear):
             columns[path] = (where, 1.0)
 
 
-def _put_engine(scalars, n, curves, drive):
+def _put_engine(scalars: np.ndarray, n: np.ndarray, curves: Curves, drive: Powertrain) -> None:
     engine, gears = drive.engine, drive.gears
     scalars[L.ENGINE_INERTIA], scalars[L.ENGINE_SPEED] = engine.inertia, engine.launch_speed
     curves.add(L.ENGINE, hinges(engine.curve))

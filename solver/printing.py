@@ -1,6 +1,17 @@
 """Short tables a person can read, for the command line."""
 
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
+from typing import TYPE_CHECKING
+
 from solver.figures import FIGURES
+
+if TYPE_CHECKING:
+    from solver.launching import Launch
+    from solver.modes import Mode
+    from solver.statics import Statics
+    from solver.sweeping import Sweep
 
 UNITS = {
     "force": "N",
@@ -21,7 +32,7 @@ CAUTION = (
 )
 
 
-def statics_table(statics):
+def statics_table(statics: Statics) -> str:
     """Ride height in lines of label and value."""
     centre = statics.instant_centre
     where = "parallel bars" if centre.x is None else f"{centre.x:.4f} m ahead, {centre.z:.4f} m up"
@@ -42,16 +53,15 @@ def statics_table(statics):
     return _aligned(rows)
 
 
-def modes_table(modes):
+def modes_table(modes: Sequence[Mode]) -> str:
     """Frequencies and damping ratios, slowest first."""
     rows = [
-        (f"{mode.frequency_hz:.3f} Hz", f"damping ratio {mode.damping_ratio:.3f}, mostly {_most(mode)}")
-        for mode in modes
+        (f"{mode.frequency_hz:.3f} Hz", f"damping ratio {mode.damping_ratio:.3f}, mostly {_most(mode)}") for mode in modes
     ]
     return _aligned(rows)
 
 
-def launch_table(launch):
+def launch_table(launch: Launch) -> str:
     """Ride height, modes, what happened when, and every figure that there is."""
     figures = []
     for name, value in launch.figures.items():
@@ -77,7 +87,7 @@ SWEEP_COLUMNS = {
 }
 
 
-def sweep_table(changes, sweep):
+def sweep_table(changes: Mapping, sweep: Sweep) -> str:
     """One line a lane: what varies, then a few figures; or why it was refused."""
     names = [*changes, *SWEEP_COLUMNS.values()]
     lines = ["  ".join(names)]
@@ -93,11 +103,11 @@ def sweep_table(changes, sweep):
     return "\n".join(lines)
 
 
-def _most(mode):
+def _most(mode: Mode) -> str:
     name = max(mode.shape, key=lambda key: abs(mode.shape[key]))
     return name.replace("_", " ")
 
 
-def _aligned(rows):
+def _aligned(rows: list) -> str:
     width = max(len(label) for label, _ in rows)
     return "\n".join(f"{label:<{width}}  {value}" for label, value in rows)

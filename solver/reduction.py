@@ -1,10 +1,17 @@
 """From the kernel's accumulators to named figures: the same for one lane and for thousands."""
 
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
 import numpy as np
 
 from solver.car import Hit, has_engine
 from solver.kernel import layout as L
 from solver.rest_figures import plan_angles
+
+if TYPE_CHECKING:
+    from solver.car import Car
 
 # name: (output, greatest or least, factor)
 _PEAKS = {
@@ -77,7 +84,7 @@ _FACTORS = np.array([factor for *_, factor in _PEAKS.values()])
 _LIFT, _GRIP = _NAMES.index("front_lift_height"), _NAMES.index("peak_grip_needed")
 
 
-def reduce(car, p, kept, log, counts):
+def reduce(car: Car, p: np.ndarray, kept: np.ndarray, log: np.ndarray, counts: np.ndarray) -> dict[str, np.ndarray]:
     """Figures of lanes that share a car's structure.
 
     Parameters
@@ -108,7 +115,7 @@ def reduce(car, p, kept, log, counts):
     return figures
 
 
-def first_times(log, counts):
+def first_times(log: np.ndarray, counts: np.ndarray) -> np.ndarray:
     """Time of the first event of every kind, (lanes, kinds); NaN where there was none."""
     first = np.full((len(log), 2 * L.N_GATES), np.nan)
     for slot in range(min(int(counts.max(initial=0)), log.shape[1]) - 1, -1, -1):
@@ -117,7 +124,7 @@ def first_times(log, counts):
     return first
 
 
-def _peaks(car, p, kept):
+def _peaks(car: Car, p: np.ndarray, kept: np.ndarray) -> dict[str, np.ndarray]:
     """Greatest and least values with their times; a time of nothing is nothing."""
     values, times = kept[:, _PLACES] * _FACTORS, kept[:, _PLACES + 1]
     for names, has in _NEEDS:
@@ -138,7 +145,7 @@ def _peaks(car, p, kept):
     return figures
 
 
-def _first_peak(figures, kept):
+def _first_peak(figures: dict, kept: np.ndarray) -> None:
     fell = kept[:, L.A_DIP_TIME] >= 0.0
     for name, at, time in (
         ("first_peak_rear_load", L.A_FIRST_PEAK, L.A_FIRST_PEAK_TIME),
@@ -148,7 +155,7 @@ def _first_peak(figures, kept):
         figures[f"{name}_time"] = np.where(fell, kept[:, time], np.nan)
 
 
-def _travel_left(figures, car, p, kept):
+def _travel_left(figures: dict, car: Car, p: np.ndarray, kept: np.ndarray) -> None:
     """Clearance less the greatest travel; below nil is how far into the stop it went."""
     left = {
         "rear_bump": (car.rear.bump_stop, -kept[:, 4 * L.O_REAR_BUMP_PAST]),

@@ -1,13 +1,20 @@
 """Ride height by name, for one lane or thousands."""
 
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
 import numpy as np
 
 from solver.car import FourLink
 from solver.geometry import meeting, parallel
 from solver.kernel import layout as L
 
+if TYPE_CHECKING:
+    from solver.car import Car
 
-def plan_angles(car):
+
+def plan_angles(car: Car) -> tuple[float, float]:
     """Plan angles of the lower and the upper bars, rad; nil for a ladder bar."""
     linkage = car.rear.linkage
     if isinstance(linkage, FourLink):
@@ -15,7 +22,7 @@ def plan_angles(car):
     return 0.0, 0.0
 
 
-def rest_figures(car, p):
+def rest_figures(car: Car, p: np.ndarray) -> dict[str, np.ndarray]:
     """Ride height of settled lanes by the names of `STATIC_FIGURES`, arrays (lanes,)."""
     lower = (p[:, L.LCX], p[:, L.LCZ]), (p[:, L.LHX], p[:, L.LHZ])
     upper = (p[:, L.UCX], p[:, L.UCZ]), (p[:, L.UHX], p[:, L.UHZ])

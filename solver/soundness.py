@@ -1,15 +1,22 @@
 """What must hold between the numbers of a car before it can be solved."""
 
+from __future__ import annotations
+
 import math
+from collections.abc import Iterator
+from typing import TYPE_CHECKING, Any
 
 from solver.car import FourLink, Hit
 from solver.faults import Fault
+
+if TYPE_CHECKING:
+    from solver.car import Car
 
 GRAVITY = 9.80665
 SAME_PIN = 1e-3
 
 
-def faults_of(car):
+def faults_of(car: Car) -> list[Fault]:
     """Every fault in how a car's numbers stand together.
 
     Parameters
@@ -32,7 +39,7 @@ def faults_of(car):
     return faults
 
 
-def _weights(car):
+def _weights(car: Car) -> Iterator[Fault]:
     front, rear = car.front.unsprung_mass, car.rear.unsprung_mass
     x, z = car.cg
     sprung = car.mass - front - rear
@@ -58,7 +65,7 @@ def _weights(car):
         yield Fault("rear.unsprung_mass", rear, "must weigh less than the rear tyres carry")
 
 
-def _mounts(car):
+def _mounts(car: Car) -> Iterator[Fault]:
     if all(entry.spring is None for entry in car.rear.springs):
         yield Fault("rear.springs", None, "hold no spring: one entry needs a spring")
     for i, entry in enumerate(car.rear.springs):
@@ -72,7 +79,7 @@ def _mounts(car):
             yield Fault(where, stop.chassis, "must be at least 20 mm from the housing mount")
 
 
-def _drive(car):
+def _drive(car: Car) -> Iterator[Fault]:
     if isinstance(car.hit, Hit):
         return
     tyre = car.rear.tyre
@@ -89,7 +96,7 @@ def _drive(car):
         yield Fault("rear.tyre.sliding_grip", tyre.sliding_grip, most)
 
 
-def _four_link(linkage):
+def _four_link(linkage: Any) -> Iterator[Fault]:
     lower, upper, at = linkage.lower, linkage.upper, "rear.linkage"
     for name, link in (("lower", lower), ("upper", upper)):
         if math.dist(link.chassis, link.housing) < 0.05:
@@ -110,9 +117,7 @@ def _four_link(linkage):
             )
 
 
-def _ladder_bar(linkage, car):
+def _ladder_bar(linkage: Any, car: Car) -> Iterator[Fault]:
     axle = (0.0, car.rear.tyre_radius)
     if linkage.chassis[0] <= 0.1 or math.dist(linkage.chassis, axle) < 0.1:
-        yield Fault(
-            "rear.linkage.chassis", linkage.chassis, "must be at least 100 mm ahead of the axle"
-        )
+        yield Fault("rear.linkage.chassis", linkage.chassis, "must be at least 100 mm ahead of the axle")

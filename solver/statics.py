@@ -1,7 +1,10 @@
 """What the car carries at ride height, and what its links say about the hit."""
 
+from __future__ import annotations
+
 import math
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 from solver.car import FourLink
 from solver.carfile import ensure_sound
@@ -10,6 +13,12 @@ from solver.kernel import layout as L
 from solver.kernel.lanes import settle_one
 from solver.packing import pack
 from solver.rest_figures import plan_angles, rest_figures
+
+if TYPE_CHECKING:
+    import numpy as np
+
+    from solver.car import Car
+    from solver.packing import Row
 
 
 @dataclass(frozen=True)
@@ -78,7 +87,7 @@ class Statics:
     lower: Bar
 
 
-def statics(car):
+def statics(car: Car) -> Statics:
     """Solve ride height: preloads, link loads, instant centre, anti-squat.
 
     Anti-squat ``100 (z_ic/x_ic)/(h/L)``; of the sprung mass
@@ -106,7 +115,7 @@ def statics(car):
     return statics_of_row(car, row)
 
 
-def statics_of_row(car, row):
+def statics_of_row(car: Car, row: Row) -> Statics:
     """`Statics` from a settled row of the kernel."""
     p = row.p
     faults = rest_faults(p)
@@ -147,7 +156,7 @@ def statics_of_row(car, row):
     )
 
 
-def rest_faults(p):
+def rest_faults(p: np.ndarray) -> list[Fault]:
     """Why a settled row cannot stand at ride height; empty when it can."""
     spring, lower, upper = (float(p[i]) for i in (L.REAR_SPRING_STATIC, L.LOWER_STATIC, L.UPPER_STATIC))
     most = 50.0 * float(p[L.REAR_STATIC])
@@ -156,8 +165,7 @@ def rest_faults(p):
             Fault(
                 "rear.linkage",
                 None,
-                "the bars and springs cannot hold the axle at ride height: their lines nearly "
-                "meet in one point",
+                "the bars and springs cannot hold the axle at ride height: their lines nearly meet in one point",
             )
         ]
     if spring <= 0.0:
@@ -173,17 +181,15 @@ def rest_faults(p):
     return []
 
 
-def _instant_centre(rest):
+def _instant_centre(rest: dict) -> InstantCentre:
     """`InstantCentre` from ride height's figures; refuses one straight above the rear patch."""
     x, z, slope = (rest[f"instant_centre_{part}"] for part in ("x", "z", "slope"))
     if not abs(slope) < 1e9:
-        raise CarError(
-            [Fault("rear.linkage", None, "the bars' lines meet straight above the rear tyres")]
-        )
+        raise CarError([Fault("rear.linkage", None, "the bars' lines meet straight above the rear tyres")])
     return InstantCentre(None, None, slope) if math.isnan(x) else InstantCentre(x, z, slope)
 
 
-def _bar(p, at, length, force, plan):
+def _bar(p: np.ndarray, at: int, length: int, force: int, plan: float) -> Bar:
     rise, run = p[at + 1] - p[at + 3], p[at] - p[at + 2]
     true = math.cos(plan)
     return Bar(float(p[length] / true), math.atan2(float(rise), float(run)), float(p[force] / true), plan)

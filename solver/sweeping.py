@@ -1,6 +1,10 @@
 """A study: thousands of cars that differ in a few numbers, figures only."""
 
+from __future__ import annotations
+
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
@@ -12,6 +16,10 @@ from solver.launching import LONGEST_STEP, REASONS
 from solver.packing import pack
 from solver.reduction import reduce
 from solver.rest_figures import plan_angles, rest_figures
+
+if TYPE_CHECKING:
+    from solver.car import Car
+    from solver.packing import Row
 
 CHUNK = 500
 
@@ -45,10 +53,10 @@ class Sweep:
     times: np.ndarray
     complete: bool = field(default=True)
 
-    def __len__(self):
+    def __len__(self) -> int:
         return len(self.codes)
 
-    def reason(self, lane):
+    def reason(self, lane: int) -> str | None:
         """Why a lane has no figures, in words; None when it was solved."""
         code = int(self.codes[lane])
         if code == L.SOLVED:
@@ -56,18 +64,26 @@ class Sweep:
         words = {**REASONS, **REFUSALS}[code]
         return words if code in REFUSALS else f"at {self.times[lane]:.4f} s: {words}"
 
-    def to_dict(self):
+    def to_dict(self) -> dict:
         """JSON-ready: one list a figure, null where there is nothing to tell."""
         return {
             "lanes": len(self),
             "complete": self.complete,
             "figures": {name: _plain(values) for name, values in self.figures.items()},
             "statics": {name: _plain(values) for name, values in self.statics.items()},
-            "refused": {str(i): self.reason(i) for i in np.flatnonzero(self.codes)},
+            "refused": {str(i): self.reason(int(i)) for i in np.flatnonzero(self.codes)},
         }
 
 
-def sweep(car, changes, *, longest_step=LONGEST_STEP, chunk=CHUNK, progress=None, cancelled=None):
+def sweep(
+    car: Car,
+    changes: Mapping,
+    *,
+    longest_step: float = LONGEST_STEP,
+    chunk: int = CHUNK,
+    progress: Any = None,
+    cancelled: Any = None,
+) -> Sweep:
     """Solve one car in many variations.
 
     Each lane gives the very figures `solver.launch` gives for that car.
@@ -116,20 +132,30 @@ def sweep(car, changes, *, longest_step=LONGEST_STEP, chunk=CHUNK, progress=None
     return _joined(parts, lanes, done)
 
 
-def sweep_cars(cars, *, longest_step=LONGEST_STEP, chunk=CHUNK, progress=None, cancelled=None):
+def sweep_cars(
+    cars: Sequence[Car],
+    *,
+    longest_step: float = LONGEST_STEP,
+    chunk: int = CHUNK,
+    progress: Any = None,
+    cancelled: Any = None,
+) -> Sweep:
     """Solve many cars that may differ in anything: shock clicks, tables, stops.
 
     Cars of one make-up (the same parts, the same number of points in each table) are
-    solved together. Parameters beyond `cars`, the result and the order of lanes are
-    those of `sweep`; each car costs some 20 microseconds of packing more.
+    solved together. Each car costs some 20 microseconds of packing more than a lane
+    of `sweep`.
 
     Parameters
     ----------
     cars : sequence of Car
+    longest_step, chunk, progress, cancelled
+        As for `sweep`.
 
     Returns
     -------
     Sweep
+        Lanes in the order of `cars`.
 
     Raises
     ------
@@ -162,7 +188,7 @@ def sweep_cars(cars, *, longest_step=LONGEST_STEP, chunk=CHUNK, progress=None, c
     )
 
 
-def _sound(i, car):
+def _sound(i: int, car: Car) -> Car:
     try:
         ensure_sound(car)
     except CarError as error:
@@ -171,18 +197,18 @@ def _sound(i, car):
     return car
 
 
-def _options(car):
+def _options(car: Car) -> tuple:
     """What `reduce` reads from the car itself rather than from its row."""
     return bool(car.rear.tyre.grip), plan_angles(car)
 
 
-def sweepable(car):
+def sweepable(car: Car) -> list[str]:
     """The car-file paths that `sweep` can vary on this car, sorted."""
     ensure_sound(car)
     return sorted(pack(car).columns)
 
 
-def _checked(car, row, changes):
+def _checked(car: Car, row: Row, changes: Mapping) -> dict[str, np.ndarray]:
     faults, arrays, data = [], {}, car_to_dict(car)
     for path, values in changes.items():
         values = np.asarray(values, dtype=float)
@@ -202,7 +228,7 @@ def _checked(car, row, changes):
     return arrays
 
 
-def _range_faults(data, path, values):
+def _range_faults(data: Any, path: str, values: np.ndarray) -> list[Fault]:
     """The car file's own range, asked at the extremes of what is wanted."""
     if path == "hit.scale":
         good = np.isfinite(values) & (np.abs(values) <= 100.0)
@@ -219,7 +245,7 @@ def _range_faults(data, path, values):
     return []
 
 
-def changed(data, path, value):
+def changed(data: Any, path: str, value: Any) -> Any:
     """A copy of a car file's dict with one dotted path changed; ``.x`` and ``.z`` reach into points."""
     head, _, rest = path.partition(".")
     if isinstance(data, dict):
@@ -229,7 +255,7 @@ def changed(data, path, value):
     return [*data[:at], part, *data[at + 1 :]]
 
 
-def _solve(car, p, n, longest_step):
+def _solve(car: Car, p: np.ndarray, n: np.ndarray, longest_step: float) -> tuple:
     lanes = len(p)
     kept = np.full((lanes, L.ACCUMULATORS), np.nan)
     log = np.zeros((lanes, L.EVENTS, 2))
@@ -245,19 +271,17 @@ def _solve(car, p, n, longest_step):
     return figures, statics, codes, times
 
 
-def _joined(parts, lanes, done):
+def _joined(parts: list, lanes: int, done: int) -> Sweep:
     missing = lanes - done
 
-    def join(pieces):
+    def join(pieces: Any) -> Any:
         return np.concatenate([*pieces, np.full(missing, np.nan)])
 
     figures = {name: join([part[0][name] for part in parts]) for name in parts[0][0]} if parts else {}
     statics = {name: join([part[1][name] for part in parts]) for name in parts[0][1]} if parts else {}
-    codes = np.concatenate(
-        [*(part[2] for part in parts), np.full(missing, L.NOT_RUN, dtype=np.int64)]
-    )
+    codes = np.concatenate([*(part[2] for part in parts), np.full(missing, L.NOT_RUN, dtype=np.int64)])
     return Sweep(figures, statics, codes, join([part[3] for part in parts]), missing == 0)
 
 
-def _plain(values):
+def _plain(values: np.ndarray) -> list:
     return [value if np.isfinite(value) else None for value in values.tolist()]

@@ -1,6 +1,9 @@
 """Histories and dated events of one lane, from what the kernel recorded."""
 
+from __future__ import annotations
+
 from dataclasses import dataclass
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
@@ -8,6 +11,9 @@ from solver.car import Hit, has_engine
 from solver.geometry import meeting, parallel, turned
 from solver.kernel import layout as L
 from solver.rest_figures import plan_angles
+
+if TYPE_CHECKING:
+    from solver.car import Car
 
 EVENT_WORDS = {
     (L.GATE_FRONT_TYRE, 0): ("front_tyres_leave", "Front tyres leave the ground"),
@@ -77,14 +83,14 @@ class Event:
     words: str
 
 
-def event_list(log, count):
+def event_list(log: np.ndarray, count: int) -> tuple[Event, ...]:
     """`Event` tuple from a lane's log, in time order."""
     rows = log[: min(count, L.EVENTS)]
     found = [Event(float(t), *EVENT_WORDS[divmod(int(kind), 2)]) for kind, t in rows]
     return tuple(sorted(found, key=lambda event: event.time))
 
 
-def histories_of(car, p, states, outputs):
+def histories_of(car: Car, p: np.ndarray, states: np.ndarray, outputs: np.ndarray) -> dict[str, np.ndarray]:
     """Named histories of one lane.
 
     Parameters
@@ -117,16 +123,16 @@ def histories_of(car, p, states, outputs):
     return {name: np.ascontiguousarray(values) for name, values in named.items()}
 
 
-def _moving_centre(car, p, states):
+def _moving_centre(car: Car, p: np.ndarray, states: np.ndarray) -> dict[str, np.ndarray]:
     """Instant centre and the trade's anti-squat at each instant, and the distance run."""
     x, z, pitch = states[:, L.X] + p[L.SPRUNG_X], states[:, L.Z] + p[L.SPRUNG_Z], states[:, L.PITCH]
     axle_x, axle_z = states[:, L.HX], states[:, L.HZ] + p[L.REAR_RADIUS]
 
-    def on_chassis(px, pz):
+    def on_chassis(px: Any, pz: Any) -> tuple:
         dx, dz = turned(pitch, (px - p[L.SPRUNG_X], pz - p[L.SPRUNG_Z]))
         return x + dx, z + dz
 
-    def on_housing(px, pz):
+    def on_housing(px: Any, pz: Any) -> tuple:
         dx, dz = turned(states[:, L.HOUSING], (px, pz - p[L.REAR_RADIUS]))
         return axle_x + dx, axle_z + dz
 
@@ -138,9 +144,7 @@ def _moving_centre(car, p, states):
     gone = parallel(a, b, c, d, w)
     w = np.where(gone, np.nan, w)
     front_x, front_z = on_chassis(p[L.WHEELBASE], p[L.FRONT_RADIUS] + states[:, L.SLIDE])
-    height = (
-        p[L.SPRUNG_MASS] * z + p[L.REAR_MASS] * axle_z + p[L.FRONT_MASS] * front_z
-    ) / car.mass
+    height = (p[L.SPRUNG_MASS] * z + p[L.REAR_MASS] * axle_z + p[L.FRONT_MASS] * front_z) / car.mass
     with np.errstate(divide="ignore", invalid="ignore"):
         return {
             "instant_centre_x": meet_x / w,

@@ -1,5 +1,6 @@
 """Compile or load the kernel before anyone waits for it."""
 
+from __future__ import annotations
 
 EXAMPLE = {
     "format": "launch-ledger/car",
@@ -45,7 +46,7 @@ EXAMPLE = {
 }
 
 
-def warm():
+def warm() -> None:
     """Compile the kernel, or load it from disk, by solving a short run.
 
     Takes seconds once per machine and kernel, then a fraction of a second per

@@ -4,12 +4,19 @@
 goes on with the end slopes, costs two multiplications a knot.
 """
 
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
 from solver.kernel import layout as L
 from solver.kernel.jit import inlined
 
+if TYPE_CHECKING:
+    import numpy as np
+
 
 @inlined
-def curve(p, n, which, v):
+def curve(p: np.ndarray, n: np.ndarray, which: int, v: float) -> float:
     """Value of curve `which` at `v`."""
     value = p[L.LEGS + 2 * which] + p[L.LEGS + 2 * which + 1] * v
     count = n[L.CURVES + 2 * which + 1]
@@ -23,7 +30,7 @@ def curve(p, n, which, v):
 
 
 @inlined
-def slope_at_rest(p, n, which):
+def slope_at_rest(p: np.ndarray, n: np.ndarray, which: int) -> float:
     """Slope at zero; the mean of the two sides when a knot stands there."""
     at = n[L.CURVES + 2 * which]
     slope = p[L.LEGS + 2 * which + 1]
@@ -37,7 +44,7 @@ def slope_at_rest(p, n, which):
 
 
 @inlined
-def steepest(p, n, which):
+def steepest(p: np.ndarray, n: np.ndarray, which: int) -> float:
     """The greatest slope anywhere on the curve."""
     at = n[L.CURVES + 2 * which]
     slope = p[L.LEGS + 2 * which + 1]

@@ -6,21 +6,28 @@ lags behind the wheels by its relaxation length, ``s k' + |V| k = w R - V``
 also makes it a plain spring at standstill.
 """
 
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
 from solver.kernel import layout as L
 from solver.kernel.curves import curve
 from solver.kernel.jit import inlined
 from solver.kernel.tyre import fiala
 
+if TYPE_CHECKING:
+    import numpy as np
+
 
 @inlined
-def start_up(p, y):
+def start_up(p: np.ndarray, y: np.ndarray) -> None:
     """State at the start: everything at rest, the engine at its launch speed."""
     y[:] = 0.0
     y[L.ENGINE_RATE] = p[L.ENGINE_SPEED]
 
 
 @inlined
-def thrust(p, n, drive, y, load, dy, out):
+def thrust(p: np.ndarray, n: np.ndarray, drive: float, y: np.ndarray, load: float, dy: np.ndarray, out: np.ndarray) -> tuple:
     """Forward force on the axle and torque reaction on the housing (nose up positive).
 
     In drive mode 2 also fills the rates of spin, slip and engine speed.
@@ -46,7 +53,7 @@ def thrust(p, n, drive, y, load, dy, out):
 
 
 @inlined
-def wheel_torque(p, n, drive, y, dy):
+def wheel_torque(p: np.ndarray, n: np.ndarray, drive: float, y: np.ndarray, dy: np.ndarray) -> float:
     """Torque at both rear wheels, N m; fills the engine's rate."""
     if n[L.DRIVE] == L.TORQUE_DRIVE:
         dy[L.ENGINE_RATE] = 0.0
@@ -68,7 +75,7 @@ def wheel_torque(p, n, drive, y, dy):
 
 
 @inlined
-def past_shift(p, n, y):
+def past_shift(p: np.ndarray, n: np.ndarray, y: np.ndarray) -> float:
     """How far the gearbox's input is past the shift speed, rad/s; negative in the last gear."""
     if y[L.GEAR] >= n[L.N_GEARS] - 1:
         return -1.0
@@ -76,7 +83,7 @@ def past_shift(p, n, y):
 
 
 @inlined
-def shift(p, n, y):
+def shift(p: np.ndarray, n: np.ndarray, y: np.ndarray) -> bool:
     """Take the next gear when its time has come.
 
     At once; the engine then has to be pulled down through the coupling.

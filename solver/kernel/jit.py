@@ -5,12 +5,16 @@ calls. The cache folder is therefore named after the contents of the whole
 kernel: change any line and nothing stale is loaded.
 """
 
+from __future__ import annotations
+
 import hashlib
 import os
 import shutil
 import tempfile
 import time
+from collections.abc import Callable
 from pathlib import Path
+from typing import Any
 
 import numba
 from numba import prange
@@ -18,14 +22,14 @@ from numba import prange
 __all__ = ["jit", "parallel", "prange"]
 
 
-def _stamp():
+def _stamp() -> str:
     digest = hashlib.sha256(numba.__version__.encode())
     for source in sorted(Path(__file__).parent.glob("*.py")):
         digest.update(source.read_bytes())
     return digest.hexdigest()[:12]
 
 
-def _cache_folder():
+def _cache_folder() -> str | None:
     """The first place that can be written: named by the user, beside the code, home, temp."""
     named = os.environ.get("NUMBA_CACHE_DIR")
     uid = os.getuid() if hasattr(os, "getuid") else 0
@@ -46,7 +50,7 @@ def _cache_folder():
     return None
 
 
-def _forget_old(folder, days=14):
+def _forget_old(folder: Path, days: float = 14) -> None:
     """Remove what earlier kernels left beside this one."""
     for other in folder.parent.glob("kernel-*"):
         if other != folder and time.time() - other.stat().st_mtime > days * 86400:
@@ -58,12 +62,12 @@ if CACHE_FOLDER:
     _forget_old(Path(CACHE_FOLDER))
 
 
-def _options():
+def _options() -> dict:
     # Division by zero gives inf, as in numpy: the monitors see it, no lane raises.
     return {"error_model": "numpy", "cache": CACHE_FOLDER is not None, "nogil": True}
 
 
-def _compiled(function, **more):
+def _compiled(function: Callable, **more: Any) -> Any:
     outside = numba.config.CACHE_DIR
     numba.config.CACHE_DIR = CACHE_FOLDER or outside
     try:
@@ -72,12 +76,12 @@ def _compiled(function, **more):
         numba.config.CACHE_DIR = outside
 
 
-def jit(function):
+def jit(function: Callable) -> Any:
     """Compile at first call, keep on disk; `function.py_func` stays plain Python."""
     return _compiled(function)
 
 
-def inlined(function):
+def inlined(function: Callable) -> Any:
     """The same for what allocates nothing, laid into its caller.
 
     Without numba's reference counting: it would touch shared counters for every
@@ -86,11 +90,11 @@ def inlined(function):
     return _compiled(function, forceinline=True, _nrt=False)
 
 
-def lean(function):
+def lean(function: Callable) -> Any:
     """The same, but called rather than laid in."""
     return _compiled(function, _nrt=False)
 
 
-def parallel(function):
+def parallel(function: Callable) -> Any:
     """The same, with `prange` over threads."""
     return _compiled(function, parallel=True)

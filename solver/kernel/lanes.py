@@ -1,5 +1,7 @@
 """Many lanes: settle and march each, over threads. A lane never sees its neighbours."""
 
+from __future__ import annotations
+
 import numpy as np
 
 from solver.kernel import layout as L
@@ -12,13 +14,22 @@ HALVINGS = 4
 
 
 @jit
-def settle_one(p, n):
+def settle_one(p: np.ndarray, n: np.ndarray) -> None:
     """Work out ride height of one lane, in place."""
     settle(p, n)
 
 
 @jit
-def run_one(p, n, longest, kept, log, record, states, outputs):
+def run_one(
+    p: np.ndarray,
+    n: np.ndarray,
+    longest: float,
+    kept: np.ndarray,
+    log: np.ndarray,
+    record: bool,
+    states: np.ndarray,
+    outputs: np.ndarray,
+) -> tuple:
     """March one settled lane; where the accuracy is not held, again in shorter steps."""
     work = np.zeros((L.WORK_ROWS, L.WORK_WIDTH))
     code, time, count = march(p, n, longest, kept, log, record, states, outputs, work)
@@ -32,14 +43,21 @@ def run_one(p, n, longest, kept, log, record, states, outputs):
 
 
 @parallel
-def run_many(p, n, longest, kept, log, codes, times, counts):
+def run_many(
+    p: np.ndarray,
+    n: np.ndarray,
+    longest: float,
+    kept: np.ndarray,
+    log: np.ndarray,
+    codes: np.ndarray,
+    times: np.ndarray,
+    counts: np.ndarray,
+) -> None:
     """Settle and march every row of `p` (lanes, width) that can be, figures only."""
     for lane in prange(p.shape[0]):
         nothing = np.zeros((1, 1))
         settle(p[lane], n)
         code, time, count = unsound(p[lane], n), 0.0, 0
         if code == L.SOLVED:
-            code, time, count, _ = run_one(
-                p[lane], n, longest, kept[lane], log[lane], False, nothing, nothing
-            )
+            code, time, count, _ = run_one(p[lane], n, longest, kept[lane], log[lane], False, nothing, nothing)
         codes[lane], times[lane], counts[lane] = code, time, count

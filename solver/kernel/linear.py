@@ -1,5 +1,7 @@
 """The model linearised at ride height, by differences of its own right-hand side."""
 
+from __future__ import annotations
+
 import numpy as np
 
 from solver.kernel import layout as L
@@ -14,7 +16,7 @@ SMALL = 2e-5
 
 
 @jit
-def straighten(p, n):
+def straighten(p: np.ndarray, n: np.ndarray) -> None:
     """Replace every curve by its tangent at rest, in place (mean of both sides at a knot)."""
     for which in range(L.N_CURVES):
         at = n[L.CURVES + 2 * which]
@@ -25,7 +27,7 @@ def straighten(p, n):
 
 
 @jit
-def both_links(p, y):
+def both_links(p: np.ndarray, y: np.ndarray) -> tuple:
     co, si = np.cos(y[L.PITCH]), np.sin(y[L.PITCH])
     ch, sh = np.cos(y[L.HOUSING]), np.sin(y[L.HOUSING])
     lower = link(p, y, co, si, ch, sh, L.LCX, L.LCZ, L.LHX, L.LHZ, L.LOWER_LENGTH)
@@ -34,7 +36,7 @@ def both_links(p, y):
 
 
 @jit
-def close(p, y):
+def close(p: np.ndarray, y: np.ndarray) -> None:
     """Place the housing so that both links keep their length, in position and speed."""
     for _ in range(6):
         (lx, lz, la, lb, _, drift), (ux, uz, ua, ub, _, upper_drift) = both_links(p, y)
@@ -51,7 +53,7 @@ def close(p, y):
 
 
 @jit
-def linearise(p, n, matrix):
+def linearise(p: np.ndarray, n: np.ndarray, matrix: np.ndarray) -> None:
     """Fill the (10, 10) state matrix of a settled lane; straightens `p`.
 
     Five-point differences: exact to 1e-9 of each entry.

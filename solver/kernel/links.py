@@ -1,21 +1,25 @@
 """The two links: where they point, what they ask of the accelerations, what they carry."""
 
+from __future__ import annotations
+
 import math
+from typing import TYPE_CHECKING
 
 from solver.kernel import layout as L
 from solver.kernel.jit import inlined
 
+if TYPE_CHECKING:
+    import numpy as np
+
 FEEDBACK = 50.0  # rad/s, both roots of the drift's decay
 
 # Coefficients of the sine's and the cosine's series.
-S3, S5, S7, S9, S11, S13, S15, S17 = (
-    (-1.0) ** k / math.factorial(2 * k + 1) for k in range(1, 9)
-)
+S3, S5, S7, S9, S11, S13, S15, S17 = ((-1.0) ** k / math.factorial(2 * k + 1) for k in range(1, 9))
 C2, C4, C6, C8, C10, C12, C14, C16, C18 = ((-1.0) ** k / math.factorial(2 * k) for k in range(1, 10))
 
 
 @inlined
-def turn(angle):
+def turn(angle: float) -> tuple:
     """Cosine and sine, by their series to the last bit below 1.3 rad.
 
     A car beyond that has turned over and its run ends; the library's own
@@ -32,7 +36,19 @@ def turn(angle):
 
 
 @inlined
-def link(p, y, co, si, ch, sh, chassis_x, chassis_z, housing_x, housing_z, length):
+def link(
+    p: np.ndarray,
+    y: np.ndarray,
+    co: float,
+    si: float,
+    ch: float,
+    sh: float,
+    chassis_x: int,
+    chassis_z: int,
+    housing_x: int,
+    housing_z: int,
+    length: int,
+) -> tuple:
     """One link: direction, moment arms, and the acceleration its motion asks for."""
     ax = co * (p[chassis_x] - p[L.SPRUNG_X]) - si * (p[chassis_z] - p[L.SPRUNG_Z])
     az = si * (p[chassis_x] - p[L.SPRUNG_X]) + co * (p[chassis_z] - p[L.SPRUNG_Z])
@@ -59,7 +75,7 @@ def link(p, y, co, si, ch, sh, chassis_x, chassis_z, housing_x, housing_z, lengt
 
 
 @inlined
-def reactions(p, lower, upper, slide, free, housing_free):
+def reactions(p: np.ndarray, lower: tuple, upper: tuple, slide: tuple, free: tuple, housing_free: tuple) -> tuple:
     """Link tensions and the slide's side load from the motion without them.
 
     ``S (lower, upper, side) = free motion - wanted``: a symmetric system of three, the

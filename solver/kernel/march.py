@@ -7,13 +7,19 @@ estimate: the last slope of a step against the first of the next (their differen
 times h/6 is the method's third-order companion).
 """
 
+from __future__ import annotations
+
 import math
+from typing import TYPE_CHECKING
 
 from solver.kernel import layout as L
 from solver.kernel.drivetrain import shift, start_up
 from solver.kernel.jit import inlined, lean
 from solver.kernel.physics import accelerate
 from solver.kernel.watch import begin, events, first_peak, kinked, peaks, turns, windows
+
+if TYPE_CHECKING:
+    import numpy as np
 
 STABLE = 1.5  # share of 1/|eigenvalue| that a step may take
 SPLIT = 16
@@ -24,7 +30,7 @@ LEAST_LEVERAGE = 1e-4
 
 
 @inlined
-def drive(p, n, leg, t):
+def drive(p: np.ndarray, n: np.ndarray, leg: int, t: float) -> float:
     """The drive table on its straight leg `leg`; -1 is before its first point."""
     at, count = n[L.HIT_AT], n[L.HIT_COUNT]
     if leg < 0:
@@ -37,26 +43,45 @@ def drive(p, n, leg, t):
 
 
 @inlined
-def weigh_slopes(y, h, k1, k2, k3, k4, into, states):
+def weigh_slopes(
+    y: np.ndarray,
+    h: float,
+    k1: np.ndarray,
+    k2: np.ndarray,
+    k3: np.ndarray,
+    k4: np.ndarray,
+    into: np.ndarray,
+    states: np.ndarray,
+) -> None:
     for i in range(states):
         into[i] = y[i] + h / 6.0 * (k1[i] + 2.0 * (k2[i] + k3[i]) + k4[i])
 
 
 @inlined
-def ahead(y, step, k, into, states):
+def ahead(y: np.ndarray, step: float, k: np.ndarray, into: np.ndarray, states: np.ndarray) -> None:
     for i in range(states):
         into[i] = y[i] + step * k[i]
 
 
 @inlined
-def before_shift(out, after):
+def before_shift(out: np.ndarray, after: np.ndarray) -> float:
     """Share of a step that comes before a shift; 1 when there is none."""
     before, now = out[L.O_GATE + L.GATE_SHIFT], after[L.O_GATE + L.GATE_SHIFT]
     return before / (before - now) if before <= 0.0 < now else 1.0
 
 
 @lean
-def take_step(p, n, leg, t, h, y, k1, work, after):
+def take_step(
+    p: np.ndarray,
+    n: np.ndarray,
+    leg: int,
+    t: float,
+    h: float,
+    y: np.ndarray,
+    k1: np.ndarray,
+    work: np.ndarray,
+    after: np.ndarray,
+) -> None:
     """One step from `y`: rows 3 and 4 of `work` get the new state and its slope."""
     states = n[L.N_STATES]
     k2, k3, k4, trial, scrap = work[5], work[6], work[7], work[8], work[9]
@@ -72,7 +97,7 @@ def take_step(p, n, leg, t, h, y, k1, work, after):
 
 
 @inlined
-def check(kept, y, k4, slope, h, out):
+def check(kept: np.ndarray, y: np.ndarray, k4: np.ndarray, slope: np.ndarray, h: float, out: np.ndarray) -> int:
     """How the step went: a code of `layout`."""
     total = y[L.Z] + y[L.PITCH] + y[L.HOUSING] + out[L.O_LOWER] + out[L.O_SHOCK_SPEED]
     if not math.isfinite(total):
@@ -94,7 +119,17 @@ def check(kept, y, k4, slope, h, out):
 
 
 @lean
-def march(p, n, longest, kept, log, record, states_record, outputs_record, work):
+def march(
+    p: np.ndarray,
+    n: np.ndarray,
+    longest: float,
+    kept: np.ndarray,
+    log: np.ndarray,
+    record: bool,
+    states_record: np.ndarray,
+    outputs_record: np.ndarray,
+    work: np.ndarray,
+) -> tuple:
     """Run one lane from rest to its end.
 
     Parameters

@@ -9,7 +9,10 @@ of the links' length fed back (Baumgarte, Computer Methods in Applied Mechanics
 and Engineering 1 (1972) 1-16).
 """
 
+from __future__ import annotations
+
 import math
+from typing import TYPE_CHECKING
 
 from solver.kernel import layout as L
 from solver.kernel.drivetrain import thrust
@@ -19,11 +22,14 @@ from solver.kernel.rest import GRAVITY
 from solver.kernel.springs import front_spring, rear_springs
 from solver.kernel.wheels import front_wheels, rear_tyres, wheelie_bar
 
+if TYPE_CHECKING:
+    import numpy as np
+
 SIXTY_FEET = 18.288  # m
 
 
 @lean
-def accelerate(p, n, hit, y, dy, out):
+def accelerate(p: np.ndarray, n: np.ndarray, hit: float, y: np.ndarray, dy: np.ndarray, out: np.ndarray) -> None:
     """The right-hand side.
 
     Parameters
@@ -69,9 +75,7 @@ def accelerate(p, n, hit, y, dy, out):
     high = link(p, y, co, si, ch, sh, L.UCX, L.UCZ, L.UHX, L.UHZ, L.UPPER_LENGTH)
     arm = wx * si - wz * co
     wanted = w * w * (co * wx + si * wz) + 2.0 * w * y[7 + L.SLIDE] + front_pull * si * per_f
-    lower, upper, side, out[L.O_LEVERAGE] = reactions(
-        p, low, high, (co, si, arm, wanted), free, housing_free
-    )
+    lower, upper, side, out[L.O_LEVERAGE] = reactions(p, low, high, (co, si, arm, wanted), free, housing_free)
     out[L.O_LOWER], out[L.O_UPPER] = lower, upper
     out[L.O_DRIFT] = max(abs(low[5]), abs(high[5]))
 
@@ -95,7 +99,7 @@ def accelerate(p, n, hit, y, dy, out):
 
 
 @inlined
-def report(p, y, thrust, co, si, acceleration, out):
+def report(p: np.ndarray, y: np.ndarray, thrust: float, co: float, si: float, acceleration: float, out: np.ndarray) -> None:
     """Fill the outputs that follow from the state alone."""
     out[L.O_PITCH], out[L.O_HOUSING] = y[L.PITCH], y[L.HOUSING]
     out[L.O_ACCELERATION], out[L.O_HIT] = acceleration, thrust

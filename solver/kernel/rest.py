@@ -1,10 +1,16 @@
 """Ride height: what the measured weights say the springs and links carry at rest."""
 
+from __future__ import annotations
+
 import math
+from typing import TYPE_CHECKING
 
 from solver.kernel import layout as L
 from solver.kernel.curves import slope_at_rest, steepest
 from solver.kernel.jit import jit
+
+if TYPE_CHECKING:
+    import numpy as np
 
 GRAVITY = 9.80665
 VIRTUAL_LINK = 0.3
@@ -13,7 +19,7 @@ FASTEST_ENGINE = 1200.0  # rad/s
 
 
 @jit
-def unit(from_x, from_z, to_x, to_z):
+def unit(from_x: float, from_z: float, to_x: float, to_z: float) -> tuple:
     """Unit vector from one point to another, and their distance."""
     dx, dz = to_x - from_x, to_z - from_z
     length = math.sqrt(dx * dx + dz * dz)
@@ -21,7 +27,7 @@ def unit(from_x, from_z, to_x, to_z):
 
 
 @jit
-def place_links(p, n):
+def place_links(p: np.ndarray, n: np.ndarray) -> None:
     """Write the two links to solve.
 
     A ladder bar is one rigid bar on the housing, pinned to the chassis. Two links
@@ -41,7 +47,7 @@ def place_links(p, n):
 
 
 @jit
-def weigh(p):
+def weigh(p: np.ndarray) -> None:
     """Sprung mass and its CG by subtraction; the axles' static loads."""
     front, rear, mass = p[L.FRONT_MASS], p[L.REAR_MASS], p[L.MASS]
     sprung = mass - front - rear
@@ -59,7 +65,7 @@ def weigh(p):
 
 
 @jit
-def spring_pull(p, n):
+def spring_pull(p: np.ndarray, n: np.ndarray) -> tuple:
     """Direction and moment about the axle of all rear springs, for one newton in sum.
 
     Springs that share the axle carry their share in proportion to their rates.
@@ -81,7 +87,7 @@ def spring_pull(p, n):
 
 
 @jit
-def balance_axle(p, n):
+def balance_axle(p: np.ndarray, n: np.ndarray) -> None:
     """Rear spring force and both link tensions from the housing's equilibrium.
 
     Forces on the housing: each link pulls it towards the chassis, the springs push
@@ -104,7 +110,7 @@ def balance_axle(p, n):
 
 
 @jit
-def fastest(rate, damping, mass):
+def fastest(rate: float, damping: float, mass: float) -> float:
     """Greatest magnitude of an eigenvalue of one mass on a spring and a damper."""
     half = 0.5 * damping / mass
     if half * half <= rate / mass:
@@ -113,7 +119,7 @@ def fastest(rate, damping, mass):
 
 
 @jit
-def bound_eigenvalues(p, n):
+def bound_eigenvalues(p: np.ndarray, n: np.ndarray) -> None:
     """A bound on the model's fastest eigenvalue, from steepest slopes everywhere.
 
     Each wheel against a chassis that gives way as its own effective mass does;
@@ -141,7 +147,7 @@ def bound_eigenvalues(p, n):
 
 
 @jit
-def fastest_drive(p, n):
+def fastest_drive(p: np.ndarray, n: np.ndarray) -> float:
     """The same bound for wheel spin against the tyre's carcass, and for the coupling.
 
     The carcass is a spring of slip stiffness over relaxation length; it also
@@ -164,7 +170,7 @@ def fastest_drive(p, n):
 
 
 @jit
-def settle(p, n):
+def settle(p: np.ndarray, n: np.ndarray) -> None:
     """Work out everything derived from the inputs of one lane, in place."""
     place_links(p, n)
     weigh(p)

@@ -1,16 +1,22 @@
 """Whether a lane of a study can be solved at all; the same rules as `solver.soundness`."""
 
+from __future__ import annotations
+
 import math
+from typing import TYPE_CHECKING
 
 from solver.kernel import layout as L
 from solver.kernel.jit import jit
 from solver.kernel.rest import GRAVITY
 
+if TYPE_CHECKING:
+    import numpy as np
+
 SAME_PIN, SHORTEST_LINK, MOST_LOAD = 1e-3, 0.05, 50.0
 
 
 @jit
-def unsound(p, n):
+def unsound(p: np.ndarray, n: np.ndarray) -> int:
     """A refusal code of `layout`, or SOLVED, for a settled lane."""
     spare = min(p[L.FRONT_SPRING_STATIC], p[L.REAR_STATIC] - p[L.REAR_MASS] * GRAVITY)
     if not (min(p[L.SPRUNG_MASS], p[L.SPRUNG_Z], spare) > 0.0 and p[L.CG_Z] > axles(p)):
@@ -25,19 +31,17 @@ def unsound(p, n):
 
 
 @jit
-def axles(p):
+def axles(p: np.ndarray) -> float:
     """The lower of the two axle heights."""
     return min(p[L.FRONT_RADIUS], p[L.REAR_RADIUS])
 
 
 @jit
-def links_stand(p):
+def links_stand(p: np.ndarray) -> bool:
     """No identical or crossed pins, and bars that run forward."""
     lower = min(p[L.LOWER_LENGTH], p[L.UPPER_LENGTH])
     forward = min(p[L.LCX] - p[L.LHX], p[L.UCX] - p[L.UHX])
     chassis = math.hypot(p[L.UCX] - p[L.LCX], p[L.UCZ] - p[L.LCZ])
     housing = math.hypot(p[L.UHX] - p[L.LHX], p[L.UHZ] - p[L.LHZ])
     above = min(p[L.UCZ] - p[L.LCZ], p[L.UHZ] - p[L.LHZ])
-    return (
-        lower >= SHORTEST_LINK and forward > 0.0 and min(chassis, housing) >= SAME_PIN and above > 0.0
-    )
+    return lower >= SHORTEST_LINK and forward > 0.0 and min(chassis, housing) >= SAME_PIN and above > 0.0

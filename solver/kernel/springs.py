@@ -1,14 +1,20 @@
 """Springs, shocks and stops, rear lines and front slide."""
 
+from __future__ import annotations
+
 import math
+from typing import TYPE_CHECKING
 
 from solver.kernel import layout as L
 from solver.kernel.curves import curve
 from solver.kernel.jit import inlined
 
+if TYPE_CHECKING:
+    import numpy as np
+
 
 @inlined
-def rear_line(p, y, co, si, ch, sh, at):
+def rear_line(p: np.ndarray, y: np.ndarray, co: float, si: float, ch: float, sh: float, at: int) -> tuple:
     """One rear spring line: direction from housing to chassis, arms, squeeze and its speed."""
     ax = co * (p[at + L.LINE_CX] - p[L.SPRUNG_X]) - si * (p[at + L.LINE_CZ] - p[L.SPRUNG_Z])
     az = si * (p[at + L.LINE_CX] - p[L.SPRUNG_X]) + co * (p[at + L.LINE_CZ] - p[L.SPRUNG_Z])
@@ -26,7 +32,9 @@ def rear_line(p, y, co, si, ch, sh, at):
 
 
 @inlined
-def rear_springs(p, n, y, co, si, ch, sh, out):
+def rear_springs(
+    p: np.ndarray, n: np.ndarray, y: np.ndarray, co: float, si: float, ch: float, sh: float, out: np.ndarray
+) -> tuple:
     """All rear springs, shocks and stops: their force and moments on chassis and housing."""
     fx, fz, chassis_moment, housing_moment = 0.0, 0.0, 0.0, 0.0
     coil, shock, stops = 0.0, 0.0, 0.0
@@ -64,7 +72,7 @@ def rear_springs(p, n, y, co, si, ch, sh, out):
 
 
 @inlined
-def front_spring(p, n, y, out):
+def front_spring(p: np.ndarray, n: np.ndarray, y: np.ndarray, out: np.ndarray) -> float:
     """Force along the front slide, spring and shock and stops, pushing the chassis up."""
     travel, speed = y[L.SLIDE], y[7 + L.SLIDE]
     spring = p[L.FRONT_SPRING_STATIC] + curve(p, n, L.FRONT_SPRING, travel)

@@ -1,16 +1,18 @@
 """Tyres: a contact that pushes only, and what it holds along the track."""
 
+from __future__ import annotations
+
 from solver.kernel.jit import inlined
 
 
 @inlined
-def push(rate, damping, squash, speed):
+def push(rate: float, damping: float, squash: float, speed: float) -> float:
     """A contact before it is cut at nil: not gated on `squash`, so that it never jumps."""
     return rate * squash + damping * speed
 
 
 @inlined
-def fiala(slip, load, stiffness, grip, sliding_grip):
+def fiala(slip: float, load: float, stiffness: float, grip: float, sliding_grip: float) -> float:
     """Longitudinal force of the Fiala tyre, N.
 
     Grip falls from `grip` at no slip to `sliding_grip` at full slip:

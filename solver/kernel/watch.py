@@ -1,13 +1,19 @@
 """What is kept while a lane runs: greatest and least values, windows, dated events."""
 
+from __future__ import annotations
+
 import math
+from typing import TYPE_CHECKING
 
 from solver.kernel import layout as L
 from solver.kernel.jit import inlined
 
+if TYPE_CHECKING:
+    import numpy as np
+
 
 @inlined
-def begin(kept):
+def begin(kept: np.ndarray) -> None:
     """Empty accumulators."""
     for i in range(L.WATCHED):
         kept[4 * i], kept[4 * i + 1] = -math.inf, 0.0
@@ -20,7 +26,7 @@ def begin(kept):
 
 
 @inlined
-def peaks(kept, t, out):
+def peaks(kept: np.ndarray, t: float, out: np.ndarray) -> None:
     """Note the outputs at one instant as they stand."""
     for i in range(L.WATCHED):
         value = out[i]
@@ -31,7 +37,9 @@ def peaks(kept, t, out):
 
 
 @inlined
-def turns(kept, t, h_before, h_after, before, out, after):
+def turns(
+    kept: np.ndarray, t: float, h_before: float, h_after: float, before: np.ndarray, out: np.ndarray, after: np.ndarray
+) -> None:
     """Note where an output turned between steps: the top of the parabola through three instants.
 
     Only where it would be a new extreme. At a kink the three are not on one curve;
@@ -52,7 +60,7 @@ def turns(kept, t, h_before, h_after, before, out, after):
 
 
 @inlined
-def kinked(out, after):
+def kinked(out: np.ndarray, after: np.ndarray) -> bool:
     """Whether a contact began or ended, or a gear changed, within the step."""
     for i in range(L.N_KINKS):
         if (out[L.O_GATE + i] > 0.0) != (after[L.O_GATE + i] > 0.0):
@@ -61,7 +69,7 @@ def kinked(out, after):
 
 
 @inlined
-def first_peak(kept, t, load, static):
+def first_peak(kept: np.ndarray, t: float, load: float, static: float) -> None:
     """The rear tyres' first peak, and the lowest load after it, to the step.
 
     A fall of half a percent of the static load ends the first peak, so that
@@ -77,7 +85,7 @@ def first_peak(kept, t, load, static):
 
 
 @inlined
-def windows(kept, t, h, load, next_load):
+def windows(kept: np.ndarray, t: float, h: float, load: float, next_load: float) -> None:
     """Add a step to the time integrals of the rear load over the first instants."""
     for i in range(3):
         end = L.WINDOWS[i]
@@ -88,7 +96,7 @@ def windows(kept, t, h, load, next_load):
 
 
 @inlined
-def events(log, count, t, h, out, after):
+def events(log: np.ndarray, count: int, t: float, h: float, out: np.ndarray, after: np.ndarray) -> int:
     """Date every contact that began or ended within the step; returns the new count."""
     for i in range(L.N_GATES):
         before, now = out[L.O_GATE + i], after[L.O_GATE + i]

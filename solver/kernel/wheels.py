@@ -1,13 +1,20 @@
 """What stands on the ground: front wheels, rear tyres, the wheelie bar's wheels."""
 
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
 from solver.kernel import layout as L
 from solver.kernel.jit import inlined
 from solver.kernel.rest import GRAVITY
 from solver.kernel.tyre import push
 
+if TYPE_CHECKING:
+    import numpy as np
+
 
 @inlined
-def front_wheels(p, y, co, si, out):
+def front_wheels(p: np.ndarray, y: np.ndarray, co: float, si: float, out: np.ndarray) -> tuple:
     """Where the front wheels are from the sprung CG, and the pull on them across the track."""
     rx, rz = p[L.WHEELBASE] - p[L.SPRUNG_X], p[L.FRONT_RADIUS] - p[L.SPRUNG_Z] + y[L.SLIDE]
     wx, wz = co * rx - si * rz, si * rx + co * rz
@@ -23,7 +30,7 @@ def front_wheels(p, y, co, si, out):
 
 
 @inlined
-def rear_tyres(p, y, out):
+def rear_tyres(p: np.ndarray, y: np.ndarray, out: np.ndarray) -> float:
     """Load on the rear tyres."""
     squash, speed = p[L.REAR_SQUASH] - y[L.HZ], -y[7 + L.HZ]
     gate = push(p[L.REAR_TYRE_RATE], p[L.REAR_TYRE_DAMPING], squash, speed)
@@ -34,7 +41,9 @@ def rear_tyres(p, y, out):
 
 
 @inlined
-def wheelie_bar(p, n, y, co, si, ch, sh, out):
+def wheelie_bar(
+    p: np.ndarray, n: np.ndarray, y: np.ndarray, co: float, si: float, ch: float, sh: float, out: np.ndarray
+) -> tuple:
     """Upward force of the wheelie bar's wheels and its moment about the body it is bolted to."""
     if n[L.WHEELIE_ON] == L.ON_CHASSIS:
         rx, rz = p[L.WHEELIE_X] - p[L.SPRUNG_X], p[L.WHEELIE_CLEARANCE] - p[L.SPRUNG_Z]

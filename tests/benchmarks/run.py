@@ -46,8 +46,16 @@ ENGINE_STEPS = (4e-3, 2.5e-3, 2e-3, 1.25e-3, 1e-3, 5e-4)
 OUR_STEPS = (5e-3, 2.5e-3)
 WITHIN = 1e-3
 CHANNELS = (
-    "pitch", "cg_x", "cg_z", "housing_angle", "rear_spring_force", "rear_load", "front_load",
-    "upper_link_force", "lower_link_force", "front_travel",
+    "pitch",
+    "cg_x",
+    "cg_z",
+    "housing_angle",
+    "rear_spring_force",
+    "rear_load",
+    "front_load",
+    "upper_link_force",
+    "lower_link_force",
+    "front_travel",
 )
 # What the engine can do in C++: linear springs and shocks, tyres that stay on the ground.
 CASES = (1, 2, 4, 5, 7)
@@ -161,9 +169,7 @@ def throughput(lanes):
         sweep(made, choices(lanes), longest_step=step)
         rate = lanes / (time.perf_counter() - start)
         print(f"solver, {1e3 * step:.2f} ms, threads       {rate:10.0f}   {rate / theirs:6.0f} times")
-    done = subprocess.run(
-        [sys.executable, "-c", STUDY, str(lanes)], cwd=ROOT, capture_output=True, text=True, check=True
-    )
+    done = subprocess.run([sys.executable, "-c", STUDY, str(lanes)], cwd=ROOT, capture_output=True, text=True, check=True)
     print(f"greatest memory of a process that solves {lanes} lanes: {done.stdout.strip()} MB\n")
 
 
@@ -179,6 +185,7 @@ def linear():
 
 def importing():
     """`import solver` against `import numpy`, in fresh processes."""
+
     def of(what):
         return timed(lambda: subprocess.run([sys.executable, "-c", f"import {what}"], check=True), 5)
 

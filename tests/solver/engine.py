@@ -54,9 +54,7 @@ class Engine:
             self._weight(body, mass)
         # The joint wants a body that can turn: the wheels get an inertia too small to feel.
         self.nodes["wheel"] = mbs.AddNode(item.NodeRigidBody2D(referenceCoordinates=[*model.wheel, 0.0]))
-        self.wheel = add(
-            item.ObjectRigidBody2D(mass=model.mf, inertia=1e-5, nodeNumber=self.nodes["wheel"])
-        )
+        self.wheel = add(item.ObjectRigidBody2D(mass=model.mf, inertia=1e-5, nodeNumber=self.nodes["wheel"]))
         self._weight(self.wheel, model.mf)
         self.ground = add(item.ObjectGround())
 
@@ -76,9 +74,7 @@ class Engine:
             link = self.data["rear"]["linkage"][name]
             ends = [self._marker(self.chassis, link["chassis"]), self._marker(self.housing, link["housing"])]
             length = math.dist(link["chassis"], link["housing"])
-            self.links.append(
-                self.mbs.AddObject(item.ObjectConnectorDistance(markerNumbers=ends, distance=length))
-            )
+            self.links.append(self.mbs.AddObject(item.ObjectConnectorDistance(markerNumbers=ends, distance=length)))
 
     def _rear_springs(self):
         self.lines = []
@@ -110,9 +106,9 @@ class Engine:
             def force(mbs, t, n, stretch, speed, *_):
                 return -sum(s * stop_push(stop, -s * stretch, -s * speed) for s, stop in stops)
 
-            self.mbs.AddObject(item.ObjectConnectorSpringDamper(
-                markerNumbers=ends, referenceLength=length, springForceUserFunction=force
-            ))
+            self.mbs.AddObject(
+                item.ObjectConnectorSpringDamper(markerNumbers=ends, referenceLength=length, springForceUserFunction=force)
+            )
 
     def _stops(self, end):
         both = ((1.0, self.data[end].get("bump_stop")), (-1.0, self.data[end].get("droop_stop")))
@@ -128,10 +124,12 @@ class Engine:
         x, z = self.model.wheel
         slide = item.ObjectJointPrismatic2D(
             markerNumbers=[
-                self.mbs.AddMarker(item.MarkerBodyRigid(
-                    bodyNumber=self.chassis,
-                    localPosition=[x - self.model.cg[0], z - self.model.cg[1], 0.0],
-                )),
+                self.mbs.AddMarker(
+                    item.MarkerBodyRigid(
+                        bodyNumber=self.chassis,
+                        localPosition=[x - self.model.cg[0], z - self.model.cg[1], 0.0],
+                    )
+                ),
                 self.mbs.AddMarker(item.MarkerBodyRigid(bodyNumber=self.wheel)),
             ],
             axisMarker0=[0.0, 1.0, 0.0],
@@ -165,9 +163,7 @@ class Engine:
         self.tyres = {}
         fixed = self.mbs.AddNode(item.NodePointGround())
         zero = self.mbs.AddMarker(item.MarkerNodeCoordinate(nodeNumber=fixed, coordinate=0))
-        for end, node, static in (
-            ("rear", "housing", self.model.rear_load), ("front", "wheel", self.model.front_load)
-        ):
+        for end, node, static in (("rear", "housing", self.model.rear_load), ("front", "wheel", self.model.front_load)):
             tyre = self.data[end]["tyre"]
             height = self.mbs.AddMarker(item.MarkerNodeCoordinate(nodeNumber=self.nodes[node], coordinate=1))
             # The coordinate is counted from rest; unloaded it stands higher by the static squash.
@@ -196,9 +192,7 @@ class Engine:
             rise = mbs.GetNodeOutput(node, OUT.Coordinates)[1]
             return hit_at(table, t) * (radius + rise)
 
-        self.mbs.AddLoad(
-            item.LoadCoordinate(markerNumber=push, loadUserFunction=lambda mbs, t, load: hit_at(table, t))
-        )
+        self.mbs.AddLoad(item.LoadCoordinate(markerNumber=push, loadUserFunction=lambda mbs, t, load: hit_at(table, t)))
         self.mbs.AddLoad(item.LoadCoordinate(markerNumber=turn, loadUserFunction=moment))
 
     def run(self, duration, step, report):
@@ -221,19 +215,22 @@ class Engine:
 
     def _sensors(self):
         def node(name, kind):
-            return self.mbs.AddSensor(item.SensorNode(
-                nodeNumber=self.nodes[name], storeInternal=True, writeToFile=False, outputVariableType=kind
-            ))
+            return self.mbs.AddSensor(
+                item.SensorNode(nodeNumber=self.nodes[name], storeInternal=True, writeToFile=False, outputVariableType=kind)
+            )
 
         def force(number, kind=OUT.Force):
-            return self.mbs.AddSensor(item.SensorObject(
-                objectNumber=number, storeInternal=True, writeToFile=False, outputVariableType=kind
-            ))
+            return self.mbs.AddSensor(
+                item.SensorObject(objectNumber=number, storeInternal=True, writeToFile=False, outputVariableType=kind)
+            )
 
         sensors = {
-            "chassis": node("chassis", OUT.Coordinates), "housing": node("housing", OUT.Coordinates),
-            "rear_tyre": force(self.tyres["rear"]), "front_tyre": force(self.tyres["front"]),
-            "lower": force(self.links[0]), "upper": force(self.links[1]),
+            "chassis": node("chassis", OUT.Coordinates),
+            "housing": node("housing", OUT.Coordinates),
+            "rear_tyre": force(self.tyres["rear"]),
+            "front_tyre": force(self.tyres["front"]),
+            "lower": force(self.links[0]),
+            "upper": force(self.links[1]),
             "front": force(self.front_line, OUT.Distance),
         }
         for i, (number, *_) in enumerate(self.lines):
@@ -244,9 +241,12 @@ class Engine:
         chassis, housing = stored["chassis"], stored["housing"]
         return {
             "t": chassis[:, 0],
-            "cg_x": chassis[:, 1], "cg_z": chassis[:, 2], "pitch": chassis[:, 3],
+            "cg_x": chassis[:, 1],
+            "cg_z": chassis[:, 2],
+            "pitch": chassis[:, 3],
             "housing_angle": housing[:, 3],
-            "rear_load": -stored["rear_tyre"][:, 1], "front_load": -stored["front_tyre"][:, 1],
+            "rear_load": -stored["rear_tyre"][:, 1],
+            "front_load": -stored["front_tyre"][:, 1],
             "front_travel": 1000.0 - stored["front"][:, 1],
             "rear_spring_force": -sum(stored[f"line{i}"][:, 1] for i in range(len(self.lines))),
             "lower_link_force": np.abs(stored["lower"][:, 1:]).max(axis=1),

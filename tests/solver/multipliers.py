@@ -43,15 +43,23 @@ class Model:
         self.ms = data["mass"] - self.mf - self.mr
         rf, rr = front["tyre_radius"], rear["tyre_radius"]
         x, z = data["cg"]["x"], data["cg"]["z"]
-        self.cg = np.array([
-            (data["mass"] * x - self.mf * L) / self.ms,
-            (data["mass"] * z - self.mf * rf - self.mr * rr) / self.ms,
-        ])
+        self.cg = np.array(
+            [
+                (data["mass"] * x - self.mf * L) / self.ms,
+                (data["mass"] * z - self.mf * rf - self.mr * rr) / self.ms,
+            ]
+        )
         self.axle, self.wheel = np.array([0.0, rr]), np.array([L, rf])
         self.masses = np.array(
             [
-                self.ms, self.ms, data["chassis"]["pitch_inertia"],
-                self.mr, self.mr, rear["housing_inertia"], self.mf, self.mf,
+                self.ms,
+                self.ms,
+                data["chassis"]["pitch_inertia"],
+                self.mr,
+                self.mr,
+                rear["housing_inertia"],
+                self.mf,
+                self.mf,
             ]
         )
         self.q0 = np.array([*self.cg, 0.0, *self.axle, 0.0, *self.wheel])
@@ -106,7 +114,8 @@ class Model:
         Q = np.zeros(8)
         Q[C + 1], Q[H + 1], Q[F + 1] = -self.ms * G, -self.mr * G, -self.mf * G
         for name, static, height, axle in (
-            ("rear", self.rear_load, self.axle[1], H + 1), ("front", self.front_load, self.wheel[1], F + 1)
+            ("rear", self.rear_load, self.axle[1], H + 1),
+            ("front", self.front_load, self.wheel[1], F + 1),
         ):
             tyre = self.data[name]["tyre"]
             squash = static / tyre["rate"] + height - q[axle]
@@ -235,8 +244,14 @@ def solve(data, times, tolerance=1e-9, longest=2.5e-3):
         last = end == knots[-1]
         inside = times[(times >= start - 1e-12) & ((times < end - 1e-12) | last)].clip(start, end)
         run = solve_ivp(
-            rate, (start, end), y, method="DOP853", rtol=tolerance, atol=tolerance,
-            max_step=longest, t_eval=inside if last else np.append(inside, end),
+            rate,
+            (start, end),
+            y,
+            method="DOP853",
+            rtol=tolerance,
+            atol=tolerance,
+            max_step=longest,
+            t_eval=inside if last else np.append(inside, end),
         )
         assert run.success, run.message
         rows += [run.y[:, i] for i in range(len(inside))]
@@ -254,7 +269,10 @@ def channels(model, table, times, rows):
         _, multipliers = model.accelerate(q, v, hit)
         model.forces(q, v, hit, report)
         report |= {
-            "pitch": q[2], "cg_x": q[0] - model.cg[0], "cg_z": q[1] - model.cg[1], "housing_angle": q[5],
+            "pitch": q[2],
+            "cg_x": q[0] - model.cg[0],
+            "cg_z": q[1] - model.cg[1],
+            "housing_angle": q[5],
         }
         for multiplier, side, (a, b, _) in zip(multipliers, ("lower", "upper"), model.links, strict=False):
             plan = model.data["rear"]["linkage"].get(side, {}).get("plan_angle", 0.0)

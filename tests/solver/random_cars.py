@@ -27,14 +27,10 @@ SPECIALS = {
         "rear.droop_stop": {"clearance": 0.006, **HARD_STOP},
     },
     "stop on its own mounts": {
-        "rear.droop_stop": {
-            "clearance": 0.004, "chassis": [-0.2, 0.5], "housing": [-0.12, 0.35], **HARD_STOP
-        },
+        "rear.droop_stop": {"clearance": 0.004, "chassis": [-0.2, 0.5], "housing": [-0.12, 0.35], **HARD_STOP},
         "rear.linkage.upper.chassis": [0.4572, 0.32],
     },
-    "bump rubber": {
-        "rear.bump_stop": {"clearance": 0.004, "table": [[0, 0], [0.01, 800], [0.02, 4000]]}
-    },
+    "bump rubber": {"rear.bump_stop": {"clearance": 0.004, "table": [[0, 0], [0.01, 800], [0.02, 4000]]}},
     "wheelie bar contact": {
         "cg.z": 0.64,
         "hit": {"kind": "force", "table": [[0, 0], [0.05, 18000.0], [0.5, 18000.0], [0.8, 6000.0]]},
@@ -43,18 +39,14 @@ SPECIALS = {
     "wheelie bar on the housing": {
         "cg.z": 0.64,
         "hit": {"kind": "force", "table": [[0, 0], [0.05, 18000.0], [0.5, 18000.0], [0.8, 6000.0]]},
-        "wheelie_bar": {
-            "x": -1.3, "clearance": 0.07, "rate": 120_000.0, "damping": 500.0, "mounted_on": "housing"
-        },
+        "wheelie_bar": {"x": -1.3, "clearance": 0.07, "rate": 120_000.0, "damping": 500.0, "mounted_on": "housing"},
     },
     "dual-rate knee": {
         "rear.springs.0.spring": {"table": [[-0.05, -2500], [0.0, 0.0], [0.004, 200], [0.05, 5000]]},
         "front.spring": {"table": [[-0.2, -7000], [-0.03, -1200], [0.1, 6000]]},
     },
     "shock table knee": {
-        "rear.springs.0.damper": {
-            "table": [[-1.0, -1900], [-0.03, -500], [0, 0], [0.06, 450], [1.0, 1400]]
-        },
+        "rear.springs.0.damper": {"table": [[-1.0, -1900], [-0.03, -500], [0, 0], [0.06, 450], [1.0, 1400]]},
         "front.damper": {"table": [[-1.0, -700], [-0.1, -250], [0, 0], [0.1, 300], [1.0, 1200]]},
     },
     "separate spring and shock": {
@@ -131,7 +123,10 @@ def _damper(draw, table):
     push, pull = knee * low, 1.3 * knee * low
     return {
         "table": [
-            [-2.0, -pull - high * (2.0 - knee)], [-knee, -pull], [0.0, 0.0], [knee, push],
+            [-2.0, -pull - high * (2.0 - knee)],
+            [-knee, -pull],
+            [0.0, 0.0],
+            [knee, push],
             [2.0, push + high * (2.0 - knee)],
         ]
     }

@@ -27,8 +27,13 @@ RICH = [door_car(**changes) for changes in ({}, *SPECIALS.values())]
 for car in RICH:
     car["run"] = {"duration": 0.3, "output_step": 0.01}
 ODD = st.one_of(
-    st.none(), st.booleans(), st.text(max_size=5), st.integers(-(10**12), 10**12), st.floats(),
-    st.lists(st.floats(), max_size=3), st.dictionaries(st.text(max_size=5), st.floats(), max_size=2),
+    st.none(),
+    st.booleans(),
+    st.text(max_size=5),
+    st.integers(-(10**12), 10**12),
+    st.floats(),
+    st.lists(st.floats(), max_size=3),
+    st.dictionaries(st.text(max_size=5), st.floats(), max_size=2),
 )
 NEAR = st.floats(-3.0, 3.0, allow_nan=False)
 

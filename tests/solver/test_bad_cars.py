@@ -38,19 +38,17 @@ BAD = {
     "text": ({"mass": "1200"}, "mass"),
     "a yes": ({"mass": True}, "mass"),
     "negative rate": ({"rear.springs.0.spring.rate": -5.0}, "rear.springs.0.spring.rate"),
-    "stop in contact": (
-        {"front.bump_stop": {"clearance": 0.0, "rate": 1e5, "damping": 0.0}}, "front.bump_stop.clearance"
-    ),
+    "stop in contact": ({"front.bump_stop": {"clearance": 0.0, "rate": 1e5, "damping": 0.0}}, "front.bump_stop.clearance"),
     "one-point shock": ({"rear.springs.0.damper": {"table": [[0, 0]]}}, "rear.springs.0.damper.table"),
     "shock that pushes at rest": (
-        {"rear.springs.0.damper": {"table": [[-1, -500], [1, 900]]}}, "rear.springs.0.damper.table"
+        {"rear.springs.0.damper": {"table": [[-1, -500], [1, 900]]}},
+        "rear.springs.0.damper.table",
     ),
     "spring that falls": (
-        {"rear.springs.0.spring": {"table": [[-0.1, 0], [0, 900], [0.1, 800]]}}, "rear.springs.0.spring.table"
+        {"rear.springs.0.spring": {"table": [[-0.1, 0], [0, 900], [0.1, 800]]}},
+        "rear.springs.0.spring.table",
     ),
-    "table that runs back": (
-        {"rear.springs.0.spring": {"table": [[0, 0], [0, 900]]}}, "rear.springs.0.spring.table"
-    ),
+    "table that runs back": ({"rear.springs.0.spring": {"table": [[0, 0], [0, 900]]}}, "rear.springs.0.spring.table"),
     "hit of no length": ({"hit.table": [[0.0, 5000.0]]}, "hit.table"),
     "hit that runs back": ({"hit.table": [[0.1, 0.0], [0.1, 5000.0]]}, "hit.table"),
     "no spring": ({"rear.springs.0.spring": None}, "rear.springs"),
@@ -71,9 +69,7 @@ BAD = {
         {"rear.linkage.lower.chassis": [0.12, 0.2667], "rear.bump_stop": {"clearance": 0.2, "rate": 1e5}},
         "rear.linkage",
     ),
-    "wheel torque without a tyre": (
-        {"hit": {"kind": "torque", "table": [[0, 0], [0.1, 3000]]}}, "rear.tyre.grip"
-    ),
+    "wheel torque without a tyre": ({"hit": {"kind": "torque", "table": [[0, 0], [0.1, 3000]]}}, "rear.tyre.grip"),
 }
 
 
@@ -111,9 +107,7 @@ def test_round_trip():
         assert car_from_dict(json.loads(json.dumps(car_to_dict(car)))) == car
 
 
-@pytest.mark.parametrize(
-    "text", ["", "{", '{"mass": NaN}', '{"mass": 1, "mass": 2}', "[" * 100_000, "\x00", '"car"']
-)
+@pytest.mark.parametrize("text", ["", "{", '{"mass": NaN}', '{"mass": 1, "mass": 2}', "[" * 100_000, "\x00", '"car"'])
 def test_a_file_that_is_no_car(text, tmp_path):
     path = tmp_path / "car.json"
     path.write_text(text)
@@ -130,8 +124,10 @@ GOES_OVER = {
     "the car turned over": {"cg.z": 0.75, "hit": {"kind": "force", "table": [[0, 0], [0.05, 26_000.0]]}},
     "the rear axle folded up": {
         # Bars that fall steeply to the chassis below: the hit lifts the body over the axle.
-        "rear.linkage.upper.chassis": [0.46, 0.36], "rear.linkage.lower.chassis": [0.4, 0.12],
-        "rear.springs.0.spring.rate": 20_000.0, "cg.z": 0.42,
+        "rear.linkage.upper.chassis": [0.46, 0.36],
+        "rear.linkage.lower.chassis": [0.4, 0.12],
+        "rear.springs.0.spring.rate": 20_000.0,
+        "cg.z": 0.42,
         "hit": {"kind": "force", "table": [[0, 0], [0.05, 20_000.0]]},
     },
 }
@@ -162,17 +158,18 @@ def test_a_study_refuses_what_it_cannot_vary():
 def test_a_study_tells_how_far_it_is_and_stops_when_asked():
     seen = []
     study = sweep(
-        car_with({}), {"hit.scale": np.linspace(0.5, 1.0, 10)}, chunk=4,
-        progress=lambda done, lanes: seen.append((done, lanes)), cancelled=lambda: len(seen) == 2,
+        car_with({}),
+        {"hit.scale": np.linspace(0.5, 1.0, 10)},
+        chunk=4,
+        progress=lambda done, lanes: seen.append((done, lanes)),
+        cancelled=lambda: len(seen) == 2,
     )
     assert seen == [(4, 10), (8, 10)]
     assert not study.complete and study.reason(9).startswith("not solved") and study.reason(7) is None
 
 
 def command(*arguments):
-    return subprocess.run(
-        [sys.executable, "-m", "solver", *map(str, arguments)], cwd=ROOT, capture_output=True, text=True
-    )
+    return subprocess.run([sys.executable, "-m", "solver", *map(str, arguments)], cwd=ROOT, capture_output=True, text=True)
 
 
 def test_the_command_line_answers(tmp_path):

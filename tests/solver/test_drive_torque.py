@@ -8,7 +8,9 @@ from solver.launching import launch
 from tests.solver.cars import car_with
 
 TYRE = {
-    "rear.wheel_inertia": 6.0, "rear.tyre.grip": 2.2, "rear.tyre.sliding_grip": 1.4,
+    "rear.wheel_inertia": 6.0,
+    "rear.tyre.grip": 2.2,
+    "rear.tyre.sliding_grip": 1.4,
     "rear.tyre.slip_stiffness": 120_000.0,
 }
 ENGINE = {"curve": [[200, 500], [400, 700], [600, 750], [750, 650], [800, 0]], "inertia": 0.25}
@@ -27,8 +29,10 @@ def powered(coupling, speed=600, **more):
 
 
 CARS = {
-    "hooks": torque(4700.0), "spins": torque(7700.0),
-    "clutch": powered({"clutch": CLUTCH}), "converter": powered({"converter": CONVERTER}, speed=450),
+    "hooks": torque(4700.0),
+    "spins": torque(7700.0),
+    "clutch": powered({"clutch": CLUTCH}),
+    "converter": powered({"converter": CONVERTER}, speed=450),
 }
 
 
@@ -69,7 +73,9 @@ def axle_rise(h, rate, damping):
 def test_a_tyre_that_cannot_slip_is_the_prescribed_hit():
     """Grip without end and wheels without inertia: torque over radius is the force of drive mode 1."""
     sure = {
-        "rear.wheel_inertia": 0.05, "rear.tyre.grip": 10.0, "rear.tyre.slip_stiffness": 1e7,
+        "rear.wheel_inertia": 0.05,
+        "rear.tyre.grip": 10.0,
+        "rear.tyre.slip_stiffness": 1e7,
         "rear.tyre.relaxation_length": 0.3,
     }
     slow = [[0.0, 0.0], [0.4, 4000.0]]
@@ -101,7 +107,8 @@ def test_sixty_foot():
     # Constant 1 g: 60 ft past a rollout of r takes sqrt(2 (r + 60 ft)/a) - sqrt(2 r/a).
     pull = 1292.738255 * 9.80665
     level = {
-        "hit": {"kind": "force", "table": [[0.0, pull], [1.0, pull]]}, "cg.z": 0.42,
+        "hit": {"kind": "force", "table": [[0.0, pull], [1.0, pull]]},
+        "cg.z": 0.42,
         "run": {"duration": 2.5, "output_step": 0.005},
     }
     figures = launch(car_with(level)).figures

@@ -27,9 +27,7 @@ def dense(car, step=2.5e-4, duration=0.8):
     settle_one(row.p, row.n)
     reports = round(duration / step) + 1
     states, outputs = np.zeros((reports, L.STATES)), np.zeros((reports, L.OUTPUTS))
-    code, *_ = run_one(
-        row.p, row.n, step, np.zeros(L.ACCUMULATORS), np.zeros((L.EVENTS, 2)), True, states, outputs
-    )
+    code, *_ = run_one(row.p, row.n, step, np.zeros(L.ACCUMULATORS), np.zeros((L.EVENTS, 2)), True, states, outputs)
     assert code == L.SOLVED
     return row.p, states, outputs
 
@@ -56,9 +54,7 @@ def test_momentum(seed):
     p, states, outputs = dense(smooth(seed))
     step = 2.5e-4
     _, vx, vz = front_wheels(p, states)
-    forward = (
-        p[L.SPRUNG_MASS] * states[-1, 7 + L.X] + p[L.REAR_MASS] * states[-1, 7 + L.HX] + p[L.FRONT_MASS] * vx[-1]
-    )
+    forward = p[L.SPRUNG_MASS] * states[-1, 7 + L.X] + p[L.REAR_MASS] * states[-1, 7 + L.HX] + p[L.FRONT_MASS] * vx[-1]
     pushed = simpson(outputs[:, L.O_HIT], step)
     assert forward == pytest.approx(pushed, rel=1e-6)
     up = p[L.SPRUNG_MASS] * states[-1, 7 + L.Z] + p[L.REAR_MASS] * states[-1, 7 + L.HZ] + p[L.FRONT_MASS] * vz[-1]
@@ -82,9 +78,7 @@ def test_energy(seed):
         + p[L.HOUSING_INERTIA] * v[L.HOUSING] ** 2
         + p[L.FRONT_MASS] * (vx[-1] ** 2 + vz[-1] ** 2)
     )
-    height = GRAVITY * (
-        p[L.SPRUNG_MASS] * states[-1, L.Z] + p[L.REAR_MASS] * states[-1, L.HZ] + p[L.FRONT_MASS] * rise[-1]
-    )
+    height = GRAVITY * (p[L.SPRUNG_MASS] * states[-1, L.Z] + p[L.REAR_MASS] * states[-1, L.HZ] + p[L.FRONT_MASS] * rise[-1])
     # Everything that stores or burns, as power: springs, shocks and both tyres.
     power = (
         -outputs[:, L.O_REAR_SPRING] * outputs[:, L.O_TRAVEL_SPEED]
@@ -160,19 +154,32 @@ def scaled(car, a, b):
 
     swap, front, rear = dataclasses.replace, car.front, car.rear
     front = swap(
-        front, unsprung_mass=front.unsprung_mass * b, tyre_radius=front.tyre_radius * a,
-        spring=spring(front.spring), damper=damper(front.damper), tyre=tyre(front.tyre),
+        front,
+        unsprung_mass=front.unsprung_mass * b,
+        tyre_radius=front.tyre_radius * a,
+        spring=spring(front.spring),
+        damper=damper(front.damper),
+        tyre=tyre(front.tyre),
     )
     entry = rear.springs[0]
     entry = swap(link(entry), spring=spring(entry.spring), damper=damper(entry.damper))
     rear = swap(
-        rear, unsprung_mass=rear.unsprung_mass * b, housing_inertia=rear.housing_inertia * a * a * b,
-        tyre_radius=rear.tyre_radius * a, tyre=tyre(rear.tyre), springs=(entry,),
+        rear,
+        unsprung_mass=rear.unsprung_mass * b,
+        housing_inertia=rear.housing_inertia * a * a * b,
+        tyre_radius=rear.tyre_radius * a,
+        tyre=tyre(rear.tyre),
+        springs=(entry,),
         linkage=swap(rear.linkage, lower=link(rear.linkage.lower), upper=link(rear.linkage.upper)),
     )
     return swap(
-        car, wheelbase=car.wheelbase * a, mass=car.mass * b, cg=point(car.cg),
-        pitch_inertia=car.pitch_inertia * a * a * b, front=front, rear=rear,
+        car,
+        wheelbase=car.wheelbase * a,
+        mass=car.mass * b,
+        cg=point(car.cg),
+        pitch_inertia=car.pitch_inertia * a * a * b,
+        front=front,
+        rear=rear,
         hit=swap(car.hit, table=table(car.hit.table, time, b)),
         run=swap(car.run, duration=car.run.duration * time, output_step=car.run.output_step * time),
     )
@@ -225,14 +232,17 @@ def test_a_hit_on_the_neutral_line_moves_no_rear_spring(x, z, mass):
     Not to the last bit: the bars' loads at rest turn a little with the body.
     """
     # Slow and slight, so that the linkage stays where the definition holds.
-    base = car_with({
-        "cg.x": x, "cg.z": z, "mass": mass,
-        "hit": {"kind": "force", "table": [[0.0, 0.0], [6.0, 300.0]]},
-        "rear.springs.0.damper": {"rate": 6000.0}, "front.damper": {"rate": 6000.0},
-        "run": {"duration": 8.0, "output_step": 0.05},
-    })
-    squat, still, lift = (
-        launch(aimed(base, share)).histories["rear_spring_travel"][-1] for share in (0.7, 1.0, 1.3)
+    base = car_with(
+        {
+            "cg.x": x,
+            "cg.z": z,
+            "mass": mass,
+            "hit": {"kind": "force", "table": [[0.0, 0.0], [6.0, 300.0]]},
+            "rear.springs.0.damper": {"rate": 6000.0},
+            "front.damper": {"rate": 6000.0},
+            "run": {"duration": 8.0, "output_step": 0.05},
+        }
     )
+    squat, still, lift = (launch(aimed(base, share)).histories["rear_spring_travel"][-1] for share in (0.7, 1.0, 1.3))
     assert squat > 0.0 > lift
     assert abs(still) < 0.1 * min(squat, -lift)

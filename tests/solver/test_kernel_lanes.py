@@ -95,7 +95,10 @@ def test_plain_python_gives_the_same(name, tmp_path):
 def test_importing_compiles_nothing_and_loads_no_numba():
     code = "import sys, solver; print('numba' in sys.modules, 'scipy' in sys.modules)"
     done = subprocess.run(
-        [sys.executable, "-c", code], capture_output=True, text=True, check=True,
+        [sys.executable, "-c", code],
+        capture_output=True,
+        text=True,
+        check=True,
         env={**os.environ, "PYTHONPATH": os.pathsep.join(sys.path)},
     )
     assert done.stdout.split() == ["False", "False"]

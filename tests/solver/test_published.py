@@ -31,12 +31,17 @@ def inches(x, z):
 def pound_car(lower, upper, **more):
     """3000 lb, 300 lb of it at the rear axle, CG 19.6 in up, axle 16 in up, wheelbase 105 in."""
     changes = {
-        "wheelbase": 105 * INCH, "mass": 3000 * POUND, "cg.z": 19.6 * INCH,
+        "wheelbase": 105 * INCH,
+        "mass": 3000 * POUND,
+        "cg.z": 19.6 * INCH,
         "cg.x": 105 * INCH * (1 - 1650 / 3000),
-        "front.unsprung_mass": 0.5, "rear.unsprung_mass": 300 * POUND, "rear.tyre_radius": 16 * INCH,
+        "front.unsprung_mass": 0.5,
+        "rear.unsprung_mass": 300 * POUND,
+        "rear.tyre_radius": 16 * INCH,
         "rear.linkage.lower": {"chassis": inches(*lower[1]), "housing": inches(*lower[0])},
         "rear.linkage.upper": {"chassis": inches(*upper[1]), "housing": inches(*upper[0])},
-        "rear.springs.0.chassis": inches(0, 36), "rear.springs.0.housing": inches(0, 16),
+        "rear.springs.0.chassis": inches(0, 36),
+        "rear.springs.0.housing": inches(0, 16),
     }
     return car_with({**changes, **more})
 
@@ -74,9 +79,14 @@ def test_bar_forces_at_one_g():
     # The same: lower -5656.049 lbf, upper +2957.626, spring 1230.9588 from 1350 [calc, two ways].
     # Springs and tyres so stiff that the car keeps the shape the numbers are for.
     stiff = {
-        "rear.springs.0.spring.rate": 5e6, "rear.springs.0.damper.rate": 1e5, "rear.tyre.rate": 1e7,
-        "rear.tyre.damping": 2e4, "front.spring.rate": 5e6, "front.damper.rate": 2e4,
-        "front.tyre.rate": 1e7, "front.tyre.damping": 2e3,
+        "rear.springs.0.spring.rate": 5e6,
+        "rear.springs.0.damper.rate": 1e5,
+        "rear.tyre.rate": 1e7,
+        "rear.tyre.damping": 2e4,
+        "front.spring.rate": 5e6,
+        "front.damper.rate": 2e4,
+        "front.tyre.rate": 1e7,
+        "front.tyre.damping": 2e3,
         "hit": {"kind": "force", "table": [[0, 0], [1.0, 3000 * LBF]]},
         "run": {"duration": 1.5, "output_step": 0.01},
     }
@@ -91,21 +101,32 @@ def half_car(**dampings):
     """Axles that go straight up and down: level parallel bars, everything at one height."""
     sprung, front, rear, height = 700.0, 40.0, 35.5, 0.3
     mass = sprung + front + rear
-    return car_with({
-        "wheelbase": 4.6, "mass": mass, "cg.x": (sprung * 2.3 + front * 4.6) / mass, "cg.z": height + 1e-4,
-        "chassis.pitch_inertia": 2460.0,
-        "front.unsprung_mass": front, "front.tyre_radius": height, "front.spring": {"rate": 19_960.0},
-        "rear.unsprung_mass": rear, "rear.tyre_radius": height, "rear.housing_inertia": 0.01,
-        "rear.linkage.lower": {"chassis": [1.0, 0.2], "housing": [0.0, 0.2]},
-        "rear.linkage.upper": {"chassis": [1.0, 0.4], "housing": [0.0, 0.4]},
-        "rear.springs.0": {
-            "chassis": [0.0, 0.9], "housing": [0.0, 0.3], "spring": {"rate": 17_500.0},
-            "damper": {"rate": dampings.get("rear", 0.0)},
-        },
-        "front.damper": {"rate": dampings.get("front", 0.0)},
-        "front.tyre": {"rate": 175_500.0, "damping": dampings.get("tyre", 0.0)},
-        "rear.tyre": {"rate": 175_500.0, "damping": dampings.get("tyre", 0.0)},
-    })
+    return car_with(
+        {
+            "wheelbase": 4.6,
+            "mass": mass,
+            "cg.x": (sprung * 2.3 + front * 4.6) / mass,
+            "cg.z": height + 1e-4,
+            "chassis.pitch_inertia": 2460.0,
+            "front.unsprung_mass": front,
+            "front.tyre_radius": height,
+            "front.spring": {"rate": 19_960.0},
+            "rear.unsprung_mass": rear,
+            "rear.tyre_radius": height,
+            "rear.housing_inertia": 0.01,
+            "rear.linkage.lower": {"chassis": [1.0, 0.2], "housing": [0.0, 0.2]},
+            "rear.linkage.upper": {"chassis": [1.0, 0.4], "housing": [0.0, 0.4]},
+            "rear.springs.0": {
+                "chassis": [0.0, 0.9],
+                "housing": [0.0, 0.3],
+                "spring": {"rate": 17_500.0},
+                "damper": {"rate": dampings.get("rear", 0.0)},
+            },
+            "front.damper": {"rate": dampings.get("front", 0.0)},
+            "front.tyre": {"rate": 175_500.0, "damping": dampings.get("tyre", 0.0)},
+            "rear.tyre": {"rate": 175_500.0, "damping": dampings.get("tyre", 0.0)},
+        }
+    )
 
 
 def test_half_car_undamped():
@@ -191,5 +212,5 @@ def test_shock_energy_of_a_cycle(table, joules):
     row, rate = hinges(table), 2.0 * math.pi * 1.5
     t = np.linspace(0.0, 1.0 / 1.5, 200_001)
     speed = 0.05 * rate * np.cos(rate * t)
-    power = np.array([value_of(row, v) * v for v in speed[:: 20]])
+    power = np.array([value_of(row, v) * v for v in speed[::20]])
     assert np.trapezoid(power, t[::20]) == pytest.approx(joules, rel=1e-6)

@@ -9,9 +9,7 @@ from solver.modes import modes
 from solver.statics import statics
 from tests.solver.cars import REFERENCE, reference
 
-CASES = pytest.mark.parametrize(
-    "number", range(1, len(REFERENCE) + 1), ids=[path.stem for path in REFERENCE]
-)
+CASES = pytest.mark.parametrize("number", range(1, len(REFERENCE) + 1), ids=[path.stem for path in REFERENCE])
 
 
 def test_there_are_eight():
