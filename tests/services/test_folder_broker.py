@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-import base64
-import json
 import multiprocessing
 import os
 import shutil
@@ -13,48 +11,13 @@ from queue import Empty
 from typing import Any
 
 import pytest
-from kombu import Connection, Queue
 from kombu.exceptions import ChannelError
-from kombu.transport import TRANSPORT_ALIASES
 
 import shop.config.celery  # noqa: F401  (registers folder://)
 from shop.config import folder_broker
+from tests.services.traffic import EACH, connect, consume, produce
 
 START = multiprocessing.get_context("spawn")
-EACH = 200
-
-
-def connect(folder: Path) -> Connection:
-    return Connection("folder://localhost", transport_options=folder_broker.options(folder))
-
-
-def produce(folder: Path, who: int) -> None:
-    TRANSPORT_ALIASES["folder"] = "shop.config.folder_broker:Transport"
-    with connect(folder) as connection:
-        queue = Queue("work", routing_key="work")
-        with connection.Producer() as producer:
-            for number in range(EACH):
-                producer.publish({"job": who * EACH + number}, routing_key="work", declare=[queue])
-
-
-def consume(folder: Path, taken: Path) -> None:
-    TRANSPORT_ALIASES["folder"] = "shop.config.folder_broker:Transport"
-    with connect(folder) as connection, taken.open("w") as out:
-        channel = connection.channel()
-        Queue("work", routing_key="work")(channel).declare()
-        quiet_since = time.monotonic()
-        while time.monotonic() - quiet_since < 3:
-            try:
-                message = channel._get("work")
-            except Empty:
-                time.sleep(0.001)
-                continue
-            out.write(f"{body_of(message)}\n")
-            quiet_since = time.monotonic()
-
-
-def body_of(message: dict[str, Any]) -> int:
-    return int(json.loads(base64.b64decode(message["body"]))["job"])
 
 
 def test_two_consumers_and_two_producers_lose_and_double_nothing(tmp_path: Path) -> None:
