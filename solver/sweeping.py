@@ -11,11 +11,11 @@ import numpy as np
 from solver.carfile import car_from_dict, car_to_dict, ensure_sound
 from solver.faults import CarError, Fault
 from solver.kernel import layout as L
-from solver.kernel.lanes import run_many
 from solver.launching import LONGEST_STEP, REASONS
 from solver.packing import pack
 from solver.reduction import reduce
 from solver.rest_figures import plan_angles, rest_figures
+from solver.threads import run_lanes
 
 if TYPE_CHECKING:
     from solver.car import Car
@@ -261,7 +261,7 @@ def _solve(car: Car, p: np.ndarray, n: np.ndarray, longest_step: float) -> tuple
     log = np.zeros((lanes, L.EVENTS, 2))
     codes, counts = np.zeros(lanes, dtype=np.int64), np.zeros(lanes, dtype=np.int64)
     times = np.zeros(lanes)
-    run_many(p, n, longest_step, kept, log, codes, times, counts)
+    run_lanes(p, n, longest_step, kept, log, codes, times, counts)
     figures, statics = reduce(car, p, kept, log, counts), rest_figures(car, p)
     failed = codes != L.SOLVED
     for values in figures.values():

@@ -17,9 +17,8 @@ from pathlib import Path
 from typing import Any
 
 import numba
-from numba import prange
 
-__all__ = ["jit", "parallel", "prange"]
+__all__ = ["inlined", "jit", "lean"]
 
 
 def _stamp() -> str:
@@ -93,8 +92,3 @@ def inlined(function: Callable) -> Any:
 def lean(function: Callable) -> Any:
     """The same, but called rather than laid in."""
     return _compiled(function, _nrt=False)
-
-
-def parallel(function: Callable) -> Any:
-    """The same, with `prange` over threads."""
-    return _compiled(function, parallel=True)

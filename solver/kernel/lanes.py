@@ -1,11 +1,11 @@
-"""Many lanes: settle and march each, over threads. A lane never sees its neighbours."""
+"""Many lanes: settle and march each. A lane never sees its neighbours."""
 
 from __future__ import annotations
 
 import numpy as np
 
 from solver.kernel import layout as L
-from solver.kernel.jit import jit, parallel, prange
+from solver.kernel.jit import jit
 from solver.kernel.march import march
 from solver.kernel.rest import settle
 from solver.kernel.soundness import unsound
@@ -42,8 +42,8 @@ def run_one(
     return code, time, count, longest
 
 
-@parallel
-def run_many(
+@jit
+def run_block(
     p: np.ndarray,
     n: np.ndarray,
     longest: float,
@@ -53,9 +53,12 @@ def run_many(
     times: np.ndarray,
     counts: np.ndarray,
 ) -> None:
-    """Settle and march every row of `p` (lanes, width) that can be, figures only."""
-    for lane in prange(p.shape[0]):
-        nothing = np.zeros((1, 1))
+    """Settle and march every row of `p` (lanes, width) that can be, figures only.
+
+    Holds no lock of the interpreter: `solver.threads` runs blocks side by side.
+    """
+    nothing = np.zeros((1, 1))
+    for lane in range(p.shape[0]):
         settle(p[lane], n)
         code, time, count = unsound(p[lane], n), 0.0, 0
         if code == L.SOLVED:

@@ -4,6 +4,7 @@ import dataclasses
 import os
 import subprocess
 import sys
+from concurrent.futures import ThreadPoolExecutor
 
 import numpy as np
 import pytest
@@ -52,6 +53,30 @@ def test_a_lane_is_the_same_launch_to_the_last_bit():
             assert (np.isnan(lane) and value is None) or lane == value, name
         assert study.statics["anti_squat_dynamic"][i] == alone.statics.anti_squat_dynamic
         assert study.statics["instant_centre_x"][i] == alone.statics.instant_centre.x
+
+
+def test_studies_in_two_threads_at_once():
+    rates = np.linspace(40_000.0, 70_000.0, 120)
+    path = "rear.springs.0.spring.rate"
+    expected = sweep(car_with({}), {path: rates}).figures["peak_rear_load"]
+    with ThreadPoolExecutor(4) as pool:
+        runs = list(pool.map(lambda _: sweep(car_with({}), {path: rates}), range(4)))
+    for run in runs:
+        assert np.array_equal(run.figures["peak_rear_load"], expected)
+
+
+@pytest.mark.skipif(not hasattr(os, "fork"), reason="only systems that fork")
+def test_a_study_after_a_fork():
+    """A worker that warmed up, then forked: the child must be able to study."""
+    code = (
+        "import os, sys; from solver.warming import warm; from solver.sweeping import sweep;"
+        "from tests.solver.cars import car_with; warm(); change = {'hit.scale': [1.0] * 60};"
+        "sweep(car_with({}), change); child = os.fork();"
+        "child or os._exit(sweep(car_with({}), change).codes.max());"
+        "sys.exit(os.waitpid(child, 0)[1])"
+    )
+    env = {**os.environ, "PYTHONPATH": os.pathsep.join(sys.path), "NUMBA_NUM_THREADS": "2"}
+    assert subprocess.run([sys.executable, "-c", code], env=env, timeout=120).returncode == 0
 
 
 def test_cars_of_every_make_up_in_one_study():
