@@ -17,7 +17,9 @@ class Shop(models.Model):
     """One chassis shop: everything but a user belongs to exactly one."""
 
     name = models.CharField(max_length=80)
-    units = models.CharField(max_length=6, choices=[("us", "inches and pounds"), ("metric", "millimetres and kilograms")], default="us")
+    UNITS = [("us", "inches and pounds"), ("metric", "millimetres and kilograms")]
+
+    units = models.CharField(max_length=6, choices=UNITS, default="us")
     paper = models.CharField(max_length=6, choices=[("letter", "US Letter"), ("a4", "A4")], default="letter")
     address = models.CharField(max_length=200, blank=True)
     created_at = models.DateTimeField(auto_now_add=True)
@@ -95,6 +97,9 @@ class AccessToken(models.Model):
 
     objects = ScopedManager(shop="shop")
 
+    def __str__(self) -> str:
+        return f"key for {self.name}"
+
     @staticmethod
     def digest_of(key: str) -> str:
         return hashlib.sha256(key.encode()).hexdigest()
@@ -129,3 +134,6 @@ class LogEntry(models.Model):
             models.Index(fields=["shop", "-at"]),
             models.Index(fields=["shop", "object_type", "object_id"]),
         ]
+
+    def __str__(self) -> str:
+        return f"{self.action} {self.object_name}"

@@ -26,7 +26,8 @@ def test_a_new_member_gets_an_address_that_sets_a_password_once(client, world):
     assert not user.has_usable_password() or not user.check_password("")
     client.logout()
     form = client.get(address, follow=True)
-    sent = client.post(form.redirect_chain[-1][0], {"new_password1": "brisk-lantern-44", "new_password2": "brisk-lantern-44"})
+    password = {"new_password1": "brisk-lantern-44", "new_password2": "brisk-lantern-44"}
+    sent = client.post(form.redirect_chain[-1][0], password)
     assert sent.status_code == 302
     user.refresh_from_db()
     assert user.check_password("brisk-lantern-44")

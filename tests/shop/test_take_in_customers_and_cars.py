@@ -102,7 +102,10 @@ def test_a_reader_may_look_only(client, world):
     assert client.post(reverse("garage:car-edit", args=[world.car.pk]), {}).status_code == 403
 
 
-@pytest.mark.parametrize("address", ["/cars/{car}/", "/cars/{car}/edit", "/customers/{customer}/", "/customers/{customer}/edit"])
+PAGES = ["/cars/{car}/", "/cars/{car}/edit", "/customers/{customer}/", "/customers/{customer}/edit"]
+
+
+@pytest.mark.parametrize("address", PAGES)
 def test_a_stranger_finds_nothing(client, world, address):
     where = address.format(car=world.car.pk, customer=world.car.customer_id)
     assert signed_in(client, world.owner).get(where).status_code == 200
