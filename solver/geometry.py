@@ -32,7 +32,6 @@ def parallel(a: Any, b: Any, c: Any, d: Any, w: Any) -> Any:
     return np.abs(w) <= 1e-9 * size
 
 
-def turned(angle: Any, point: tuple) -> tuple:
-    """A body's point turned by an angle, counter-clockwise in x-z."""
-    cosine, sine = np.cos(angle), np.sin(angle)
+def turned(cosine: Any, sine: Any, point: tuple) -> tuple:
+    """A body's point turned counter-clockwise in x-z by the angle of this cosine and sine."""
     return cosine * point[0] - sine * point[1], sine * point[0] + cosine * point[1]

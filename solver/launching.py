@@ -114,7 +114,7 @@ def launch(car: Car, longest_step: float = LONGEST_STEP) -> Launch:
     return Launch(
         statics=at_rest,
         modes=modes_of_row(row),
-        figures={name: plain(float(value[0])) for name, value in figures.items()},
+        figures={name: told(value.item()) for name, value in figures.items()},
         histories=histories,
         events=event_list(log, count),
         settled=bool(np.abs(states[-1, [7 + L.Z, 7 + L.PITCH, 7 + L.SLIDE]]).max() < 0.02),
@@ -125,6 +125,11 @@ def launch(car: Car, longest_step: float = LONGEST_STEP) -> Launch:
             "step_error": float(kept[L.A_ERROR]),
         },
     )
+
+
+def told(value: float) -> float | None:
+    """A figure, or None where there is nothing to tell."""
+    return value if math.isfinite(value) else None
 
 
 def plain(value: Any) -> Any:

@@ -105,35 +105,38 @@ def histories_of(car: Car, p: np.ndarray, states: np.ndarray, outputs: np.ndarra
     dict of str to float array (reports,)
     """
     lower_plan, upper_plan = plan_angles(car)
+    # One copy, channel by channel: columns of the record are slow to walk.
+    states, outputs = np.ascontiguousarray(states.T), np.ascontiguousarray(outputs.T)
     named = {
-        "t": np.arange(len(states)) * car.run.output_step,
-        "pitch": states[:, L.PITCH],
-        "cg_x": states[:, L.X],
-        "cg_z": states[:, L.Z],
-        "housing_angle": states[:, L.HOUSING],
-        "upper_link_force": outputs[:, L.O_UPPER] / np.cos(upper_plan),
-        "lower_link_force": outputs[:, L.O_LOWER] / np.cos(lower_plan),
+        "t": np.arange(states.shape[1]) * car.run.output_step,
+        "pitch": states[L.PITCH],
+        "cg_x": states[L.X],
+        "cg_z": states[L.Z],
+        "housing_angle": states[L.HOUSING],
+        "upper_link_force": outputs[L.O_UPPER] / np.cos(upper_plan),
+        "lower_link_force": outputs[L.O_LOWER] / np.cos(lower_plan),
     }
-    named.update({name: outputs[:, at] for name, at in _DIRECT.items()})
+    named.update({name: outputs[at] for name, at in _DIRECT.items()})
     for name, at in _DRIVEN.items():
         there = has_engine(car) if name == "engine_speed" else not isinstance(car.hit, Hit)
-        named[name] = outputs[:, at] if there else np.full(len(outputs), np.nan)
+        named[name] = outputs[at] if there else np.full(outputs.shape[1], np.nan)
     named.update(_moving_centre(car, p, states))
-    # Columns of the record would keep all of it alive and are slow to walk.
-    return {name: np.ascontiguousarray(values) for name, values in named.items()}
+    return named
 
 
 def _moving_centre(car: Car, p: np.ndarray, states: np.ndarray) -> dict[str, np.ndarray]:
     """Instant centre and the trade's anti-squat at each instant, and the distance run."""
-    x, z, pitch = states[:, L.X] + p[L.SPRUNG_X], states[:, L.Z] + p[L.SPRUNG_Z], states[:, L.PITCH]
-    axle_x, axle_z = states[:, L.HX], states[:, L.HZ] + p[L.REAR_RADIUS]
+    x, z, pitch = states[L.X] + p[L.SPRUNG_X], states[L.Z] + p[L.SPRUNG_Z], states[L.PITCH]
+    axle_x, axle_z = states[L.HX], states[L.HZ] + p[L.REAR_RADIUS]
+
+    body, housing = (np.cos(pitch), np.sin(pitch)), (np.cos(states[L.HOUSING]), np.sin(states[L.HOUSING]))
 
     def on_chassis(px: Any, pz: Any) -> tuple:
-        dx, dz = turned(pitch, (px - p[L.SPRUNG_X], pz - p[L.SPRUNG_Z]))
+        dx, dz = turned(*body, (px - p[L.SPRUNG_X], pz - p[L.SPRUNG_Z]))
         return x + dx, z + dz
 
     def on_housing(px: Any, pz: Any) -> tuple:
-        dx, dz = turned(states[:, L.HOUSING], (px, pz - p[L.REAR_RADIUS]))
+        dx, dz = turned(*housing, (px, pz - p[L.REAR_RADIUS]))
         return axle_x + dx, axle_z + dz
 
     lower = on_chassis(p[L.LCX], p[L.LCZ]), on_housing(p[L.LHX], p[L.LHZ])
@@ -143,7 +146,7 @@ def _moving_centre(car: Car, p: np.ndarray, states: np.ndarray) -> dict[str, np.
     meet_x, meet_z, w = meeting(a, b, c, d)
     gone = parallel(a, b, c, d, w)
     w = np.where(gone, np.nan, w)
-    front_x, front_z = on_chassis(p[L.WHEELBASE], p[L.FRONT_RADIUS] + states[:, L.SLIDE])
+    front_x, front_z = on_chassis(p[L.WHEELBASE], p[L.FRONT_RADIUS] + states[L.SLIDE])
     height = (p[L.SPRUNG_MASS] * z + p[L.REAR_MASS] * axle_z + p[L.FRONT_MASS] * front_z) / car.mass
     with np.errstate(divide="ignore", invalid="ignore"):
         return {

@@ -49,6 +49,11 @@ SPECIALS = {
         "rear.springs.0.damper": {"table": [[-1.0, -1900], [-0.03, -500], [0, 0], [0.06, 450], [1.0, 1400]]},
         "front.damper": {"table": [[-1.0, -700], [-0.1, -250], [0, 0], [0.1, 300], [1.0, 1200]]},
     },
+    "steep bleed": {
+        # A slow-speed bleed of 40 000 N s/m up to 20 mm/s, then 600: far stiffer than any tyre.
+        "rear.springs.0.damper": {"table": [[-2.0, -2584.4], [-0.02, -1040.0], [0, 0], [0.02, 800], [2.0, 1988]]},
+        "front.damper": {"table": [[-2.0, -1200], [-0.03, -390], [0, 0], [0.03, 300], [2.0, 1100]]},
+    },
     "separate spring and shock": {
         "rear.springs": [
             {"chassis": [0.19, 0.56], "housing": [0.17, 0.356], "spring": {"rate": 73000.0}},
