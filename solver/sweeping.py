@@ -26,6 +26,7 @@ CHUNK = 500
 REFUSALS = {
     L.BAD_WEIGHTS: "the weights do not stand together: CG, axle weights and radii",
     L.BAD_LINKS: "the bars are crossed, share a pin, are too short or do not run forward",
+    L.LINKS_LOCK: "the bars lock before the axle has gone through its travel",
     L.NO_REST: "the springs and bars cannot hold the car at ride height",
     L.NOT_RUN: "not solved: the study was stopped",
 }

@@ -15,7 +15,7 @@ from solver.faults import CarError, LaunchFailed
 from solver.launching import launch
 from solver.modes import modes
 from solver.statics import statics
-from solver.sweeping import sweep, sweepable
+from solver.sweeping import changed, sweep, sweepable
 from tests.solver.cars import car_with, door_car, reference
 
 ROOT = Path(__file__).parents[2]
@@ -144,6 +144,30 @@ def test_a_lane_that_cannot_be_solved_says_why_and_leaves_the_rest():
     study = sweep(car_with({}), {"rear.linkage.upper.chassis.z": [0.3429, 0.15, 0.36]})
     assert study.reason(0) is None and "crossed" in study.reason(1)
     assert np.isfinite(study.figures["peak_rear_load"]).tolist() == [True, False, True]
+
+
+def test_a_lane_is_refused_where_the_car_would_be():
+    random = np.random.default_rng(5)
+    lanes = 300
+    changes = {
+        "rear.linkage.lower.chassis.x": random.uniform(0.05, 0.6, lanes),
+        "rear.linkage.lower.chassis.z": random.uniform(0.1, 0.4, lanes),
+        "rear.linkage.upper.chassis.x": random.uniform(0.05, 0.6, lanes),
+        "rear.linkage.upper.chassis.z": random.uniform(0.2, 0.5, lanes),
+    }
+    base = car_with({"run": {"duration": 0.01, "output_step": 0.01}})
+    study = sweep(base, changes)
+    refused = set()
+    for lane in range(lanes):
+        data = car_to_dict(base)
+        for path, values in changes.items():
+            data = changed(data, path, float(values[lane]))
+        try:
+            launch(car_from_dict(data))
+        except CarError:
+            refused.add(lane)
+    assert refused == set(np.flatnonzero(study.codes).tolist()) and len(refused) > 20
+    assert any("lock" in study.reason(lane) for lane in refused)
 
 
 def test_a_study_refuses_what_it_cannot_vary():
