@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import Any
 
+from drf_spectacular.utils import extend_schema_field
 from rest_framework import serializers
 
 from shop.garage.models import Bracket, Car, Customer, Measurement, Survey
@@ -130,6 +131,7 @@ class PartSerializer(serializers.ModelSerializer):
         fields = ["id", "kind", "name", "versions", "created_at", "archived_at"]
 
 
+@extend_schema_field({"oneOf": [{"type": "string"}, {"type": "number"}, {"type": "object"}]})
 class SettingField(serializers.Field):
     """A setting as a person types it ("165 lb/in"), a number in the shop's unit, or {"typed", "unit"}."""
 
