@@ -11,6 +11,8 @@ from collections.abc import Mapping
 from dataclasses import asdict, dataclass, field
 from typing import Any
 
+import numpy as np
+
 import solver
 from shop.drawing.scene import Scene, Strut
 from shop.garage.models import Survey
@@ -23,6 +25,7 @@ from shop.setups.models import Revision
 from shop.units import default_unit, show, unit_of
 from solver import atmosphere, comparing, power, significance, slip_check, timing, weather, weights
 from solver.carfile import parse_car
+from solver.hole_field import Masses, four_link_field, ladder_bar_field
 from solver.many import sweep_files
 from solver.statics import statics as solve_statics
 
@@ -277,6 +280,26 @@ def _strut(line: Mapping[str, Any]) -> Strut:
     both = line["spring"] is not None and line["damper"] is not None
     label = "spring and shock" if both else "spring" if line["spring"] is not None else "shock"
     return Strut(tuple(line["chassis"]), tuple(line["housing"]), label)
+
+
+def hole_field(inputs: car_file.Inputs, pins: Mapping[str, np.ndarray], travel: float) -> dict[str, np.ndarray]:
+    """Statics of many hole choices as arrays over them, SI, NaN where there is none.
+
+    `pins` has the surveyed point of each choice by bracket, shape (choices, 2); `travel` is how far
+    (m) the axle goes either way for the pinion's change.
+    """
+    built, stance = car_file.build_from(inputs, ""), car_file.attitude(inputs)
+    moved = {
+        place: np.column_stack(stance.move((points[:, 0], points[:, 1]))) if place.endswith("chassis") else points
+        for place, points in pins.items()
+    }
+    rear = built["rear"]
+    masses = Masses(built["wheelbase"], built["cg"]["z"], built["mass"], rear["unsprung_mass"], rear["tyre_radius"])
+    ends = (travel, -travel)
+    if inputs.linkage == "ladder-bar":
+        return vars(ladder_bar_field(moved["ladder_chassis"], masses, travel=ends))
+    angles = tuple(inputs.survey.get(f"{link}_plan_angle", 0.0) for link in ("lower", "upper"))
+    return vars(four_link_field(**moved, masses=masses, plan_angles=angles, travel=ends))
 
 
 def preview(revision: Revision, units: str) -> Preview:

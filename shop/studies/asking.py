@@ -58,7 +58,7 @@ def axis_fields(revision: Revision, units: str, typed: Mapping[str, str] | None 
             _field(place, BRACKETS[place], True, "", f"hole {base.get(place, 0):g}", every, True, typed, faults, every)
         )
     for key, steps in SETTINGS.items():
-        if key not in base and key not in ("ballast_weight",):
+        if key not in base or (revision.hit_table and key in ("hit_peak", "hit_rise")):
             continue
         quantity = BY_KEY[key]
         unit = default_unit(quantity.dimension, units)

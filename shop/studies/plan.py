@@ -1,8 +1,9 @@
 """Which choices a study looks at: axes, how they combine, and choice number n of them.
 
 A plan is plain data, so that a study can be run again from its stored input:
-{"mode": "every" | "one" | "sample" | "few", "axes": [{"key", "values"}], "size", "seed"}.
-Mode "few" takes every choice that differs from the car as it is in at most `size` things.
+{"mode": "every" | "one" | "sample" | "few" | "listed", "axes": [{"key", "values"}], "size", "seed"}.
+Mode "few" takes every choice that differs from the car as it is in at most `size` things; "listed"
+takes those of every combination whose numbers stand in "numbers".
 A key is a bracket place (values: hole numbers) or a setting of a revision (values: SI).
 Choices are numbered from 0; number n is worked out, never looked up.
 """
@@ -10,8 +11,8 @@ Choices are numbered from 0; number n is worked out, never looked up.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Mapping
-from dataclasses import dataclass, field
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 from itertools import combinations, product
 from typing import Any
@@ -31,6 +32,8 @@ MODES = {
     "sample": "a spread of samples over all of them",
     "few": "every combination of a few changes",
 }
+# What the form offers are MODES; a list comes from a page on which choices were picked.
+LISTED = "listed"
 MOST_CHANGES = 3
 
 Choice = dict[str, float | int]
@@ -61,6 +64,7 @@ class Plan:
     base: Mapping[str, float] = field(default_factory=dict)
     size: int = 0
     seed: int = 1
+    numbers: tuple[int, ...] = ()
 
     @property
     def combinations(self) -> int:
@@ -70,6 +74,8 @@ class Plan:
     def __len__(self) -> int:
         if self.mode == "every":
             return self.combinations
+        if self.mode == LISTED:
+            return len(self.numbers)
         if self.mode == "one":
             return 1 + sum(len(self._others(axis)) for axis in self.axes)
         if self.mode == "few":
@@ -90,6 +96,8 @@ class Plan:
         """Choices number `start` up to, not including, `stop`."""
         if self.mode == "every":
             yield from (self._combination(number) for number in range(start, stop))
+        elif self.mode == LISTED:
+            yield from (self._combination(number) for number in self.numbers[start:stop])
         else:
             yield from self._listed[start:stop]
 
@@ -135,19 +143,22 @@ class Plan:
             "base": dict(self.base),
             "size": self.size,
             "seed": self.seed,
+            **({"numbers": list(self.numbers)} if self.mode == LISTED else {}),
         }
 
 
 def read_plan(data: Mapping[str, Any]) -> Plan:
     """A plan from plain data; Refused in words when it asks for nothing, or for too much."""
     mode = data.get("mode", "every")
-    if mode not in MODES:
+    if mode not in MODES and mode != LISTED:
         raise Refused({"mode": f"“{mode}” is not a way to combine; choose {', '.join(MODES.values())}"})
     axes = tuple(_read_axis(axis) for axis in data.get("axes", []))
     keys = [axis.key for axis in axes]
     if len(set(keys)) < len(keys):
         raise Refused({"axes": "the same thing is varied twice"})
     plan = Plan(mode, axes, data.get("base", {}), int(data.get("size") or 0), int(data.get("seed") or 1))
+    if mode == LISTED:
+        plan = replace(plan, numbers=_read_numbers(data.get("numbers", []), plan.combinations))
     if not axes or all(len(axis.values) < 2 for axis in axes):
         raise Refused({"axes": "nothing is varied: choose at least one bracket or setting with two values or more"})
     if mode == "sample" and not 2 <= plan.size <= MOST_CHOICES:
@@ -157,6 +168,14 @@ def read_plan(data: Mapping[str, Any]) -> Plan:
     if len(plan) > MOST_CHOICES:
         raise Refused({"axes": _too_many(plan)})
     return plan
+
+
+def _read_numbers(numbers: Sequence[Any], combinations: int) -> tuple[int, ...]:
+    if not numbers:
+        raise Refused({"numbers": "no choice is left: widen the windows until some are"})
+    if not all(isinstance(number, int) and 0 <= number < combinations for number in numbers):
+        raise Refused({"numbers": f"a choice's number is a whole one from 0 to {combinations - 1:,}"})
+    return tuple(dict.fromkeys(numbers))
 
 
 def _read_axis(data: Mapping[str, Any]) -> Axis:
@@ -177,11 +196,14 @@ def _read_axis(data: Mapping[str, Any]) -> Axis:
 
 
 def _too_many(plan: Plan) -> str:
+    if plan.mode == LISTED:
+        return f"{len(plan):,} choices are left; at most {MOST_CHOICES:,} are solved in one study. Narrow the windows"
     widest = max(plan.axes, key=lambda axis: len(axis.values))
     if plan.mode == "few":
         return (
-            f"{len(plan):,} choices of up to {plan.size} changes; at most {MOST_CHOICES:,} are solved in one study. Narrow it: "
-            f"fewer changes at once, fewer values of “{widest.label}” ({len(widest.values)} now), or fewer things to change"
+            f"{len(plan):,} choices of up to {plan.size} changes; at most {MOST_CHOICES:,} are solved in one study. "
+            f"Narrow it: fewer changes at once, fewer values of “{widest.label}” ({len(widest.values)} now), "
+            "or fewer things to change"
         )
     return (
         f"{len(plan):,} combinations; at most {MOST_CHOICES:,} are solved in one study. Narrow it: fewer values of "

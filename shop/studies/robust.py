@@ -11,6 +11,7 @@ from typing import Any
 import numpy as np
 
 from shop.launches import bridge
+from shop.refusals import Refused
 from shop.setups.car_file import build_from
 from shop.studies.plan import Choice
 from shop.studies.ranking import Limit, within
@@ -25,7 +26,7 @@ def share_within(stored: Mapping[str, Any], choices: list[Choice], limits: list[
     keys = list(stored["tolerances"])
     widths = np.array([stored["tolerances"][key]["tolerance"] for key in keys])
     draws = np.random.default_rng(seed).uniform(-1, 1, (DRAWS, len(keys))) * widths
-    files = []
+    files: list[dict[str, Any] | None] = []
     for choice in choices:
         # The holes a choice is drilled for move with their bracket's tolerance, whichever they are.
         numbers = {**stored["holes"], **{key: int(value) for key, value in choice.items() if key in stored["brackets"]}}
@@ -33,7 +34,10 @@ def share_within(stored: Mapping[str, Any], choices: list[Choice], limits: list[
             car = {**stored, "holes": numbers}
             for key, by in zip(keys, draw, strict=True):
                 car = moved(car, key, by)
-            files.append(build_from(inputs_with(car, choice), "draw"))
+            try:
+                files.append(build_from(inputs_with(car, choice), "draw"))
+            except Refused:
+                files.append(None)
     columns, _ = bridge.sweep(files)
     known = {limit.figure: columns.get(limit.figure, np.full(len(files), np.nan)) for limit in limits}
     meets = within(known, limits, len(files)).reshape(len(choices), DRAWS)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Mapping
 from dataclasses import dataclass
 
@@ -61,12 +62,17 @@ def change_words(key: str, value: float, units: str) -> str:
     return f"{quantity.label.lower()} {show(value, quantity.dimension, default_unit(quantity.dimension, units))}"
 
 
+def same(value: float, other: float) -> bool:
+    # Far below any step of the trade; a relative measure alone would never call two zeros of ballast alike.
+    return math.isclose(value, other, rel_tol=1e-9, abs_tol=1e-12)
+
+
 def changes_of(choice: Choice, base: Mapping[str, float], units: str) -> list[str]:
     """What a choice changes on the revision, in words; empty for the revision itself."""
     return [
         change_words(key, value, units)
         for key, value in choice.items()
-        if key not in base or not np.isclose(value, base[key], rtol=1e-9)
+        if key not in base or not same(value, base[key])
     ]
 
 
@@ -133,7 +139,7 @@ def _fewest(study: Study, among: np.ndarray, score: np.ndarray) -> np.ndarray:
     numbers = np.flatnonzero(among)
     changes = {
         number: sum(
-            not np.isclose(value, plan.base[key], rtol=1e-9) for key, value in choice.items() if key in plan.base
+            not same(value, plan.base[key]) for key, value in choice.items() if key in plan.base
         )
         for number, choice in enumerate(plan.between(0, study.choices))
         if among[number]

@@ -7,8 +7,9 @@ from typing import Any
 
 import numpy as np
 
-from shop.launches.bridge import SOLVER_VERSION
+from shop.launches.bridge import SOLVER_VERSION, CannotSolve
 from shop.launches.models import Job
+from shop.launches.services import MOST_ATTEMPTS
 from shop.studies import services, work
 from shop.studies.models import Study
 from shop.studies.plan import read_plan
@@ -25,6 +26,9 @@ def run(job: Job, report: Callable[[float], None]) -> dict[str, Any] | None:
     study = Study.objects.get(job=job)
     report(services.share_done(study))
     while (chunk := services.take_chunk(study)) is not None:
+        if chunk.attempt > MOST_ATTEMPTS:
+            words = f"the worker died {MOST_ATTEMPTS} times on choices {chunk.start + 1} to {chunk.stop}"
+            raise CannotSolve(f"{words}; the rows of the others stay")
         columns, refused = work.solve_choices(job.input, chunk.start, chunk.stop)
         services.keep_chunk(chunk, work.packed(columns), refused)
         report(services.share_done(study))

@@ -18,7 +18,7 @@ from shop.refusals import Refused, Stale
 from shop.setups.models import Revision
 from shop.studies import work
 from shop.studies.models import Chunk, Study, Yardstick
-from shop.studies.plan import read_plan
+from shop.studies.plan import Plan, read_plan
 from shop.studies.spread import tolerances_of
 
 # The first rows should be there before a person looks up; after that, chunks large enough to be cheap.
@@ -42,6 +42,7 @@ def request_study(
         raise Refused("a study starts from an issued revision; issue the draft first")
     plan = work.with_base(read_plan(plan_data), revision)
     stored = work.stored_input(revision, plan)
+    _all_drilled(plan, stored["brackets"])
     if plan.mode == "few":
         stored["tolerances"] = tolerances_of(revision)
     count = len(plan)
@@ -69,6 +70,18 @@ def request_study(
         for _ in range(HELPERS):
             transaction.on_commit(lambda: send(job))
     return study
+
+
+def _all_drilled(plan: Plan, brackets: Mapping[str, Any]) -> None:
+    faults = {}
+    for axis in plan.axes:
+        if axis.is_hole:
+            count = len(brackets.get(axis.key, []))
+            missing = [f"{number:g}" for number in axis.values if not 1 <= number <= count]
+            if missing:
+                faults[axis.key] = f"{axis.label} has holes 1 to {count}; not drilled: {', '.join(missing)}"
+    if faults:
+        raise Refused(faults)
 
 
 def take_chunk(study: Study) -> Chunk | None:

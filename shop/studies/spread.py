@@ -9,7 +9,6 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
@@ -29,16 +28,6 @@ SQRT3 = math.sqrt(3.0)
 BETTER = 0.5
 # A setting that stands on the car overrides what the survey found for it.
 _SET_BY = {surveyed: setting for setting, surveyed in FROM_SURVEY.items()}
-
-
-@dataclass(frozen=True)
-class Source:
-    """One value that is known only within a tolerance."""
-
-    key: str
-    label: str
-    uncertainty: float
-    origin: str
 
 
 def tolerances_of(revision: Revision) -> dict[str, dict[str, Any]]:

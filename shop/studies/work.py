@@ -26,11 +26,13 @@ def stored_input(revision: Revision, plan: Plan | None = None) -> dict[str, Any]
     brackets = {bracket.place: bracket.si_holes() for bracket in revision.survey.brackets.all()}
     return {
         "survey": dict(inputs.survey),
-        "settings": dict(inputs.settings),
+        # Ballast can be tried before anybody has said where it would sit; what is set wins.
+        "settings": {**usual_ballast_place(inputs), **inputs.settings},
         "holes": dict(revision.holes),
         "brackets": {place: [list(hole) for hole in holes] for place, holes in brackets.items()},
         "linkage": inputs.linkage,
         "hit_table": inputs.hit_table,
+        "hit_force": inputs.hit_force,
         **({"plan": plan.to_dict()} if plan else {}),
     }
 
@@ -50,7 +52,12 @@ def inputs_with(stored: Mapping[str, Any], choice: Choice) -> Inputs:
         if not 1 <= number <= len(drilled):
             raise Refused({place: f"hole {number} is not drilled; the bracket has 1 to {len(drilled)}"})
         points[place] = tuple(drilled[number - 1])
-    return Inputs(stored["survey"], settings, points, stored["linkage"], stored["hit_table"])
+    return Inputs(stored["survey"], settings, points, stored["linkage"], stored["hit_table"], stored.get("hit_force"))
+
+
+def usual_ballast_place(inputs: Inputs) -> dict[str, float]:
+    """Over the front axle, at its height: where ballast does most against front lift. Common practice, no source."""
+    return {"ballast_x": inputs.survey["wheelbase"], "ballast_z": inputs.survey["front_tyre_radius"]}
 
 
 def solve_choices(stored: Mapping[str, Any], start: int, stop: int) -> tuple[Columns, dict[str, str]]:
@@ -95,6 +102,8 @@ def base_values(revision: Revision, keys: list[str]) -> dict[str, float]:
     """What the revision itself has on each axis: hole number, or setting in SI (survey's where unset)."""
     inputs = inputs_of(revision)
     known = {**revision.holes, **{key: inputs.value(key) for key in keys if key not in revision.holes}}
+    if "ballast_weight" in keys and known["ballast_weight"] is None:
+        known["ballast_weight"] = 0.0
     return {key: float(known[key]) for key in keys if known.get(key) is not None}
 
 

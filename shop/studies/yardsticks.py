@@ -66,6 +66,11 @@ def study_measure(key: str, units: str, linkage: str) -> Measure:
     return measure(key, units, linkage)
 
 
+def step_text(known: Measure, step: float) -> str:
+    """A difference with its sign; empty where it rounds to nothing in the unit that is shown."""
+    return "" if known.text(abs(step)) == known.text(0.0) else known.difference(step)
+
+
 def read_limits(typed: Mapping[str, str], units: str, linkage: str) -> dict[str, dict[str, float | None]]:
     """Limits in SI by figure, from `<figure>_least` and `<figure>_most` in the shop's units; Refused by field."""
     limits: dict[str, dict[str, float | None]] = {}

@@ -21,6 +21,19 @@
     return { x, y, text, customdata: numbers };
   }
 
+  // Marks lie on each other by the hundred; of those in one small square one is enough, and a tablet keeps up.
+  function thin(trace) {
+    const wide = Math.max(...trace.x) - Math.min(...trace.x) || 1, tall = Math.max(...trace.y) - Math.min(...trace.y) || 1;
+    const taken = new Set(), kept = { x: [], y: [], text: [], customdata: [] };
+    trace.x.forEach((x, at) => {
+      const cell = Math.floor((200 * x) / wide) + " " + Math.floor((100 * trace.y[at]) / tall);
+      if (taken.has(cell)) return;
+      taken.add(cell);
+      for (const name of Object.keys(kept)) kept[name].push(trace[name][at]);
+    });
+    Object.assign(trace, kept);
+  }
+
   function axis(channel, ink) {
     const unit = channel.unit ? " (" + channel.unit + ")" : "";
     return { title: { text: channel.label + unit }, gridcolor: ink.hair, zerolinecolor: ink.faint, automargin: true };
@@ -36,13 +49,12 @@
     }
     const hover = "%{text}<br>%{x}, %{y}<extra></extra>";
     const traces = [
-      { ...points(data, (at) => !data.meets[at], names), name: "outside the limits", mode: "markers", type: "scattergl", hovertemplate: hover, marker: { color: ink.faint, symbol: "x-thin", line: { width: 1, color: ink.faint }, size: 6 } },
-      { ...points(data, (at) => data.meets[at] && !onFront.has(at), names), name: "within the limits", mode: "markers", type: "scattergl", hovertemplate: hover, marker: { color: ink.one, size: 6, opacity: 0.6 } },
+      { ...points(data, (at) => !data.meets[at], names), name: "outside the limits", mode: "markers", type: "scatter", hovertemplate: hover, marker: { color: ink.faint, symbol: "x-thin", line: { width: 1, color: ink.faint }, size: 6 } },
+      { ...points(data, (at) => data.meets[at] && !onFront.has(at), names), name: "within the limits", mode: "markers", type: "scatter", hovertemplate: hover, marker: { color: ink.one, size: 6, opacity: 0.6 } },
       { ...line, name: "no other beats these", mode: "lines+markers", type: "scatter", hovertemplate: hover, marker: { color: ink.two, symbol: "diamond", size: 11 }, line: { color: ink.two, width: 1.5, dash: "dot" } },
     ];
     // Plain SVG where the browser has no WebGL.
-    const canvas = document.createElement("canvas");
-    if (!canvas.getContext("webgl")) traces.forEach((trace) => { trace.type = "scatter"; });
+    traces.slice(0, 2).forEach(thin);
     Plotly.react(place, traces, {
       paper_bgcolor: ink.sheet, plot_bgcolor: ink.sheet, font: { color: ink.ink }, margin: { t: 20, r: 20 }, height: 460,
       xaxis: axis(data.columns[names[0]], ink), yaxis: axis(data.columns[names[1]], ink), legend: { orientation: "h", y: -0.2 }, hovermode: "closest",

@@ -27,6 +27,19 @@ def test_one_at_a_time_starts_from_what_is_on_the_car():
         assert sum(choice[key] != plan.base[key] for key in plan.base) == 1
 
 
+@pytest.mark.parametrize("changes", [1, 2, 3])
+def test_few_changes_are_all_choices_that_differ_in_no_more_and_the_fewest_come_first(changes):
+    base = {"lower_chassis": 2, "upper_chassis": 1, "rear_spring_rate": 2e4}
+    plan = Plan("few", HOLES, base=base, size=changes)
+    choices = list(plan.between(0, len(plan)))
+    differing = [sum(choice[key] != base[key] for key in base) for choice in choices]
+    every = [dict(zip(base, values, strict=True)) for values in itertools.product(*(axis.values for axis in HOLES))]
+    expected = [choice for choice in every if sum(choice[key] != base[key] for key in base) <= changes]
+    assert len(choices) == len(expected)
+    assert all(choice in choices for choice in expected)
+    assert differing == sorted(differing)
+
+
 def test_a_sample_can_be_drawn_again_and_spreads_over_every_value():
     plan = Plan("sample", HOLES, size=64, seed=9)
     first, again = list(plan.between(0, 64)), list(plan.between(0, 64))

@@ -25,10 +25,10 @@ REFUSED = 422
 def new(request: HttpRequest, car_id: int) -> HttpResponse:
     """A revision that is not saved yet; sending it saves a draft, and issues it where that was asked."""
     car = get_object_or_404(Car, pk=car_id)
-    survey = _survey(request, car)
+    survey = survey_asked(request, car)
     if survey is None:
         return render(request, "setups/measure_first.html", {"car": car})
-    draft = services.new_revision(request.member, car, survey, _parent(request, car))
+    draft = services.new_revision(request.member, car, survey, parent_asked(request, car))
     newest = services.newest_number(car)
     if request.method != "POST":
         return form_page(request, draft, form_of(draft, request.shop, newest=newest))
@@ -67,10 +67,10 @@ def edit(request: HttpRequest, pk: int) -> HttpResponse:
 def preview(request: HttpRequest, car_id: int) -> HttpResponse:
     """The drawing, the figures and the notes beside the fields for what is typed now. Saves nothing."""
     car = get_object_or_404(Car, pk=car_id)
-    survey = _survey(request, car)
+    survey = survey_asked(request, car)
     if survey is None:
         raise Http404("this car has no survey")
-    draft = services.new_revision(request.member, car, survey, _parent(request, car))
+    draft = services.new_revision(request.member, car, survey, parent_asked(request, car))
     form = form_of(draft, request.shop, request.POST)
     return preview_parts(request, draft, form)
 
@@ -96,7 +96,7 @@ def _revisions() -> QuerySet[Revision]:
     return related.prefetch_related(*Revision.WITH_SURVEY)
 
 
-def _survey(request: HttpRequest, car: Car) -> Survey | None:
+def survey_asked(request: HttpRequest, car: Car) -> Survey | None:
     """The survey asked for, else the car's newest."""
     asked = request.GET.get("survey", "")
     surveys = car.surveys.prefetch_related("measurements", "brackets")
@@ -105,7 +105,7 @@ def _survey(request: HttpRequest, car: Car) -> Survey | None:
     return surveys.order_by("-number").first()
 
 
-def _parent(request: HttpRequest, car: Car) -> Revision | None:
+def parent_asked(request: HttpRequest, car: Car) -> Revision | None:
     """The issued revision asked for, else the car's newest; `from=survey` asks for none."""
     asked = request.GET.get("from", "")
     issued = _revisions().filter(car=car, number__isnull=False)

@@ -21,6 +21,7 @@ from shop.setups.figures import Figures, beside, figures_at_rest, headline
 from shop.setups.form_rows import rows_of, sections_of
 from shop.setups.forms import RevisionForm
 from shop.setups.models import Revision
+from shop.setups.trying import try_channels
 
 
 def form_page(
@@ -30,6 +31,7 @@ def form_page(
     context = {"car": draft.car, "draft": draft, "form": form, **_meaning(request, draft, form)}
     context["query"] = _query(draft)
     context["preview_url"] = f"{reverse('setups:preview', args=[draft.car_id])}?{_query(draft)}"
+    context["try_channels"] = try_channels(request.shop.units, draft.survey.linkage)
     context["may_write"] = request.member.may(WRITE)
     context["may_issue"] = request.member.may(ISSUE)
     context["next_number"] = services.newest_number(draft.car) + 1

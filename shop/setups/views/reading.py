@@ -11,7 +11,7 @@ from django.shortcuts import get_object_or_404, redirect, render
 from shop.drawing.side_view import side_view
 from shop.launches import bridge
 from shop.people.access import shop_view
-from shop.people.permissions import WRITE
+from shop.people.permissions import ISSUE, WRITE
 from shop.refusals import Refused
 from shop.setups.differences import survey_changes
 from shop.setups.figures import beside, figures_at_rest
@@ -35,6 +35,7 @@ def revision(request: HttpRequest, pk: int) -> HttpResponse:
         "job": chosen.jobs.filter(kind="launch").order_by("-id").first(),
         "children": chosen.children.filter(number__isnull=False).order_by("number"),
         "may_write": request.member.may(WRITE),
+        "may_issue": request.member.may(ISSUE),
         **_at_rest(chosen, request.shop.units),
     }
     return render(request, "setups/revision.html", context)

@@ -70,15 +70,16 @@ def count(request: HttpRequest, pk: int) -> HttpResponse:
 def _page(request: HttpRequest, revision: Revision, typed, faults, status: int = 200) -> HttpResponse:
     fields = axis_fields(revision, request.shop.units, typed, faults)
     own = {field.key for field in fields} | set(FIGURES)
+    shown = typed or _start(request)
     context = {
         "revision": revision,
         "car": revision.car,
-        "typed": typed or _start(request),
+        "typed": shown,
         "holes": [field for field in fields if field.is_hole],
         "settings": [field for field in fields if not field.is_hole],
         "modes": MODES.items(),
         "yards": yards({}, {}, request.shop.units, revision.survey.linkage, typed, faults),
-        "aiming": (typed or {}).get("mode") == "few",
+        "aiming": shown.get("mode") == "few",
         "most": MOST_CHOICES,
         "yardsticks": Yardstick.objects.all(),
         "faults": [words for name, words in faults.items() if name not in own],

@@ -57,10 +57,10 @@ def _found(job: Job, revision: Revision, units: str) -> dict[str, object]:
             {
                 "measure": known,
                 "text": known.text(found["value"]),
-                "uncertainty": known.difference(found["uncertainty"]).lstrip("+"),
+                "uncertainty": known.text(found["uncertainty"]),
                 "sources": sources,
                 "curved": found["curved"],
-                "bought": known.difference(bought(found)).lstrip("+"),
+                "bought": known.text(bought(found)),
             }
         )
     return {"rows": rows, "refused": [(label_of(row["refused"]), row["words"]) for row in job.result.events]}

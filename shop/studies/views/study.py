@@ -11,6 +11,7 @@ from django.contrib import messages
 from django.http import Http404, HttpRequest, HttpResponse, JsonResponse
 from django.shortcuts import get_object_or_404, redirect, render
 
+from shop.drawing.side_view import side_view
 from shop.launches import bridge
 from shop.launches.models import Job
 from shop.launches.services import request_cancel
@@ -18,16 +19,25 @@ from shop.people.access import action_view, shop_view
 from shop.people.permissions import ISSUE, WRITE
 from shop.refusals import Refused, Stale
 from shop.setups.choices import Choices
-from shop.setups.models import Revision
-from shop.setups.quantities import BY_KEY
 from shop.setups.services import start_draft
 from shop.studies import services
 from shop.studies.models import Study
-from shop.studies.plan import read_plan
+from shop.studies.plan import Choice, read_plan
 from shop.studies.ranking import pareto_front
-from shop.studies.rows import change_words, changes_of, choice_of, standing
-from shop.studies.yardsticks import FIGURES, SHOWN, USUAL, WEIGHTS, read_limits, read_weights, study_measure, yards
-from shop.units import default_unit, unit_of
+from shop.studies.rows import changes_of, choice_of, same, standing
+from shop.studies.trying import choices_with, revision_with
+from shop.studies.yardsticks import (
+    FIGURES,
+    SHOWN,
+    USUAL,
+    WEIGHTS,
+    read_limits,
+    read_weights,
+    step_text,
+    study_measure,
+    yards,
+)
+from shop.units import unit_of
 
 REFUSED = 422
 
@@ -145,11 +155,9 @@ def choice(request: HttpRequest, pk: int, number: int) -> HttpResponse:
     study = _study(pk)
     plan = read_plan(study.plan)
     chosen = choice_of(plan, _number(study, str(number)))
-    draft = _with_choice(study, chosen)
+    draft = revision_with(study.revision, _choices(study, chosen))
     units, linkage = request.shop.units, study.revision.survey.linkage
     columns, refused = services.columns_so_far(study)
-    from shop.drawing.side_view import side_view
-
     try:
         drawing, bars = side_view(bridge.scene_of(draft, ghost=study.revision)), bridge.bar_rows(draft, units)
     except Refused as fault:
@@ -162,7 +170,7 @@ def choice(request: HttpRequest, pk: int, number: int) -> HttpResponse:
         if key not in columns or not math.isfinite(columns[key][number]):
             continue
         before = columns[key][base] if base is not None else math.nan
-        change = known.difference(columns[key][number] - before) if math.isfinite(before) else ""
+        change = step_text(known, float(columns[key][number] - before)) if math.isfinite(before) else ""
         rows.append((known, known.text(float(columns[key][number])), change))
     context = {
         "study": study,
@@ -182,43 +190,14 @@ def choice(request: HttpRequest, pk: int, number: int) -> HttpResponse:
 def _base_number(plan) -> int | None:
     """The choice that is the revision itself, where the plan has it."""
     for number, chosen in enumerate(plan.between(0, len(plan))):
-        if all(key in plan.base and math.isclose(value, plan.base[key], rel_tol=1e-9) for key, value in chosen.items()):
+        if all(key in plan.base and same(value, plan.base[key]) for key, value in chosen.items()):
             return number
     return None
 
 
-def _choices(study: Study, chosen) -> Choices:
-    """The revision's choices with one of the study's put on them, in the shop's units."""
-    start = Choices.of(study.revision)
-    holes, settings = dict(start.holes), dict(start.settings)
-    for key, value in chosen.items():
-        if key in holes:
-            holes[key] = int(value)
-            continue
-        dimension = BY_KEY[key].dimension
-        unit = settings.get(key, {}).get("unit") or default_unit(dimension, study.shop.units)
-        shown = float(f"{unit_of(dimension, unit).from_si(value):.9g}")
-        if key in settings and math.isclose(settings[key]["value"], shown, rel_tol=1e-7):
-            continue
-        settings[key] = {"typed": f"{shown:g}", "value": shown, "unit": unit}
-    words = ", ".join(
-        change_words(key, value, study.shop.units) for key, value in chosen.items() if start.holes.get(key) != value
-    )
-    return Choices(
-        holes,
-        settings,
-        start.hit_table,
-        start.hit_lines,
-        start.hit_lines_unit,
-        f"From study “{study.name}”: {words}"[:200],
-    )
-
-
-def _with_choice(study: Study, chosen) -> Revision:
-    """An unsaved revision with the choice on it, to draw."""
-    base = study.revision
-    draft = Revision(shop=study.shop, car=base.car, survey=base.survey, parent=base, author=base.author)
-    return _choices(study, chosen).put_on(draft)
+def _choices(study: Study, chosen: Choice) -> Choices:
+    words = ", ".join(changes_of(chosen, study.plan["base"], study.shop.units))
+    return choices_with(study.revision, chosen, study.shop.units, f"From study “{study.name}”: {words}")
 
 
 @action_view(WRITE)
