@@ -39,5 +39,6 @@ def fresh(study: Study) -> Study:
 
 def asking(**typed: str) -> dict[str, str]:
     """What the form that asks for a study sends."""
-    holes = {"vary_upper_chassis": "on", "values_upper_chassis": "1, 2", "vary_lower_chassis": "on"}
-    return {**holes, "values_lower_chassis": "1 to 3", "mode": "every", "seed": "1", "size": "", "name": "Some holes", **typed}
+    upper = {"vary_upper_chassis": "on", "values_upper_chassis": "1, 2"}
+    lower = {"vary_lower_chassis": "on", "values_lower_chassis": "1 to 3"}
+    return {**upper, **lower, "mode": "every", "seed": "1", "size": "", "name": "Some holes", **typed}

@@ -117,6 +117,7 @@ def test_get_is_refused(client, world, name):
     assert signed_in(client, world.owner).get(reverse(f"studies:{name}", args=[make_study(world).pk])).status_code == 405
 
 
-@pytest.mark.parametrize("path", ["/studies/987654/cancel", "/studies/x/cancel", "/studies/987654/go-on", "/studies/x/go-on"])
-def test_an_id_of_nothing_or_malformed(client, world, path):
-    assert signed_in(client, world.owner).post(path).status_code == 404
+@pytest.mark.parametrize("name", ["cancel", "go-on"])
+@pytest.mark.parametrize("pk", ["987654", "x"])
+def test_an_id_of_nothing_or_malformed(client, world, pk, name):
+    assert signed_in(client, world.owner).post(f"/studies/{pk}/{name}").status_code == 404

@@ -96,7 +96,8 @@ def test_get_is_refused(client, world):
 @pytest.mark.parametrize("number", [10, 99999999999])
 def test_a_choice_the_study_does_not_have(client, world, number):
     study = make_study(world)
-    assert opened(client, world.owner, study, number).status_code == taken(client, world.owner, study, number).status_code == 404
+    assert opened(client, world.owner, study, number).status_code == 404
+    assert taken(client, world.owner, study, number).status_code == 404
 
 
 @pytest.mark.parametrize("path", ["/studies/987654/choices/0", "/studies/x/choices/0", "/studies/1/choices/minus"])
@@ -130,6 +131,7 @@ def test_the_points_of_the_plot_are_the_figures_in_the_shops_unit(client, world)
     answer = signed_in(client, world.owner).get(path, {"figures": "peak_rear_load,anti_squat"}).json()
     with scope(shop=world.shop):
         columns, _ = columns_so_far(study)
-    assert answer["columns"]["peak_rear_load"]["values"] == pytest.approx((columns["peak_rear_load"] / 4.4482216152605).tolist(), rel=1e-5)
+    pounds = (columns["peak_rear_load"] / 4.4482216152605).tolist()
+    assert answer["columns"]["peak_rear_load"]["values"] == pytest.approx(pounds, rel=1e-5)
     assert answer["columns"]["anti_squat"]["values"] == pytest.approx(columns["anti_squat"].tolist(), rel=1e-5)
     assert answer["front"]
