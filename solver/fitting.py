@@ -226,7 +226,15 @@ def _residuals(data: Mapping[str, Any], doubtful: Sequence[Doubtful], log: Seque
     return np.concatenate(parts)
 
 
-def _told(data, doubtful, log, start, width, first, found) -> Fit:
+def _told(
+    data: Mapping[str, Any],
+    doubtful: Sequence[Doubtful],
+    log: Sequence[Channel],
+    start: Array,
+    width: Array,
+    first: Array,
+    found: Any,
+) -> Fit:
     count, parameters = len(found.fun), len(doubtful)
     freedom = max(count - parameters, 1)
     scatter = float(found.fun @ found.fun) / freedom

@@ -41,7 +41,7 @@ def launch_figures(car: Car) -> FiguresOf:
 
     def solve(lanes: Lanes) -> LaneFigures:
         study = sweep(car, lanes)
-        refused = {int(lane): study.reason(int(lane)) for lane in np.flatnonzero(study.codes)}
+        refused = {int(lane): study.reason(int(lane)) or "" for lane in np.flatnonzero(study.codes)}
         # A peak's time is that of the integration step at which it was read.
         steps = {
             name: LONGEST_STEP for name in study.figures if name[:-5] in PEAKS and name.endswith("_time")
