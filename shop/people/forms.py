@@ -3,9 +3,16 @@
 from __future__ import annotations
 
 from django import forms
+from django.contrib.auth.forms import AuthenticationForm, UsernameField
 
 from shop.people.models import Shop
 from shop.people.permissions import ROLES
+
+
+class SignInForm(AuthenticationForm):
+    username = UsernameField(
+        label="E-mail address", widget=forms.EmailInput(attrs={"autofocus": True, "autocomplete": "username"})
+    )
 
 
 class MemberForm(forms.Form):

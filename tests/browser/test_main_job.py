@@ -99,7 +99,7 @@ def test_the_main_job(stack: Stack, pages, complaints, owner, tmp_path) -> None:
     complaints.expect("htmx:(sendAbort|afterRequest|sendError)")
     page = pages.open()
     page.goto("/")
-    page.get_by_label("Email").fill(owner[0])
+    page.get_by_label("E-mail address").fill(owner[0])
     page.get_by_label("Password").fill(owner[1])
     page.get_by_role("button", name="Sign in").click()
     expect(page.get_by_role("heading", level=1)).to_have_text("Which cars are in the shop?")
