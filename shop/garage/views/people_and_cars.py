@@ -54,7 +54,7 @@ def car(request: HttpRequest, pk: int) -> HttpResponse:
             drawing = None
     context = {
         "car": car, "revisions": revisions, "current": issued[0] if issued else None, "drawing": drawing,
-        "surveys": car.surveys.select_related("taken_by").annotate(revision_count=Count("revisions")),
+        "surveys": car.surveys.select_related("taken_by").annotate(revision_count=Count("revisions")).order_by("-number"),
         "jobs": jobs_of(issued), "may_write": request.member.may(WRITE),
         "provisional": bridge.provisional(issued[0]) if issued else [],
     }
@@ -67,7 +67,7 @@ def customers(request: HttpRequest) -> HttpResponse:
     found: QuerySet[Customer] = Customer.objects.filter(archived_at__isnull=not away)
     for word in words.split():
         found = found.filter(Q(name__icontains=word) | Q(phone__icontains=word) | Q(email__icontains=word))
-    page = Paginator(found.annotate(car_count=Count("cars")), 40).get_page(request.GET.get("page"))
+    page = Paginator(found.annotate(car_count=Count("cars")).order_by("name", "id"), 40).get_page(request.GET.get("page"))
     context = {"page": page, "words": words, "away": away, "may_write": request.member.may(WRITE)}
     return render(request, "garage/customers.html", context)
 
