@@ -23,7 +23,7 @@ from shop.studies.spread import tolerances_of
 
 # The first rows should be there before a person looks up; after that, chunks large enough to be cheap.
 FIRST_CHUNK = 64
-CHUNK = 512
+CHUNK = 1024
 CHUNK_LEASE = timedelta(seconds=30)
 # A message for each worker that may help; what finds nothing left to do ends at once.
 HELPERS = 3

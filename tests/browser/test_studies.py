@@ -1,4 +1,4 @@
-"""What to try next, in a real browser with a real worker: every hole, a study that loses its worker, a point taken, an aim."""
+"""What to try next, in a real browser with a real worker: every hole, a study that loses its worker, a point, an aim."""
 
 from __future__ import annotations
 

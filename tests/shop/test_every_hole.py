@@ -32,7 +32,7 @@ def data(client, world, revision):
 def test_the_field_equals_the_revision_with_those_holes(db, client, car, typed):
     world = make_world(car)
     base = make_issued(world)
-    holes = {place: 1 for place in base.holes}
+    holes = dict.fromkeys(base.holes, 1)
     revision = make_issued(world, base, **typed) if typed else base
     answer = data(client, world, revision)
     number = next(n for n in range(answer["count"]) if all(answer["holes"][place][n] == 1 for place in holes))

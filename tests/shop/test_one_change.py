@@ -35,7 +35,8 @@ def test_it_works_and_agrees_with_two_launches(client, world):
         charts = {chart.measure.key: chart for chart in charts_of(fresh(study), world.shop.units)}
         spring = str(revision.settings["rear_spring_rate"]["value"] + 25)
         one = bridge.solve(revision.car_file)["figures"]["mean_rear_load_100ms"]
-        other = bridge.solve(make_issued(world, revision, rear_spring_rate=spring).car_file)["figures"]["mean_rear_load_100ms"]
+        stiffer = make_issued(world, revision, rear_spring_rate=spring)
+        other = bridge.solve(stiffer.car_file)["figures"]["mean_rear_load_100ms"]
     chart = charts["mean_rear_load_100ms"]
     step = (other - one) / LBF
     words = [f"{bar.change} {bar.text}" for bar in chart.bars] + chart.smaller
@@ -62,7 +63,8 @@ def test_bars_run_from_the_largest_down_right_for_more_left_for_less(client, wor
 def test_every_kind_of_step_is_tried(client, world):
     _, study = asked(client, world, world.owner, make_issued(world))
     keys = {axis["key"] for axis in study.plan["axes"]}
-    assert {"lower_chassis", "rear_spring_rate", "rear_shock_rate", "ride_height_rear", "ballast_weight", "rear_pressure"} <= keys
+    assert {"lower_chassis", "rear_spring_rate", "rear_shock_rate"} <= keys
+    assert {"ride_height_rear", "ballast_weight", "rear_pressure"} <= keys
 
 
 def test_another_kind_of_study_has_no_such_page(client, world):
