@@ -17,7 +17,12 @@ def test_measuring_again_begins_from_the_newest_survey(client: Client) -> None:
     world = make_world()
     with scope(shop=world.shop):
         newest = Survey.objects.create(
-            shop=world.shop, car=world.car, number=2, linkage="four_link", taken_on="2026-04-01", taken_by=world.owner.user
+            shop=world.shop,
+            car=world.car,
+            number=2,
+            linkage=world.survey.linkage,
+            taken_on="2026-04-01",
+            taken_by=world.owner.user,
         )
     page = signed_in(client, world.owner).get(f"/cars/{world.car.pk}/").content.decode()
     assert f"surveys/new?from={newest.pk}" in page
