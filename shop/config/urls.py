@@ -10,6 +10,7 @@ urlpatterns = [
     path("", include("shop.garage.urls")),
     path("", include("shop.setups.urls")),
     path("", include("shop.launches.urls")),
+    path("", include("shop.parts.urls")),
     path("", include("shop.studies.urls")),
     path("", include("shop.track.urls")),
     path("", include("shop.sheets.urls")),

@@ -240,3 +240,39 @@ CARS = [
         ],
     ),
 ]
+
+# Kind, name, numbers as typed, curve as CSV, where from.
+PARTS = [
+    *(
+        ("spring", f"{rate} by 14, plain ends", {"rate": f"{rate} lb/in", "free_length": "14"}, "", "spring rater, bay 2")
+        for rate in (110, 130, 150, 165, 180, 200)
+    ),
+    (
+        "shock",
+        "Rear, double adjustable, green body",
+        {"stroke": "6 1/2", "closed_length": "11 1/4"},
+        "side,click,velocity (in/s),force (lbf)\n"
+        + "\n".join(
+            f"{side},{click},{speed},{round(base * (1 + 0.12 * click) * speed**0.7)}"
+            for side, base in (("compression", 14), ("rebound", 22))
+            for click in (0, 4, 8, 12)
+            for speed in (1, 3, 5, 10)
+        ),
+        "own dyno, invented for the demo",
+    ),
+    ("tyre", "Rear slick, 32 by 14", {"rate": "1250 lb/in", "pressure": "11", "radius": "16"}, "", "jack and scales"),
+    (
+        "tube",
+        "1 1/4 by 0.095, alloy steel",
+        {"outer_diameter": "1 1/4", "wall": "0.095", "yield_strength": "75", "modulus": "29000"},
+        "",
+        "mill certificate, invented for the demo",
+    ),
+    (
+        "rod_end",
+        "3/4-16, steel race",
+        {"static_rating": "28000", "thread_diameter": "0.75", "threads_per_inch": "16"},
+        "",
+        "maker's sheet, invented for the demo",
+    ),
+]

@@ -9,10 +9,13 @@ from django.db import transaction
 from django.utils import timezone
 from django_scopes import scope
 
-from shop.demo.data import CARS, CUSTOMERS, MEMBERS, PASSWORD, SHOP, DemoCar
+from shop.demo.data import CARS, CUSTOMERS, MEMBERS, PARTS, PASSWORD, SHOP, DemoCar
 from shop.demo.weekends import load_weekends
 from shop.garage.models import Bracket, Car, Customer, Measurement, Survey
 from shop.garage.quantities import BY_KEY, QUANTITIES
+from shop.parts.curve_csv import read_curves
+from shop.parts.kinds import KINDS
+from shop.parts.services import Knowledge, add_part, read_numbers
 from shop.people.models import Membership, Shop, User
 from shop.setups.choices import Choices, Surveyed, beginning
 from shop.setups.models import Revision
@@ -32,8 +35,18 @@ def load_demo() -> Membership:
             Customer.objects.create(shop=shop, name=name, phone=phone, notes=notes)
         for offset, data in enumerate(CARS):
             _car(owner if offset % 2 else technician, data, days_ago=60 - 9 * offset)
+        for kind, name, typed, curve, origin in PARTS:
+            _part(technician, kind, name, typed, curve, origin)
         load_weekends(technician, Car.objects.get(name=CARS[0].name))
     return owner
+
+
+def _part(member: Membership, kind: str, name: str, typed: dict[str, str], curve: str, origin: str) -> None:
+    known = KINDS[kind]
+    units = {quantity.key: quantity.unit("us") for quantity in known.quantities}
+    curves = read_curves(curve, known.curve) if known.curve and curve else []
+    knowledge = Knowledge(read_numbers(known, typed, units), curves, origin, timezone.localdate())
+    add_part(member, kind, name, knowledge)
 
 
 def _member(shop: Shop, email: str, name: str, role: str) -> Membership:

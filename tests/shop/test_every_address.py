@@ -59,7 +59,7 @@ class Row:
     def at(self, ids: dict[str, Any]) -> str:
         kind = self.route.removeprefix("api/v1/").lstrip("^").split("/")[0]
         kind = "/".join(self.route.split("/")[:2]) if kind in ("shop", "sheets") else kind
-        given = {"number": 1, "car_id": ids["cars"], "pk": ids.get(kind, ids["cars"]), "uidb64": "MQ", "token": "a-b"}
+        given = {"number": 1, "car_id": ids["cars"], "pk": ids.get(kind, ids["cars"]), "uidb64": "MQ", "token": "a-b", "key": "spring"}
         if "weekend_id" in self.words:
             given["weekend_id"] = ids["weekends"]
         return reverse(self.name, kwargs={word: given[word] for word in self.words})
