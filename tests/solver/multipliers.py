@@ -205,16 +205,25 @@ class Model:
 
     def accelerate(self, q, v, hit):
         """Accelerations and multipliers."""
-        _, J = self.jacobian(q)
-        eps = 1e-6
-        # The constraints' second derivative along the motion, by a central difference.
-        ahead, behind = self.jacobian(q + eps * v)[1], self.jacobian(q - eps * v)[1]
-        gamma = -((ahead - behind) @ v) / (2.0 * eps)
-        A = np.zeros((11, 11))
-        A[range(8), range(8)] = self.masses
-        A[:8, 8:], A[8:, :8] = -J.T, J
-        solution = np.linalg.solve(A, np.concatenate([self.forces(q, v, hit), gamma]))
-        return solution[:8], solution[8:]
+        return constrained(self.masses, lambda at: self.jacobian(at)[1], q, v, self.forces(q, v, hit))
+
+
+def constrained(masses, jacobian, q, v, forces):
+    """Accelerations and multipliers of bodies with diagonal masses under constraints J(q) v = 0.
+
+    The equations of motion with Lagrange multipliers of any text on multibody dynamics; nothing in
+    here knows of cars, so that published benchmarks can be put through it (test_published.py).
+    """
+    J = jacobian(q)
+    eps = 1e-6
+    # The constraints' second derivative along the motion, by a central difference.
+    gamma = -((jacobian(q + eps * v) - jacobian(q - eps * v)) @ v) / (2.0 * eps)
+    n, m = len(masses), len(J)
+    A = np.zeros((n + m, n + m))
+    A[range(n), range(n)] = masses
+    A[:n, n:], A[n:, :n] = -J.T, J
+    solution = np.linalg.solve(A, np.concatenate([forces, gamma]))
+    return solution[:n], solution[n:]
 
 
 def stop_push(stop, travel, speed):

@@ -8,6 +8,7 @@ import math
 
 import numpy as np
 import pytest
+from scipy.integrate import solve_ivp
 
 from solver.geometry import meeting
 from solver.hinges import hinges, value_of
@@ -20,6 +21,7 @@ from solver.modes import modes
 from solver.packing import pack
 from solver.statics import statics
 from tests.solver.cars import car_with
+from tests.solver.multipliers import constrained
 
 INCH, POUND, LBF = 0.0254, 0.45359237, 4.4482216152605
 
@@ -214,3 +216,37 @@ def test_shock_energy_of_a_cycle(table, joules):
     speed = 0.05 * rate * np.cos(rate * t)
     power = np.array([value_of(row, v) * v for v in speed[::20]])
     assert np.trapezoid(power, t[::20]) == pytest.approx(joules, rel=1e-6)
+
+
+@pytest.mark.parametrize(
+    ("time", "x", "y"),
+    [
+        (1.0, 0.986291751132, -0.165010853126),
+        (5.0, -0.942305435044, -0.334754338414),
+        (10.0, -0.275087462576, -0.961419205099),
+    ],
+)
+def test_the_second_method_swings_the_benchmark_pendulum(time, x, y):
+    """IFToMM benchmark A01: 1 kg on 1 m, let go from (-1, 0), g 9.81 [values lib mpmath, by elliptic functions].
+
+    What the launches are held against solves its constraints by the very function that is tried here.
+    """
+
+    def rate(t, state):
+        q, v = state[:2], state[2:]
+        a, _ = constrained(np.ones(2), lambda at: at[None, :], q, v, np.array([0.0, -9.81]))
+        return np.concatenate([v, a])
+
+    run = solve_ivp(rate, (0.0, time), [-1.0, 0.0, 0.0, 0.0], method="DOP853", rtol=1e-11, atol=1e-11)
+    assert run.y[:2, -1] == pytest.approx([x, y], abs=2e-6)
+
+
+def test_the_second_method_keeps_the_pendulum_s_period():
+    """The same benchmark's period, 2.367841947576 s [lib mpmath]: after it the bob is back where it was let go."""
+
+    def rate(t, state):
+        a, _ = constrained(np.ones(2), lambda at: at[None, :], state[:2], state[2:], np.array([0.0, -9.81]))
+        return np.concatenate([state[2:], a])
+
+    run = solve_ivp(rate, (0.0, 2.367841947576), [-1.0, 0.0, 0.0, 0.0], method="DOP853", rtol=1e-11, atol=1e-11)
+    assert run.y[:, -1] == pytest.approx([-1.0, 0.0, 0.0, 0.0], abs=2e-6)
