@@ -1,7 +1,7 @@
 from django.urls import path
 from django.views.generic import RedirectView
 
-from shop.garage.views import car_file, surveys
+from shop.garage.views import car_file, scaling, surveys
 from shop.garage.views import people_and_cars as rows
 
 app_name = "garage"
@@ -17,6 +17,7 @@ urlpatterns = [
     path("cars/<int:car_id>/measuring-sheet", surveys.measuring_sheet, name="measuring-sheet"),
     path("cars/<int:car_id>/surveys/new", surveys.new, name="survey-new"),
     path("surveys/<int:pk>/", surveys.survey, name="survey"),
+    path("surveys/<int:pk>/scaling", scaling.scaling, name="scaling"),
     path("surveys/<int:pk>/edit", surveys.edit, name="survey-edit"),
     path("customers/", rows.customers, name="customers"),
     path("customers/new", rows.add_customer, name="customer-new"),

@@ -23,8 +23,9 @@ from shop.refusals import Refused
 from shop.setups import car_file
 from shop.setups.models import Revision
 from shop.units import default_unit, show, unit_of
-from solver import atmosphere, comparing, power, significance, slip_check, timing, weather, weights
+from solver import atmosphere, comparing, power, significance, slip_check, timing, turns, weather, weights
 from solver.carfile import parse_car
+from solver.corner_springs import Axle
 from solver.hole_field import Masses, four_link_field, ladder_bar_field
 from solver.many import sweep_files
 from solver.statics import statics as solve_statics
@@ -445,16 +446,56 @@ def survey_figures(survey: Survey, units: str) -> list[Row]:
     found = weights.weigh(weights.Corners(*corners))
     mass = default_unit("mass", units)
     ahead = values["wheelbase"] * found.front / found.total
-    rows = [
+    rows = [*weight_rows(corners, units), Row("cg_x", "CG, ahead of rear axle", length_text(ahead, units), si=ahead)]
+    if all(f"empty_{corner}" in values for corner in ("lf", "rf", "lr", "rr")):
+        driver = found.total - sum(values[f"empty_{corner}"] for corner in ("lf", "rf", "lr", "rr"))
+        rows.append(Row("driver", "Driver", show(driver, "mass", mass), "with driver less driver out", driver))
+    return rows
+
+
+def weight_rows(corners: list[float], units: str) -> list[Row]:
+    """What four pads say (kg: left front, right front, left rear, right rear)."""
+    found = weights.weigh(weights.Corners(*corners))
+    mass = default_unit("mass", units)
+    return [
         Row("total", "Total with driver", show(found.total, "mass", mass), si=found.total),
         Row("front", "Front", f"{show(found.front, 'mass', mass)}, {_percent(found.front_percent)}", si=found.front),
         Row("rear", "Rear", f"{show(found.rear, 'mass', mass)}, {_percent(found.rear_percent)}", si=found.rear),
         Row("left", "Left", f"{show(found.left, 'mass', mass)}, {_percent(found.left_percent)}", si=found.left),
         Row("cross", "Cross weight", f"{show(found.cross_weight, 'mass', mass)}, {_percent(found.cross_percent)}",
             "right front and left rear", found.cross_weight),
-        Row("cg_x", "CG, ahead of rear axle", length_text(ahead, units), si=ahead),
     ]
-    if all(f"empty_{corner}" in values for corner in ("lf", "rf", "lr", "rr")):
-        driver = found.total - sum(values[f"empty_{corner}"] for corner in ("lf", "rf", "lr", "rr"))
-        rows.append(Row("driver", "Driver", show(driver, "mass", mass), "with driver less driver out", driver))
-    return rows
+
+
+@dataclass(frozen=True)
+class Turns:
+    """Corner, turns (up is positive) and expected reading (kg), and the cross weight then, a share."""
+
+    corners: list[tuple[str, float, float]]
+    cross: float
+
+
+def turns_to(survey: Survey, values: Mapping[str, float], *, keep_height: bool) -> Turns:
+    """Spring-seat turns to a cross weight, from the pads and what the survey knows of springs and tyres (SI)."""
+    known = car_file.survey_si(survey)
+    ends = {}
+    for end in ("front", "rear"):
+        ends[end] = Axle(
+            track=values[f"{end}_track"],
+            spring_rates=(known[f"{end}_spring_rate"],) * 2,
+            motion_ratio=known["front_motion_ratio"] if end == "front" else 1.0,
+            thread_pitch=values["thread_pitch"],
+            tyre_rate=known[f"{end}_tyre_rate"],
+            spring_base=values["spring_base"] if end == "rear" else None,
+        )
+    measured = weights.Corners(*(values[f"weight_{corner}"] for corner in ("lf", "rf", "lr", "rr")))
+    try:
+        target = turns.target_from_cross(measured, 100 * values["cross"])
+        found = turns.seat_turns(
+            measured, target, known["wheelbase"], ends["front"], ends["rear"], keep_height=keep_height
+        )
+    except ValueError as error:
+        raise Refused(str(error)) from error
+    names = ("Left front", "Right front", "Left rear", "Right rear")
+    rows = zip(names, found.turns.as_array(), found.corner_weights.as_array(), strict=True)
+    return Turns([(name, float(turn), float(weight)) for name, turn, weight in rows], found.cross_percent / 100)

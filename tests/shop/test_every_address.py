@@ -40,6 +40,7 @@ READERS_OWN = {
     "setups:preview",
     "setups:try",
     "studies:count",
+    "garage:scaling",
 }
 ODD = "?page=x&page=-1&a=&b=99999999999999999999&from=x&q=%00&survey=x&car=%F0%9F%8F%81&parent=-1&sort=nope"
 ROWS_ASKED_FOR = ("page", "a", "b", "from", "survey", "parent", "car", "customer", "weekend", "revision", "compare")
