@@ -17,6 +17,9 @@ from shop.garage.quantities import (
 from shop.quantities import Quantity
 from shop.units import Reading, ReadingError, parse_reading, show, unit_of
 
+# No hole is known worse than this and still worth writing down.
+WIDEST = 0.05
+
 
 @dataclass(frozen=True)
 class Taken:
@@ -153,11 +156,13 @@ def _drill(reading: SurveyReading, place: str, typed: Mapping[str, str], system:
     tolerance = float(f"{0.0015 / factor:.2g}")
     if text:
         try:
-            tolerance = parse_reading(text, unit, "length").value
+            width = parse_reading(text, unit, "length").si
+            tolerance = float(f"{width / factor:.6g}")
+            if not 0 <= width <= WIDEST:
+                most = show(WIDEST, "length", unit)
+                reading.fault(f"{place}_tol", f"a tolerance is between 0 and {most}; “{text}” is not")
         except ReadingError as error:
             reading.fault(f"{place}_tol", str(error))
-        if tolerance < 0:
-            reading.fault(f"{place}_tol", "a tolerance is not negative")
     before = dict(reading.faults)
     if typed.get(f"{place}_entry", "row") == "each":
         row, holes = None, _each(reading, place, typed.get(f"{place}_lines", ""), unit)
@@ -176,8 +181,9 @@ def _row(reading, place: str, typed: Mapping[str, str], unit: str) -> tuple[dict
         x = _coordinate(reading, f"{place}_{end}_x", row[f"{end}_x"], unit, HOLE_X, f"{words}, ahead of axle")
         z = _coordinate(reading, f"{place}_{end}_z", row[f"{end}_z"], unit, HOLE_Z, f"{words}, above ground")
         ends.append((x, z))
-    if not row["count"].isdecimal() or not 1 <= int(row["count"]) <= HOLES_AT_MOST:
-        reading.fault(f"{place}_count", f"a bracket has 1 to {HOLES_AT_MOST} holes; “{row['count']}” is not a count of them")
+    if not row["count"].isdecimal() or len(row["count"]) > 3 or not 1 <= int(row["count"]) <= HOLES_AT_MOST:
+        shown = row["count"][:20]
+        reading.fault(f"{place}_count", f"a bracket has 1 to {HOLES_AT_MOST} holes; “{shown}” is not a count of them")
         return row, []
     count = int(row["count"])
     if count == 1 and ends[0] != ends[1]:

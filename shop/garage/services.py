@@ -62,7 +62,7 @@ def add_survey(
             shop=member.shop, car=car, number=newest + 1, linkage=reading.linkage, taken_on=taken_on,
             taken_by=member.user, notes=notes, parent=parent,
         )
-        _write(member, survey, reading)
+        _write(member, survey, reading, parent)
         record(member, "measured", survey)
     return survey
 
@@ -91,20 +91,27 @@ def _must_be_sound(reading: SurveyReading) -> None:
         raise Refused(reading.faults)
 
 
-def _write(member: Membership, survey: Survey, reading: SurveyReading) -> None:
-    """Replace what the survey holds; a value that did not change keeps who took it and when."""
-    kept = {row.key: row for row in survey.measurements.all()}
+def _write(member: Membership, survey: Survey, reading: SurveyReading, copied: Survey | None = None) -> None:
+    """Replace what the survey holds. A value that did not change, here or on the survey this one is a
+    copy of, keeps its origin, who took it and when."""
+    before = {row.key: row for row in (copied or survey).measurements.all()}
+    survey.measurements.all().delete()
     for key, taken in reading.taken.items():
-        row = kept.pop(key, None)
-        values = {"typed": taken.typed, "value": taken.value, "unit": taken.unit,
-                  "tolerance": taken.tolerance, "origin": taken.origin}
-        if row is None:
-            Measurement.objects.create(shop=member.shop, survey=survey, key=key, taken_by=member.user, **values)
-        elif any(getattr(row, name) != value for name, value in values.items()):
-            row.delete()
-            Measurement.objects.create(shop=member.shop, survey=survey, key=key, taken_by=member.user, **values)
-    for row in kept.values():
-        row.delete()
+        values = {"typed": taken.typed, "value": taken.value, "unit": taken.unit, "tolerance": taken.tolerance}
+        row = before.get(key)
+        # How well it is known may be judged anew without anybody measuring again.
+        same = row is not None and all(getattr(row, name) == values[name] for name in ("typed", "value", "unit"))
+        # A typical value that is typed in as read has been measured; a fitted one that is left alone has not.
+        if row is None or not same or (row.origin == "typical") != (taken.origin == "typical"):
+            Measurement.objects.create(
+                shop=member.shop, survey=survey, key=key, taken_by=member.user, origin=taken.origin, **values
+            )
+            continue
+        again = Measurement.objects.create(
+            shop=member.shop, survey=survey, key=key, taken_by_id=row.taken_by_id, origin=row.origin, **values
+        )
+        # The day it was taken is filled in by itself on creation, so it is put back after.
+        Measurement.objects.filter(pk=again.pk).update(taken_at=row.taken_at)
     survey.brackets.all().delete()
     for place, drilled in reading.brackets.items():
         Bracket.objects.create(

@@ -109,5 +109,5 @@ def typed_of(survey: Survey) -> dict[str, str]:
         if bracket.row:
             typed |= {f"{bracket.place}_{name}": str(value) for name, value in bracket.row.items()}
         else:
-            typed[f"{bracket.place}_lines"] = "\n".join(f"{x:g}, {z:g}" for x, z in bracket.holes)
+            typed[f"{bracket.place}_lines"] = "\n".join(f"{x:.9g}, {z:.9g}" for x, z in bracket.holes)
     return typed

@@ -35,7 +35,11 @@ def add_member(member: Membership, email: str, name: str, role: str) -> tuple[Me
         except IntegrityError as error:
             raise Refused({"email": f"{user.name} already works in {member.shop}"}) from error
         record(member, "added", added, role=role)
-    return added, set_password_path(user) if is_new or not user.has_usable_password() else None
+    # Whoever holds the address becomes that person, in every shop they work in: none is shown for somebody
+    # who works elsewhere, or another shop's owner could come in as them.
+    elsewhere = Membership.objects.filter(user=user).exclude(shop=member.shop).exists()
+    needs_one = is_new or (not user.has_usable_password() and not elsewhere)
+    return added, set_password_path(user) if needs_one else None
 
 
 def _keep_an_owner(changed: Membership) -> None:
@@ -66,7 +70,8 @@ def remove_member(member: Membership, removed: Membership) -> None:
 
 def change_shop(member: Membership, **fields: str) -> None:
     with transaction.atomic():
-        before = {name: getattr(member.shop, name) for name in fields}
+        # From the database: a form has already put the new values on the instance.
+        before = Shop.objects.values(*fields).get(pk=member.shop.pk)
         for name, value in fields.items():
             setattr(member.shop, name, value)
         member.shop.save(update_fields=list(fields))

@@ -89,7 +89,8 @@ def edit(request: HttpRequest, pk: int) -> HttpResponse:
     version = typed.get("version", "")
     try:
         services.change_survey(
-            request.member, survey, int(version) if version.isdecimal() else 0, reading, day, typed.get("notes", "")[:4000]
+            request.member, survey, int(version) if version.isdecimal() and len(version) < 10 else 0, reading, day,
+            typed.get("notes", "")[:4000],
         )
     except Stale:
         stale = _differences(typed, typed_of(Survey.objects.get(pk=pk)))
@@ -105,11 +106,29 @@ def edit(request: HttpRequest, pk: int) -> HttpResponse:
 def _differences(mine: dict[str, str], theirs: dict[str, str]) -> list[tuple[str, str, str]]:
     """(what, theirs, yours) wherever the other person's survey differs from what was typed here."""
     found = []
-    for name, value in theirs.items():
-        own = mine.get(name, "")
-        if name in BY_KEY and own.strip() != value.strip():
-            found.append((BY_KEY[name].label, value, own))
+    for name in dict.fromkeys([*theirs, *(name for name in mine if name not in _NOT_MEASURED)]):
+        own, value = mine.get(name, ""), theirs.get(name, "")
+        # A unit says nothing where no number stands before it.
+        if own.strip() != value.strip() and not (name.endswith("_unit") and name.removesuffix("_unit") not in theirs):
+            found.append((_words(name), value, own))
     return found
+
+
+_NOT_MEASURED = ("csrfmiddlewaretoken", "version", "do")
+_ENDINGS = {"_tol": "tolerance", "_unit": "unit", "_entry": "way of entry", "_lines": "holes", "_count": "number of holes",
+            "_first_x": "hole 1, ahead of axle", "_first_z": "hole 1, above ground", "_last_x": "last hole, ahead of axle",
+            "_last_z": "last hole, above ground"}
+
+
+def _words(name: str) -> str:
+    """What a field of the form is called on its page."""
+    for ending, words in _ENDINGS.items():
+        start = name.removesuffix(ending)
+        if name.endswith(ending) and (start in BY_KEY or start in BRACKETS):
+            return f"{BY_KEY[start].label if start in BY_KEY else BRACKETS[start]}: {words}"
+    if name in BY_KEY:
+        return BY_KEY[name].label
+    return {"taken_on": "Measured on", "notes": "Notes", "linkage": "Rear linkage"}.get(name, name)
 
 
 @shop_view()
