@@ -119,6 +119,8 @@ def test_the_main_job(stack: Stack, pages, complaints, owner, tmp_path) -> None:
 
     page.goto(first)
     page.get_by_role("link", name="Setup sheet").click()
+    # Printing waits for nobody: the sheet must have come first.
+    expect(page.locator(".sheet .title-block")).to_be_visible()
     words = print_sheet(page, tmp_path)
     assert "Lark" in words and "As it came in" in words and "Wilhelmina Aldous" in words
 
